@@ -1,0 +1,142 @@
+import { z } from "zod";
+import { MOTIONS, REFERENCE_METHODS, UNCERTAINTY_KINDS, VERDICTS } from "../domain/vocabulary.ts";
+import { signature } from "./break.ts";
+import { counts } from "./build.ts";
+import { id, laneName, queryInteger, sha, timestamp, wireNumber } from "./common.ts";
+
+export const worst = z
+  .object({
+    row: z.number().int(),
+    column: z.number().int(),
+    verdict: z.enum(VERDICTS),
+    error: wireNumber.nullable(),
+    derivative: wireNumber,
+    reference: wireNumber.nullable(),
+    uncertainty: wireNumber.nullable(),
+  })
+  .meta({ id: "WorstEntry" });
+
+export const motionCounts = z
+  .object({
+    still: z.number(),
+    together: z.number(),
+    "derivative-only": z.number(),
+    "model-only": z.number(),
+    apart: z.number(),
+  })
+  .meta({ id: "MotionCounts" });
+
+const side = z
+  .object({
+    name: z.string(),
+    size: z.number().int(),
+    unit: z.string().nullable(),
+    elements: z.array(z.string()).nullable(),
+  })
+  .meta({ id: "BlockSide" });
+
+/** A block in the list of a build. */
+export const blockRow = z
+  .object({
+    blockId: id,
+    model: z.string(),
+    point: z.string(),
+    output: side,
+    input: side,
+    rows: z.number().int(),
+    columns: z.number().int(),
+    counts,
+    rtol: z.number(),
+    floor: z.number(),
+    /** Largest finite resolution over the entries: what the weakest reference could see. */
+    resolution: wireNumber.nullable(),
+    worst: worst.nullable(),
+    signatures: z.array(signature),
+    /** Null for the first build of its lane. */
+    motion: motionCounts.nullable(),
+  })
+  .meta({ id: "BlockRow" });
+export type BlockRow = z.infer<typeof blockRow>;
+
+export const referenceSummary = z
+  .object({
+    index: z.number().int(),
+    method: z.enum(REFERENCE_METHODS),
+    uncertaintyKind: z.enum(UNCERTAINTY_KINDS),
+    assumed: z.boolean(),
+    stepKind: z.enum(["absolute", "relative"]),
+    /** One per posted step, largest over the columns; empty where the method has none. */
+    steps: z.array(z.number()),
+    precision: z.number().nullable(),
+    columns: z.array(z.number().int()).nullable(),
+    cost: z.object({ evaluations: z.number().optional(), seconds: z.number().optional() }).nullable(),
+  })
+  .meta({ id: "ReferenceSummary" });
+
+const plane = z.union([z.array(wireNumber.nullable()), z.string()]).meta({
+  id: "Plane",
+  description: "Row-major, rows x columns of the window; with format=f64le base64 of little-endian binary64.",
+});
+const codes = z.union([z.array(z.string().nullable()), z.string()]).meta({
+  id: "CodePlane",
+  description:
+    "Words, row-major; with format=f64le base64 of one byte per entry, an index into the enumeration's order (255 = none).",
+});
+
+/** A block of a build with its numbers. Planes are the window's, row-major. */
+export const blockDetail = blockRow
+  .extend({
+    buildId: id,
+    commit: sha,
+    lane: laneName,
+    window: z.object({ rows: z.tuple([z.number(), z.number()]), columns: z.tuple([z.number(), z.number()]) }),
+    format: z.enum(["json", "f64le"]),
+    derivative: plane,
+    reference: plane,
+    uncertainty: plane,
+    error: plane,
+    verdict: codes,
+    motionPlane: codes.nullable(),
+    /** Index into `references` of the reference an entry was judged with (255 or null = none). */
+    source: z.union([z.array(z.number().nullable()), z.string()]),
+    uncertaintyKind: z.enum(UNCERTAINTY_KINDS).nullable(),
+    outputValues: z.array(wireNumber).nullable(),
+    inputValues: z.array(wireNumber).nullable(),
+    derivativeMethod: z.string(),
+    references: z.array(referenceSummary),
+    probes: z.array(z.record(z.string(), z.unknown())),
+    sources: z.array(z.string()),
+  })
+  .meta({ id: "Block" });
+export type BlockDetail = z.infer<typeof blockDetail>;
+
+const range = z.string().regex(/^\d{1,9}:\d{1,9}$/, "must be first:last-plus-one, like 0:100");
+export const blockQuery = z.strictObject({
+  format: z.enum(["json", "f64le"]).optional(),
+  rows: range.optional(),
+  columns: range.optional(),
+});
+
+export const historyItem = z
+  .object({
+    commit: sha,
+    buildId: id,
+    subject: z.string().nullable(),
+    author: z.string().nullable(),
+    committedAt: timestamp.nullable(),
+    derivative: wireNumber,
+    reference: wireNumber.nullable(),
+    uncertainty: wireNumber.nullable(),
+    error: wireNumber.nullable(),
+    verdict: z.enum(VERDICTS),
+    motion: z.enum(MOTIONS).nullable(),
+    drift: z.object({ decades: z.number(), cusum: z.number() }).nullable(),
+    event: z.enum(["break", "repair", "climb", "jump"]).nullable(),
+  })
+  .meta({ id: "HistoryItem" });
+export type HistoryItem = z.infer<typeof historyItem>;
+export const historyQuery = z.strictObject({
+  lane: laneName.optional(),
+  branch: z.string().max(250).optional(),
+  limit: queryInteger(1, 5000).optional(),
+});
