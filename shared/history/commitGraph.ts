@@ -17,8 +17,9 @@ export class CommitGraph {
   readonly size: number;
   private readonly order: readonly string[];
   private readonly placeBySha: ReadonlyMap<string, number>;
-  private readonly parentStart: Int32Array;
-  private readonly parentPlaces: Int32Array;
+  /** For sweeps over all edges: the parents of a place are parentPlaces[parentStart[place] .. parentStart[place + 1]). */
+  readonly parentStart: Int32Array;
+  readonly parentPlaces: Int32Array;
   private readonly childStart: Int32Array;
   private readonly childPlaces: Int32Array;
   private readonly cut: Uint8Array;
@@ -121,6 +122,11 @@ export class CommitGraph {
     const place = this.placeBySha.get(sha);
     if (place === undefined) throw new RangeError(`commit ${sha} is not in the graph`);
     return place;
+  }
+
+  /** Place in topological order, or -1 for a commit that is not known. */
+  findPlace(sha: string): number {
+    return this.placeBySha.get(sha) ?? -1;
   }
 
   shaAt(place: number): string {

@@ -37,8 +37,9 @@ function reference(block: GateBlock, then: GateBlock, base: string): GateFinding
 function resolution(block: GateBlock, then: GateBlock, base: string): GateFinding[] {
   const more = block.unresolved - then.unresolved;
   if (more <= 0) return [];
-  const text = `the reference can tell ${entriesOf(more)} of ${named(block)} less than at ${base}`;
-  return [finding("resolution-lost", block, more, `${text} (${block.unresolved} of ${block.entries} are unresolved)`)];
+  const text = `${more === 1 ? "one more entry" : `${more} more entries`} of ${named(block)}`;
+  const message = `${text} ${more === 1 ? "is" : "are"} unresolved than at ${base} (${block.unresolved} of ${block.entries})`;
+  return [finding("resolution-lost", block, more, message)];
 }
 
 function finding(code: GateFinding["code"], block: GateBlock, weight: number, message: string): GateFinding {

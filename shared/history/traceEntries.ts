@@ -48,26 +48,37 @@ export function traceEntries(graph: CommitGraph, tests: Tests, options: TraceOpt
 }
 
 const NONE: readonly number[] = [];
+const GOOD = 1;
+const BAD = 2;
 
-/** Carries the breaks of the nearest tested ancestors forward through the graph, oldest commit first. */
+/** Carries the breaks of the nearest tested ancestors forward through the graph, from the oldest bad commit on. */
 function followBreaks(graph: CommitGraph, tests: Tests): FollowedBreak[] {
+  const { size, parentStart, parentPlaces } = graph;
+  const codes = new Uint8Array(size);
+  let first = size;
+  for (const [sha, test] of tests) {
+    const place = graph.findPlace(sha);
+    if (place < 0) continue;
+    codes[place] = test === "good" ? GOOD : BAD;
+    if (test === "bad" && place < first) first = place;
+  }
   const breaks: FollowedBreak[] = [];
   // What a commit hands to its children: the breaks of its nearest bad ancestors (or its own), as indices of `breaks`.
-  const carried: (readonly number[])[] = new Array<readonly number[]>(graph.size);
-  for (let place = 0; place < graph.size; place++) {
+  const carried = new Array<readonly number[]>(size).fill(NONE);
+  for (let place = first; place < size; place++) {
     let arriving = NONE;
-    for (const parent of graph.parentsAt(place)) arriving = union(arriving, carried[parent]!);
-    const test = tests.get(graph.shaAt(place));
-    if (test === "good") {
+    for (let edge = parentStart[place]!; edge < parentStart[place + 1]!; edge++) {
+      arriving = union(arriving, carried[parentPlaces[edge]!]!);
+    }
+    if (codes[place] === GOOD) {
       for (const index of arriving) breaks[index]!.goodAfter.push(place);
-      carried[place] = NONE;
-    } else if (test === "bad") {
+      continue;
+    }
+    if (codes[place] === BAD) {
       if (arriving.length === 0) arriving = [breaks.push({ onset: place, bad: [], goodAfter: [] }) - 1];
       for (const index of arriving) breaks[index]!.bad.push(place);
-      carried[place] = arriving;
-    } else {
-      carried[place] = arriving;
     }
+    carried[place] = arriving;
   }
   return breaks;
 }
