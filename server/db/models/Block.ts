@@ -1,0 +1,26 @@
+import { DataTypes, Model } from "sequelize";
+import type { CreationOptional, InferAttributes, InferCreationAttributes, Sequelize } from "sequelize";
+
+/** The Jacobian of one output with respect to one input of a model, at one point. */
+export class Block extends Model<InferAttributes<Block>, InferCreationAttributes<Block>> {
+  declare id: CreationOptional<number>;
+  declare projectId: number;
+  declare model: string;
+  declare point: string;
+  declare output: string;
+  declare input: string;
+
+  static initialise(sequelize: Sequelize): void {
+    Block.init(
+      {
+        id: { type: DataTypes.INTEGER, primaryKey: true, autoIncrement: true },
+        projectId: { type: DataTypes.INTEGER, allowNull: false },
+        model: { type: DataTypes.STRING, allowNull: false },
+        point: { type: DataTypes.STRING, allowNull: false },
+        output: { type: DataTypes.STRING, allowNull: false },
+        input: { type: DataTypes.STRING, allowNull: false },
+      },
+      { sequelize, tableName: "blocks", timestamps: false },
+    );
+  }
+}
