@@ -10,9 +10,9 @@ CREATE TABLE lanes (
   id INTEGER PRIMARY KEY AUTOINCREMENT,
   projectId INTEGER NOT NULL REFERENCES projects(id) ON DELETE CASCADE,
   name TEXT NOT NULL,
-  dirty INTEGER NOT NULL DEFAULT 0,
   UNIQUE (projectId, name)
 );
+ALTER TABLE projects ADD COLUMN graphVersion TEXT NOT NULL DEFAULT '';
 CREATE TABLE commits (
   id INTEGER PRIMARY KEY AUTOINCREMENT,
   projectId INTEGER NOT NULL REFERENCES projects(id) ON DELETE CASCADE,
@@ -212,4 +212,5 @@ export async function up(query: QueryInterface): Promise<void> {
 
 export async function down(query: QueryInterface): Promise<void> {
   for (const table of TABLES) await query.sequelize.query(`DROP TABLE ${table}`);
+  await query.sequelize.query("ALTER TABLE projects DROP COLUMN graphVersion");
 }

@@ -1,0 +1,190 @@
+import { createHash } from "node:crypto";
+import type { Limits } from "../../shared/domain/limits.ts";
+import type { Tolerances } from "../../shared/domain/tolerances.ts";
+import { VERDICTS } from "../../shared/domain/vocabulary.ts";
+import type { Verdict } from "../../shared/domain/vocabulary.ts";
+import { toWire } from "../../shared/schemas/common.ts";
+import type { WireNumber } from "../../shared/schemas/common.ts";
+import type { BlockNumbers, JudgedBlock, VerdictCounts } from "../../shared/numerics/types.ts";
+import { judgeBlock } from "../../shared/numerics/verdict/judgeBlock.ts";
+import { costsOf, detailsOf } from "./blockDetails.ts";
+import { Complaints } from "./complaints.ts";
+import { decodeBlock } from "./decodeBlock.ts";
+import { inflateBody } from "./inflateBody.ts";
+import { parseJson } from "./parseJson.ts";
+import { PLANE_KIND } from "./planes.ts";
+import type { PlaneTiles } from "./planes.ts";
+import { resolutionBins } from "./resolutionBins.ts";
+import type { ResolutionBins } from "./resolutionBins.ts";
+import { invalid, readSkeleton } from "./skeleton.ts";
+import type { SkeletonBlock, SkeletonDocument } from "./skeleton.ts";
+import { TileSet } from "./tileSet.ts";
+import type { PackedTiles } from "./tileSet.ts";
+
+export interface Posting {
+  readonly body: Uint8Array;
+  readonly encoding: "identity" | "gzip";
+  readonly limits: Limits;
+  readonly tolerances: Tolerances;
+}
+
+/** A posting, decoded, checked and judged, ready to be stored. */
+export interface JudgedPosting {
+  readonly header: Omit<SkeletonDocument, "blocks">;
+  /** SHA-256 of the decoded body. */
+  readonly bodyHash: Uint8Array;
+  readonly bytes: number;
+  readonly blocks: readonly JudgedPostedBlock[];
+  readonly tiles: PackedTiles;
+}
+
+export interface JudgedPostedBlock {
+  readonly model: string;
+  readonly point: string;
+  readonly output: string;
+  readonly input: string;
+  readonly snapshot: PostedSnapshot;
+  /** JSON of BlockDetails, and its SHA-256. */
+  readonly details: string;
+  readonly detailsHash: Uint8Array;
+  /** JSON of BlockCosts, or null. */
+  readonly costs: string | null;
+}
+
+/** The judged numbers of a block; planes are indices into the posting's tiles. */
+export interface PostedSnapshot {
+  readonly hash: Uint8Array;
+  readonly rows: number;
+  readonly columns: number;
+  readonly planes: readonly PlaneTiles<number>[];
+  readonly rtol: number;
+  readonly floor: number;
+  readonly counts: VerdictCounts;
+  readonly worst: StoredWorst | null;
+  readonly resolutions: ResolutionBins;
+}
+
+/** The entry to show first, as it stands in the record. */
+export interface StoredWorst {
+  readonly row: number;
+  readonly column: number;
+  readonly verdict: Verdict;
+  readonly error: WireNumber | null;
+  readonly derivative: WireNumber;
+  readonly reference: WireNumber | null;
+  readonly uncertainty: WireNumber | null;
+}
+
+/**
+ * One posting from its bytes to judged blocks. Pure; runs in a worker. Blocks are decoded, judged and cut into tiles
+ * one after another, and let go, so that the peak is one parsed document and its tiles.
+ * @throws RejectedPosting with everything that is wrong with the document.
+ */
+export function judgePosting(posting: Posting): JudgedPosting {
+  const bytes = inflateBody(posting.body, posting.encoding, posting.limits.decodedBytes);
+  const bodyHash = createHash("sha256").update(bytes).digest();
+  const document = readSkeleton(parseJson(bytes), posting.limits);
+  const complaints = new Complaints();
+  const names = new Map<string, number>();
+  const tiles = new TileSet();
+  const judged: JudgedPostedBlock[] = [];
+  document.blocks.forEach((block, at) => {
+    const path = ["blocks", at];
+    const twin = names.get(nameKey(block));
+    if (twin !== undefined) complaints.add(path, `is the same block as number ${twin} of this document`);
+    names.set(nameKey(block), at);
+    const numbers = decodeBlock(block, path, complaints);
+    block.derivative.values = null;
+    if (!complaints.any) judged.push(judgeAndCut(block, numbers, posting.tolerances, tiles));
+    block.references = [];
+  });
+  if (complaints.any) throw invalid(complaints);
+  const { format, commit, history, lane, run, shard } = document;
+  const header = { format, commit, history, lane, run, shard };
+  return { header, bodyHash, bytes: bytes.byteLength, blocks: judged, tiles: tiles.pack() };
+}
+
+function nameKey(block: SkeletonBlock): string {
+  return JSON.stringify([block.model, block.point, block.output.name, block.input.name]);
+}
+
+function judgeAndCut(
+  block: SkeletonBlock,
+  numbers: BlockNumbers,
+  tolerances: Tolerances,
+  tiles: TileSet,
+): JudgedPostedBlock {
+  const judged = judgeBlock(numbers, tolerances);
+  const planes = cutPlanes(numbers, judged, tiles);
+  const details = JSON.stringify(detailsOf(block, numbers, judged));
+  const costs = costsOf(block);
+  return {
+    model: block.model,
+    point: block.point,
+    output: block.output.name,
+    input: block.input.name,
+    snapshot: {
+      hash: snapshotHash(numbers, judged, planes, tiles),
+      rows: numbers.rows,
+      columns: numbers.columns,
+      planes,
+      rtol: tolerances.rtol,
+      floor: judged.floor,
+      counts: judged.counts,
+      worst: storedWorst(judged, numbers.columns),
+      resolutions: resolutionBins(judged.resolution),
+    },
+    details,
+    detailsHash: createHash("sha256").update(details).digest(),
+    costs: costs && JSON.stringify(costs),
+  };
+}
+
+function cutPlanes(numbers: BlockNumbers, judged: JudgedBlock, tiles: TileSet): PlaneTiles<number>[] {
+  const planes = [
+    tiles.addPlane("derivative", numbers.derivative),
+    tiles.addPlane("reference", judged.best.value),
+    tiles.addPlane("resolution", judged.resolution),
+    tiles.addPlane("verdict", judged.verdict),
+    tiles.addPlane("source", judged.best.source),
+    tiles.addPlane("step", judged.best.step),
+  ];
+  if (numbers.outputValues) planes.push(tiles.addPlane("outputValues", numbers.outputValues));
+  if (numbers.inputValues) planes.push(tiles.addPlane("inputValues", numbers.inputValues));
+  numbers.references.forEach((reference, r) => {
+    reference.steps.forEach((step, s) => planes.push(tiles.addPlane("posted", step.values, r, s)));
+  });
+  return planes;
+}
+
+/** Follows from the numbers and tolerances alone, not from what the record holds already. */
+function snapshotHash(
+  numbers: BlockNumbers,
+  judged: JudgedBlock,
+  planes: readonly PlaneTiles<number>[],
+  tiles: TileSet,
+): Uint8Array {
+  const { rtol, floorRel, floorAbs } = judged.tolerances;
+  const hash = createHash("sha256");
+  hash.update(JSON.stringify([numbers.rows, numbers.columns, rtol, floorRel, floorAbs]));
+  for (const plane of planes) {
+    hash.update(Uint32Array.of(PLANE_KIND[plane.name], plane.reference, plane.step, plane.tiles.length));
+    for (const tile of plane.tiles) hash.update(tiles.hashAt(tile));
+  }
+  return hash.digest();
+}
+
+function storedWorst(judged: JudgedBlock, columns: number): StoredWorst | null {
+  const { worst } = judged;
+  if (worst === null) return null;
+  const orNull = (value: number) => (Number.isNaN(value) ? null : toWire(value));
+  return {
+    row: worst.row,
+    column: worst.column,
+    verdict: VERDICTS[judged.verdict[worst.row * columns + worst.column]],
+    error: orNull(worst.error),
+    derivative: toWire(worst.derivative),
+    reference: orNull(worst.reference),
+    uncertainty: orNull(worst.uncertainty),
+  };
+}
