@@ -1,0 +1,84 @@
+import { VERDICT_CODE } from "../../shared/domain/vocabulary.ts";
+import { partitionEntries } from "../../shared/history/partitionEntries.ts";
+import type { Test } from "../../shared/history/types.ts";
+import type { Reader } from "../db/reader.ts";
+import { loadLaneBuilds } from "../record/laneBuilds.ts";
+import { loadSnapshots, loadSparsePlanes } from "../record/readPlanes.ts";
+import type { SnapshotPlanes } from "../record/readPlanes.ts";
+import { loadEverBad } from "./everBad.ts";
+
+/** Entries of one block with the same history of tests. */
+export interface TestedEntries {
+  readonly blockId: number;
+  /** Flat indices, ascending. */
+  readonly entries: Uint32Array;
+  /** By sha: only commits that test the entries. */
+  readonly tests: ReadonlyMap<string, Test>;
+}
+
+/**
+ * What the builds of a lane say of every entry that was ever bad, as classes of equal history. Reads one verdict tile
+ * for each *distinct* snapshot that holds such entries, however many builds share it.
+ */
+export async function loadLaneTests(reader: Reader, laneId: number): Promise<TestedEntries[]> {
+  const everBad = await loadEverBad(reader, laneId);
+  if (everBad.size === 0) return [];
+  const { speaking } = await loadLaneBuilds(reader, laneId);
+  const shaOf = new Map([...speaking.values()].map((build) => [build.id, build.sha]));
+  const rows = await reader.select<{ blockId: number; buildId: number; snapshotId: number }>(
+    `SELECT blockId, buildId, snapshotId FROM build_blocks
+     WHERE blockId IN (SELECT value FROM json_each($1)) AND buildId IN (SELECT value FROM json_each($2))`,
+    [JSON.stringify([...everBad.keys()]), JSON.stringify([...shaOf.keys()])],
+  );
+  const snapshots = await loadSnapshots(
+    reader,
+    rows.map((row) => row.snapshotId),
+  );
+  const classes: TestedEntries[] = [];
+  for (const [blockId, entries] of everBad) {
+    const builds = rows.filter((row) => row.blockId === blockId);
+    classes.push(...(await classesOf(reader, blockId, entries, builds, snapshots, shaOf)));
+  }
+  return classes;
+}
+
+async function classesOf(
+  reader: Reader,
+  blockId: number,
+  everBad: Uint32Array,
+  builds: readonly { buildId: number; snapshotId: number }[],
+  snapshots: ReadonlyMap<number, SnapshotPlanes>,
+  shaOf: ReadonlyMap<number, string>,
+): Promise<TestedEntries[]> {
+  const distinct = [...new Set(builds.map((build) => build.snapshotId))];
+  const verdicts = await gatherVerdicts(reader, everBad, distinct, snapshots);
+  const planeOf = new Map(distinct.map((id, at) => [id, at]));
+  return partitionEntries(verdicts).map(({ entries, tests }) => {
+    const bySha = new Map<string, Test>();
+    for (const { buildId, snapshotId } of builds) {
+      const test = tests[planeOf.get(snapshotId) as number];
+      if (test !== null) bySha.set(shaOf.get(buildId) as string, test);
+    }
+    return { blockId, entries: entries.map((at) => everBad[at]), tests: bySha };
+  });
+}
+
+/** The snapshot has another shape and no such entry. */
+const NO_VERDICT = VERDICT_CODE.unreferenced;
+
+async function gatherVerdicts(
+  reader: Reader,
+  everBad: Uint32Array,
+  distinct: readonly number[],
+  snapshots: ReadonlyMap<number, SnapshotPlanes>,
+): Promise<Uint8Array[]> {
+  const wanted = distinct.map((id) => {
+    const snapshot = snapshots.get(id) as SnapshotPlanes;
+    const size = snapshot.rows * snapshot.columns;
+    return { snapshot, size, entries: everBad.filter((entry) => entry < size) };
+  });
+  const planes = await loadSparsePlanes(reader, wanted, ["verdict"]);
+  return planes.map(({ verdict }, at) =>
+    Uint8Array.from(everBad, (entry) => (entry < wanted[at].size ? verdict.at(entry) : NO_VERDICT)),
+  );
+}
