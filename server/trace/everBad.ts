@@ -5,13 +5,24 @@ import { packEntries, unionEntries, unpackEntries } from "../record/entryList.ts
 import { loadPlane, loadSnapshots } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
 
-/** Entries of each block of the lane that were bad in any of its builds: only these have to be traced. */
-export async function loadEverBad(reader: Reader, laneId: number): Promise<Map<number, Uint32Array>> {
-  const rows = await reader.select<{ blockId: number; everBad: Buffer }>(
-    "SELECT blockId, everBad FROM drift_states WHERE laneId = $1 ORDER BY blockId",
+/**
+ * Entries of a block that were bad in some build of the lane: only these have to be traced. An index names an entry
+ * only together with the number of columns it was made with: a block posted with another number has other entries.
+ */
+export interface EverBad {
+  readonly blockId: number;
+  readonly columns: number;
+  /** Flat row-major indices, ascending. */
+  readonly entries: Uint32Array;
+}
+
+export async function loadEverBad(reader: Reader, laneId: number): Promise<EverBad[]> {
+  const rows = await reader.select<{ blockId: number; columns: number; everBad: Buffer }>(
+    `SELECT blockId, columnCount AS columns, everBad FROM drift_states WHERE laneId = $1
+     ORDER BY blockId, columnCount`,
     [laneId],
   );
-  return new Map(rows.map(({ blockId, everBad }) => [blockId, unpackEntries(everBad)]));
+  return rows.map(({ blockId, columns, everBad }) => ({ blockId, columns, entries: unpackEntries(everBad) }));
 }
 
 /** Adds the bad entries of one build. A union, so that the order of builds does not matter. */
@@ -28,13 +39,15 @@ export async function addEverBad(w: Writer, laneId: number, buildId: number): Pr
     rows.map((row) => row.snapshotId),
   );
   for (const { blockId, snapshotId } of rows) {
-    const known = before.get(blockId) ?? new Uint32Array(0);
-    const bad = await loadBadEntries(w, snapshots.get(snapshotId) as SnapshotPlanes);
-    const union = unionEntries(known, bad);
+    const snapshot = snapshots.get(snapshotId) as SnapshotPlanes;
+    const { columns } = snapshot;
+    const known = before.find((state) => state.blockId === blockId && state.columns === columns)?.entries;
+    const union = unionEntries(known ?? new Uint32Array(0), await loadBadEntries(w, snapshot));
     if (union === known) continue;
-    await w.run("INSERT OR REPLACE INTO drift_states (laneId, blockId, everBad) VALUES ($1, $2, $3)", [
+    await w.run("INSERT OR REPLACE INTO drift_states (laneId, blockId, columnCount, everBad) VALUES ($1, $2, $3, $4)", [
       laneId,
       blockId,
+      columns,
       packEntries(union),
     ]);
   }

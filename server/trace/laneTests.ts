@@ -6,10 +6,12 @@ import { loadLaneBuilds } from "../record/laneBuilds.ts";
 import { loadSnapshots, loadSparsePlanes } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
 import { loadEverBad } from "./everBad.ts";
+import type { EverBad } from "./everBad.ts";
 
 /** Entries of one block with the same history of tests. */
 export interface TestedEntries {
   readonly blockId: number;
+  readonly columns: number;
   /** Flat indices, ascending. */
   readonly entries: Uint32Array;
   /** By sha: only commits that test the entries. */
@@ -22,36 +24,37 @@ export interface TestedEntries {
  */
 export async function loadLaneTests(reader: Reader, laneId: number): Promise<TestedEntries[]> {
   const everBad = await loadEverBad(reader, laneId);
-  if (everBad.size === 0) return [];
+  if (everBad.length === 0) return [];
   const { speaking } = await loadLaneBuilds(reader, laneId);
   const shaOf = new Map([...speaking.values()].map((build) => [build.id, build.sha]));
   const rows = await reader.select<{ blockId: number; buildId: number; snapshotId: number }>(
     `SELECT blockId, buildId, snapshotId FROM build_blocks
      WHERE blockId IN (SELECT value FROM json_each($1)) AND buildId IN (SELECT value FROM json_each($2))`,
-    [JSON.stringify([...everBad.keys()]), JSON.stringify([...shaOf.keys()])],
+    [JSON.stringify(everBad.map((state) => state.blockId)), JSON.stringify([...shaOf.keys()])],
   );
   const snapshots = await loadSnapshots(
     reader,
     rows.map((row) => row.snapshotId),
   );
   const classes: TestedEntries[] = [];
-  for (const [blockId, entries] of everBad) {
-    const builds = rows.filter((row) => row.blockId === blockId);
-    classes.push(...(await classesOf(reader, blockId, entries, builds, snapshots, shaOf)));
+  for (const state of everBad) {
+    const builds = rows.filter(
+      (row) => row.blockId === state.blockId && snapshots.get(row.snapshotId)?.columns === state.columns,
+    );
+    classes.push(...(await classesOf(reader, state, builds, snapshots, shaOf)));
   }
   return classes;
 }
 
 async function classesOf(
   reader: Reader,
-  blockId: number,
-  everBad: Uint32Array,
+  state: EverBad,
   builds: readonly { buildId: number; snapshotId: number }[],
   snapshots: ReadonlyMap<number, SnapshotPlanes>,
   shaOf: ReadonlyMap<number, string>,
 ): Promise<TestedEntries[]> {
   const distinct = [...new Set(builds.map((build) => build.snapshotId))];
-  const verdicts = await gatherVerdicts(reader, everBad, distinct, snapshots);
+  const verdicts = await gatherVerdicts(reader, state.entries, distinct, snapshots);
   const planeOf = new Map(distinct.map((id, at) => [id, at]));
   return partitionEntries(verdicts).map(({ entries, tests }) => {
     const bySha = new Map<string, Test>();
@@ -59,11 +62,12 @@ async function classesOf(
       const test = tests[planeOf.get(snapshotId) as number];
       if (test !== null) bySha.set(shaOf.get(buildId) as string, test);
     }
-    return { blockId, entries: entries.map((at) => everBad[at]), tests: bySha };
+    const { blockId, columns } = state;
+    return { blockId, columns, entries: entries.map((at) => state.entries[at]), tests: bySha };
   });
 }
 
-/** The snapshot has another shape and no such entry. */
+/** A snapshot with fewer rows says nothing of the entries below. */
 const NO_VERDICT = VERDICT_CODE.unreferenced;
 
 async function gatherVerdicts(

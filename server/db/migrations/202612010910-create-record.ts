@@ -119,8 +119,9 @@ CREATE INDEX build_blocks_block ON build_blocks (blockId, buildId);
 CREATE TABLE drift_states (
   laneId INTEGER NOT NULL REFERENCES lanes(id) ON DELETE CASCADE,
   blockId INTEGER NOT NULL REFERENCES blocks(id) ON DELETE CASCADE,
+  columnCount INTEGER NOT NULL,
   everBad BLOB NOT NULL,
-  PRIMARY KEY (laneId, blockId)
+  PRIMARY KEY (laneId, blockId, columnCount)
 ) WITHOUT ROWID;
 CREATE TABLE breaks (
   id INTEGER PRIMARY KEY AUTOINCREMENT,
@@ -150,8 +151,9 @@ CREATE INDEX breaks_lane ON breaks (laneId, withdrawnAt);
 CREATE TABLE break_entries (
   breakId INTEGER NOT NULL REFERENCES breaks(id) ON DELETE CASCADE,
   blockId INTEGER NOT NULL REFERENCES blocks(id) ON DELETE CASCADE,
+  columnCount INTEGER NOT NULL,
   entries BLOB NOT NULL,
-  PRIMARY KEY (breakId, blockId)
+  PRIMARY KEY (breakId, blockId, columnCount)
 ) WITHOUT ROWID;
 CREATE TABLE comments (
   id INTEGER PRIMARY KEY AUTOINCREMENT,
