@@ -1,0 +1,22 @@
+import "@fontsource-variable/atkinson-hyperlegible-next/wght.css";
+import "@fontsource-variable/atkinson-hyperlegible-next/wght-italic.css";
+import "@fontsource-variable/atkinson-hyperlegible-mono/wght.css";
+import { PiniaColada } from "@pinia/colada";
+import { createPinia } from "pinia";
+import { createApp } from "vue";
+import { onSessionEnded } from "./api/client.ts";
+import App from "./App.vue";
+import { vuetify } from "./plugins/vuetify.ts";
+import { router } from "./router/index.ts";
+import { signInAgain } from "./router/signInAgain.ts";
+import { usePreferencesStore } from "./stores/preferences.ts";
+import "./styles/index.css";
+
+const app = createApp(App);
+app.use(createPinia());
+app.use(PiniaColada, { queryOptions: { staleTime: 15_000 } });
+app.use(vuetify);
+usePreferencesStore();
+onSessionEnded(() => signInAgain(router));
+app.use(router);
+app.mount("#app");
