@@ -6,6 +6,8 @@ export interface ProjectGraph {
   readonly graph: CommitGraph;
   /** Newest commit told of each branch. */
   readonly tips: ReadonlyMap<string, string>;
+  /** Newest commit told of the default branch, or null before any was. */
+  readonly defaultTip: string | null;
   /** Commits of the default branch: ancestors-or-self of any commit told of it. */
   readonly mainline: ReadonlySet<string>;
 }
@@ -59,7 +61,7 @@ function branchesOf(
   graph: CommitGraph,
   rows: readonly { sha: string; branch: string }[],
   defaultBranch: string,
-): Pick<ProjectGraph, "tips" | "mainline"> {
+): Omit<ProjectGraph, "graph"> {
   const places = new Map<string, number[]>();
   for (const { sha, branch } of rows) {
     const list = places.get(branch);
@@ -72,7 +74,7 @@ function branchesOf(
   marks.forEach((mark, place) => {
     if (mark) mainline.add(graph.shaAt(place));
   });
-  return { tips, mainline };
+  return { tips, mainline, defaultTip: tips.get(defaultBranch) ?? null };
 }
 
 const newest = (places: readonly number[]) => places.reduce((a, b) => Math.max(a, b), -1);

@@ -1,0 +1,81 @@
+import { DEFAULT_GATE_POLICY } from "../../../shared/domain/vocabulary.ts";
+import type { GatePolicy } from "../../../shared/domain/vocabulary.ts";
+import { decideGate } from "../../../shared/history/decideGate.ts";
+import { nearestJudgedAncestor } from "../../../shared/history/nearestJudgedAncestor.ts";
+import type { GateBlock, GateOutcome } from "../../../shared/history/types.ts";
+import type { Reader } from "../../db/reader.ts";
+import { loadGraph } from "../../record/commitGraph.ts";
+import { findLane, loadLaneBuilds } from "../../record/laneBuilds.ts";
+import { loadGateEntries } from "./loadGateEntries.ts";
+
+export interface GateQuestion {
+  readonly project: { readonly id: number; readonly policy: Partial<GatePolicy> };
+  readonly lane: string;
+  readonly commit: string;
+  /** Null for the newest judged ancestor on the default branch. */
+  readonly base: string | null;
+}
+
+export interface GateAnswer extends GateOutcome {
+  readonly base: string | null;
+  /** The build that was asked about. */
+  readonly buildId: number | null;
+}
+
+/** A block of a build as the gate looks at it. */
+export interface GateBlockRow extends GateBlock {
+  readonly snapshotId: number;
+  readonly bad: number;
+  readonly output: string;
+  readonly input: string;
+  readonly point: string;
+}
+
+/** Loads what the gate has to know of a commit and its base, and decides. */
+export async function loadGate(reader: Reader, question: GateQuestion, now: number): Promise<GateAnswer> {
+  const { project, lane, commit } = question;
+  const policy = { ...DEFAULT_GATE_POLICY, ...project.policy };
+  const laneId = await findLane(reader, project.id, lane);
+  const { graph, mainline } = await loadGraph(reader, project.id);
+  const { speaking } = laneId === null ? { speaking: new Map<string, never>() } : await loadLaneBuilds(reader, laneId);
+  const onMainline = (sha: string) => mainline.has(sha) && speaking.has(sha);
+  const base = question.base ?? nearestJudgedAncestor(graph, commit, onMainline);
+  const headId = speaking.get(commit)?.id ?? null;
+  if (laneId === null || headId === null) {
+    const state = laneId !== null && (await isReceiving(reader, laneId, commit)) ? "receiving" : null;
+    const nothing = { head: [], baseBlocks: [], bad: [] };
+    return { ...decideGate({ lane, commit, base, state, policy, ...nothing }), base, buildId: null };
+  }
+  const head = await loadBlocks(reader, headId);
+  const baseId = base === null ? null : (speaking.get(base)?.id ?? null);
+  const baseBlocks = baseId === null ? [] : await loadBlocks(reader, baseId);
+  const place = { projectId: project.id, lane, laneId, commit };
+  const bad = await loadGateEntries(reader, place, head, baseBlocks, now);
+  const outcome = decideGate({ lane, commit, base, state: "complete", head, baseBlocks, bad, policy });
+  return { ...outcome, base, buildId: headId };
+}
+
+async function isReceiving(reader: Reader, laneId: number, sha: string): Promise<boolean> {
+  const rows = await reader.select(
+    `SELECT 1 FROM builds b JOIN commits c ON c.id = b.commitId
+     WHERE b.laneId = $1 AND c.sha = $2 AND b.state = 'receiving' LIMIT 1`,
+    [laneId, sha],
+  );
+  return rows.length > 0;
+}
+
+async function loadBlocks(reader: Reader, buildId: number): Promise<GateBlockRow[]> {
+  const rows = await reader.select<Omit<GateBlockRow, "blockId" | "block"> & { blockId: number }>(
+    `SELECT bb.blockId, bb.snapshotId, b.model, b.output, b.input, b.point,
+       s.unreferenced, s.unresolved, s.disagrees + s.invalid AS bad, s.rowCount * s.columnCount AS entries
+     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId
+     WHERE bb.buildId = $1`,
+    [buildId],
+  );
+  return rows.map((row) => ({ ...row, blockId: String(row.blockId), block: blockName(row) }));
+}
+
+/** As people read it; the point is told only where it is not the usual one. */
+function blockName({ output, input, point }: { output: string; input: string; point: string }): string {
+  return point === "nominal" ? `${output} by ${input}` : `${output} by ${input} at ${point}`;
+}

@@ -1,0 +1,61 @@
+import { containedInGood } from "../../shared/history/containedInGood.ts";
+import { goodElsewhere } from "../../shared/history/goodElsewhere.ts";
+import { nextTest } from "../../shared/history/nextTest.ts";
+import { scoreSuspects } from "../../shared/history/scoreSuspects.ts";
+import type { SuspectFacts } from "../../shared/history/types.ts";
+import type { Reader } from "../db/reader.ts";
+import type { ProjectGraph } from "../record/commitGraph.ts";
+import type { BreakDescription } from "./describeBreak.ts";
+import type { StoredTrace } from "./storedTrace.ts";
+import type { LaneBreak } from "./traceLane.ts";
+
+/** Scores a break's suspects, with reasons, and picks the commit worth building next. */
+export async function rankSuspects(
+  reader: Reader,
+  projectId: number,
+  project: ProjectGraph,
+  found: LaneBreak,
+  description: BreakDescription,
+  built: { has(sha: string): boolean },
+): Promise<StoredTrace> {
+  const { graph } = project;
+  const elsewhere = goodElsewhere(graph, found.onset, found.tests);
+  const inGood = containedInGood(graph, found.suspects, elsewhere);
+  const commits = await loadCommitFacts(reader, projectId, found.suspects);
+  const facts = found.suspects.map((sha): SuspectFacts => {
+    const commit = commits.get(sha);
+    return {
+      sha,
+      changedPaths: commit?.changedPaths ?? null,
+      author: commit?.author ?? null,
+      isOnset: sha === found.onset,
+      containedInGood: inGood.has(sha),
+    };
+  });
+  const { models, sources, motion } = description;
+  return {
+    suspects: scoreSuspects(facts, { models, sources, motion }),
+    nextTest: nextTest(graph, found.suspects, { tested: built, goodElsewhere: elsewhere }),
+    fixedBetween: found.fixedBetween,
+    historyIncomplete: found.historyIncomplete,
+    bad: found.bad,
+  };
+}
+
+async function loadCommitFacts(
+  reader: Reader,
+  projectId: number,
+  shas: readonly string[],
+): Promise<Map<string, { author: string | null; changedPaths: string[] | null }>> {
+  const rows = await reader.select<{ sha: string; authorName: string | null; changedPaths: string | null }>(
+    `SELECT sha, authorName, changedPaths FROM commits
+     WHERE projectId = $1 AND sha IN (SELECT value FROM json_each($2))`,
+    [projectId, JSON.stringify(shas)],
+  );
+  return new Map(
+    rows.map(({ sha, authorName, changedPaths }) => [
+      sha,
+      { author: authorName, changedPaths: changedPaths === null ? null : (JSON.parse(changedPaths) as string[]) },
+    ]),
+  );
+}
