@@ -8,8 +8,8 @@ export interface StoredPosting {
   readonly laneId: number;
   readonly buildId: number;
   readonly shardId: number;
-  /** True where all shards are here now. */
-  readonly complete: boolean;
+  /** True where all shards are here and the build is still to be completed. */
+  readonly allHere: boolean;
   /** The answer given before, where this body came before; null where that posting was never answered. */
   readonly repeated: { readonly answer: string | null } | null;
 }
@@ -42,7 +42,7 @@ export async function storePosting(
       laneId,
       buildId: known.id,
       shardId: repeated.id,
-      complete: known.state === "complete",
+      allHere: false,
       repeated: { answer: repeated.answer },
     };
   }
@@ -53,9 +53,7 @@ export async function storePosting(
   await storeBlocks(w, projectId, build.id, posting.blocks, posting.tiles);
   const shardId = await createShard(w, build.id, position, posting, now);
   const [{ n }] = await w.select<{ n: number }>("SELECT count(*) AS n FROM shards WHERE buildId = $1", [build.id]);
-  const complete = n === build.shardCount;
-  if (complete) await completeBuild(w, build.id, [], now);
-  return { laneId, buildId: build.id, shardId, complete, repeated: null };
+  return { laneId, buildId: build.id, shardId, allHere: n === build.shardCount, repeated: null };
 }
 
 export async function completeBuild(

@@ -17,7 +17,7 @@ export async function updateBaselines(
   w: Writer,
   laneId: number,
   graph: CommitGraph,
-  arrivedBuildId: number,
+  arrivedBuildId: number | null,
 ): Promise<Rebased[]> {
   const { all, speaking } = await loadLaneBuilds(w, laneId);
   const rebased: Rebased[] = [];

@@ -20,32 +20,33 @@ export interface Lane {
   readonly laneId: number;
 }
 
-/**
- * Brings a lane's record up to date after a build was completed: baselines, motions and breaks, all told from the
- * whole lane, so that they are the same in whatever order builds came. In the transaction that stored the build: what
- * is acknowledged is traced.
- */
-export async function settleBuild(
-  w: Writer,
-  judge: JudgePool,
-  lane: Lane,
-  buildId: number,
-  now: number,
-): Promise<void> {
-  const project = await loadGraph(w, lane.projectId);
-  for (const rebased of await updateBaselines(w, lane.laneId, project.graph, buildId)) {
-    await updateMotions(w, judge, rebased);
-  }
-  await addEverBad(w, lane.laneId, buildId);
-  await retrace(w, project, lane, now);
+/** A build that was completed just now. */
+export interface Arrival {
+  readonly laneId: number;
+  readonly buildId: number;
 }
 
-/** Tells the breaks of every lane of a project anew, after commits were added that no build came with. */
-export async function settleCommits(w: Writer, judge: JudgePool, projectId: number, now: number): Promise<void> {
+/**
+ * Brings a project's record up to date after a build was completed, or after commits alone were told: baselines,
+ * motions and breaks, all told from the whole lane, so that they are the same in whatever order builds came. Every lane
+ * is looked at, because new commits may be suspects in all of them. In the transaction that stored what is new: what is
+ * acknowledged is traced.
+ */
+export async function settleProject(
+  w: Writer,
+  judge: JudgePool,
+  projectId: number,
+  arrival: Arrival | null,
+  now: number,
+): Promise<void> {
   const project = await loadGraph(w, projectId);
-  const lanes = await w.select<{ id: number }>("SELECT id FROM lanes WHERE projectId = $1", [projectId]);
+  const lanes = await w.select<{ id: number }>("SELECT id FROM lanes WHERE projectId = $1 ORDER BY id", [projectId]);
   for (const { id: laneId } of lanes) {
-    for (const rebased of await updateBaselines(w, laneId, project.graph, 0)) await updateMotions(w, judge, rebased);
+    const buildId = arrival?.laneId === laneId ? arrival.buildId : null;
+    for (const rebased of await updateBaselines(w, laneId, project.graph, buildId)) {
+      await updateMotions(w, judge, rebased);
+    }
+    if (buildId !== null) await addEverBad(w, laneId, buildId);
     await retrace(w, project, { projectId, laneId }, now);
   }
 }

@@ -1,0 +1,73 @@
+import type { PostedBuild, SummaryCounts } from "../../../shared/schemas/build.ts";
+import type { Project } from "../../db/models/Project.ts";
+import type { Reader } from "../../db/reader.ts";
+import { loadGate } from "../gate/loadGate.ts";
+import { presentGate } from "../gate/present.ts";
+import type { GatePolicy } from "../../../shared/domain/vocabulary.ts";
+import type { StoredTrace } from "../../trace/storedTrace.ts";
+import { urlsOf } from "./urls.ts";
+
+interface BuildRow {
+  readonly id: number;
+  readonly state: "receiving" | "complete";
+  readonly lane: string;
+  readonly laneId: number;
+  readonly sha: string;
+}
+
+/** What a posting is answered: the build so far, its gate and the breaks that its commit has a part in. */
+export async function composeAnswer(
+  reader: Reader,
+  project: Project,
+  buildId: number,
+  publicUrl: string,
+  now: number,
+): Promise<PostedBuild> {
+  const urls = urlsOf(publicUrl, project.slug);
+  const [build] = await reader.select<BuildRow>(
+    `SELECT b.id, b.state, l.name AS lane, l.id AS laneId, c.sha
+     FROM builds b JOIN lanes l ON l.id = b.laneId JOIN commits c ON c.id = b.commitId WHERE b.id = $1`,
+    [buildId],
+  );
+  const policy = JSON.parse(project.policy) as Partial<GatePolicy>;
+  const question = { project: { id: project.id, policy }, lane: build.lane, commit: build.sha, base: null };
+  const gate = await loadGate(reader, question, now);
+  const id = String(build.id);
+  return {
+    build: { id, url: urls.build(id), state: build.state, lane: build.lane, commit: build.sha },
+    summary: await loadSummary(reader, buildId),
+    gate: presentGate(question, gate, urls),
+    breaks: await loadBreaks(reader, build, urls),
+  };
+}
+
+async function loadSummary(reader: Reader, buildId: number): Promise<SummaryCounts> {
+  const sum = (name: string) => `COALESCE(sum(s.${name}), 0) AS ${name}`;
+  const [summary] = await reader.select<SummaryCounts>(
+    `SELECT count(*) AS blocks, COALESCE(sum(s.rowCount * s.columnCount), 0) AS entries,
+       ${["agrees", "disagrees", "unresolved", "unreferenced", "invalid"].map(sum).join(", ")}
+     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId WHERE bb.buildId = $1`,
+    [buildId],
+  );
+  return summary;
+}
+
+async function loadBreaks(
+  reader: Reader,
+  build: BuildRow,
+  urls: ReturnType<typeof urlsOf>,
+): Promise<PostedBuild["breaks"]> {
+  const rows = await reader.select<{
+    id: number;
+    state: "open" | "repaired";
+    onset: string;
+    repairedBy: string | null;
+    trace: string;
+  }>(
+    "SELECT id, state, onset, repairedBy, trace FROM breaks WHERE laneId = $1 AND withdrawnAt IS NULL ORDER BY number",
+    [build.laneId],
+  );
+  return rows
+    .filter((row) => row.repairedBy === build.sha || (JSON.parse(row.trace) as StoredTrace).bad.includes(build.sha))
+    .map(({ id, state, onset }) => ({ id: String(id), url: urls.break(String(id)), state, onset }));
+}
