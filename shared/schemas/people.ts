@@ -28,15 +28,21 @@ export const addMember = z
 export const addedMember = z.object({ member, link: z.string().nullable() }).meta({ id: "AddedMember" });
 export const patchMember = z.strictObject({ role: z.enum(ROLES) }).meta({ id: "PatchMember" });
 
-/** What a one-time set-up or invitation link is for. */
-export const invitation = z
-  .object({
-    kind: z.enum(["setup", "invitation"]),
-    email: z.string().nullable(),
-    name: z.string().nullable(),
-    project: z.string().nullable(),
-  })
-  .meta({ id: "Invitation" });
-export const acceptInvitation = z
-  .strictObject({ name: z.string().trim().min(1).max(200), email: email.optional(), password })
-  .meta({ id: "AcceptInvitation" });
+const name = z.string().trim().min(1).max(200);
+const linkToken = z.string().min(1).max(200);
+/** Makes the first administrator, with the one-time token of the set-up link. */
+export const setUp = z.strictObject({ token: linkToken, email, name, password }).meta({ id: "SetUp" });
+export const acceptInvitation = z.strictObject({ token: linkToken, name, password }).meta({ id: "AcceptInvitation" });
+export const changePassword = z
+  .strictObject({ current: z.string().min(1).max(1000), password })
+  .meta({ id: "ChangePassword" });
+
+/** A person as an administrator sees them. */
+export const personRow = person
+  .extend({ pending: z.boolean(), disabled: z.boolean(), since: timestamp })
+  .meta({ id: "PersonRow" });
+export const patchPerson = z
+  .strictObject({ admin: z.boolean().optional(), disabled: z.boolean().optional() })
+  .meta({ id: "PatchPerson" });
+/** A one-time address at which the person sets a (new) password; shown once. */
+export const oneTimeLink = z.object({ link: z.string() }).meta({ id: "OneTimeLink" });

@@ -44,6 +44,10 @@ CREATE TABLE invitations (
   usedAt INTEGER
 );
 CREATE INDEX invitations_user ON invitations (userId);
+CREATE TABLE ended_sessions (
+  sessionId TEXT PRIMARY KEY,
+  expiresAt INTEGER NOT NULL
+) WITHOUT ROWID;
 CREATE TABLE tokens (
   id INTEGER PRIMARY KEY AUTOINCREMENT,
   projectId INTEGER NOT NULL REFERENCES projects(id) ON DELETE CASCADE,
@@ -72,7 +76,7 @@ CREATE TABLE audit_entries (
 CREATE INDEX audit_entries_project ON audit_entries (projectId, id);
 `;
 
-const TABLES = ["audit_entries", "tokens", "invitations", "memberships", "projects", "users"];
+const TABLES = ["audit_entries", "tokens", "ended_sessions", "invitations", "memberships", "projects", "users"];
 
 export async function up(query: QueryInterface): Promise<void> {
   await statements(query, UP);

@@ -5,6 +5,7 @@ import { Break } from "./Break.ts";
 import { Build } from "./Build.ts";
 import { Comment } from "./Comment.ts";
 import { Commit } from "./Commit.ts";
+import { EndedSession } from "./EndedSession.ts";
 import { Invitation } from "./Invitation.ts";
 import { Lane } from "./Lane.ts";
 import { Membership } from "./Membership.ts";
@@ -23,6 +24,7 @@ const MODELS = [
   Build,
   Comment,
   Commit,
+  EndedSession,
   Invitation,
   Lane,
   Membership,

@@ -1,0 +1,36 @@
+import { z } from "zod";
+import { defineRoute } from "../http/defineRoute.ts";
+import type { Route } from "../http/defineRoute.ts";
+import { openApiDocument } from "../http/openapi.ts";
+import { routes as audit } from "./audit/routes.ts";
+import { routes as invitations } from "./invitations/routes.ts";
+import { routes as members } from "./members/routes.ts";
+import { routes as people } from "./people/routes.ts";
+import { routes as projects } from "./projects/routes.ts";
+import { routes as session } from "./session/routes.ts";
+import { routes as tokens } from "./tokens/routes.ts";
+import { routes as waivers } from "./waivers/routes.ts";
+
+const document = defineRoute({
+  method: "get",
+  path: "/openapi.json",
+  summary: "This document",
+  tag: "Operations",
+  auth: "anyone",
+  can: null,
+  response: z.looseObject({ openapi: z.string() }).meta({ id: "OpenApi" }),
+  handler: async ({ context }) => openApiDocument(ROUTES, context.config.publicUrl) as { openapi: string },
+});
+
+/** Every route of the API, in the order of the document. */
+export const ROUTES: readonly Route[] = [
+  ...session,
+  ...invitations,
+  ...projects,
+  ...members,
+  ...tokens,
+  ...waivers,
+  ...audit,
+  ...people,
+  document,
+];
