@@ -5,6 +5,7 @@ import { createApp } from "./app.ts";
 import type { Config } from "./config.ts";
 import { closeContext, createContext } from "./context.ts";
 import type { Context } from "./context.ts";
+import { completePending } from "./features/builds/complete.ts";
 import { ensureAdministrator } from "./features/invitations/firstAdministrator.ts";
 
 export interface RunningServer {
@@ -24,6 +25,8 @@ const LINGER_MS = 2000;
 export async function startServer(config: Config): Promise<RunningServer> {
   const context = await createContext(config);
   const setUpLink = await ensureAdministrator(context);
+  // Before anything new comes: what was acknowledged but not judged against its lane when the server was stopped.
+  await completePending(context);
   const server = createServer(createApp(context));
   // A posting of the allowed size may take longer than node's five minutes on a slow line.
   server.requestTimeout = 30 * 60 * 1000;

@@ -3,6 +3,8 @@ import { defineRoute } from "../http/defineRoute.ts";
 import type { Route } from "../http/defineRoute.ts";
 import { openApiDocument } from "../http/openapi.ts";
 import { routes as audit } from "./audit/routes.ts";
+import { routes as builds } from "./builds/routes.ts";
+import { routes as gate } from "./gate/routes.ts";
 import { routes as invitations } from "./invitations/routes.ts";
 import { routes as members } from "./members/routes.ts";
 import { routes as people } from "./people/routes.ts";
@@ -27,6 +29,8 @@ export const ROUTES: readonly Route[] = [
   ...session,
   ...invitations,
   ...projects,
+  ...builds,
+  ...gate,
   ...members,
   ...tokens,
   ...waivers,
