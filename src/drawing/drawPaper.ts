@@ -86,7 +86,7 @@ function lineNames(c: CanvasRenderingContext2D, g: StripGeometry, palette: Palet
     c.fillStyle = colour;
     c.fillText(text, x, y + 0.5);
   };
-  if (g.width >= 600) {
+  if (g.width >= 600 && g.foot - g.top > 110) {
     c.font = textFont(11);
     for (const { name, at } of LANDMARKS) write(name, g.left + (name === "binary32" ? 118 : 10), at, palette.quiet);
   }

@@ -9,9 +9,10 @@ import { projectPath } from "./projects.ts";
 
 export type AddedMember = z.infer<typeof addedMember>;
 
-export const useMembers = (project: () => string) =>
+export const useMembers = (project: () => string, enabled: () => boolean = () => true) =>
   useQuery({
     key: () => keys.members(project()),
+    enabled,
     query: ({ signal }) => everyPage<Member>(`${projectPath(project())}/members`, { signal }),
   });
 
