@@ -1,3 +1,4 @@
+import { mkdir } from "node:fs/promises";
 import { openDatabase } from "./db/database.ts";
 import type { Database } from "./db/database.ts";
 import type { Config } from "./config.ts";
@@ -29,6 +30,8 @@ export interface Context {
 }
 
 export async function createContext(config: Config, logger: Logger = createLogger(config.logLevel)): Promise<Context> {
+  // Password hashes and the record are nobody's else on this machine.
+  await mkdir(config.dataFolder, { recursive: true, mode: 0o700 });
   const secret = keptSecret(config);
   const db = await openDatabase(config.databaseFile);
   let draining = false;

@@ -5,7 +5,12 @@ import { startServer } from "./start.ts";
 /** A posting under way may take this long to finish before the process ends without it. */
 const GRACE_MS = 120_000;
 
-const server = await startServer(readConfig());
+const config = readConfig();
+const server = await startServer(config).catch((error: NodeJS.ErrnoException) => {
+  if (error.code !== "EADDRINUSE" && error.code !== "EACCES") throw error;
+  process.stderr.write(`Cannot listen at ${config.host}:${config.port} (${error.code}). Set PORT to another.\n`);
+  process.exit(1);
+});
 const { logger } = server.context;
 logger.info({ url: server.url }, "listening");
 if (server.setUpLink !== null) {

@@ -1,12 +1,11 @@
 import { createHmac, randomBytes } from "node:crypto";
-import { mkdirSync, readFileSync, writeFileSync } from "node:fs";
+import { readFileSync, writeFileSync } from "node:fs";
 import { join } from "node:path";
 import type { Config } from "./config.ts";
 
 /** The configured secret, or the one kept in the data folder, made on first use (32 random bytes, readable by its owner only). */
 export function keptSecret(config: Config): string {
   if (config.secret !== null) return config.secret;
-  mkdirSync(config.dataFolder, { recursive: true });
   const file = join(config.dataFolder, "secret");
   try {
     writeFileSync(file, `${randomBytes(32).toString("hex")}\n`, { mode: 0o600, flag: "wx" });

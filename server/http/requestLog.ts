@@ -22,8 +22,9 @@ export function requestLog(logger: Logger) {
     quietReqLogger: true,
     customAttributeKeys: { reqId: "requestId" },
     autoLogging: { ignore: (request) => QUIET.test(request.url ?? "") },
-    customLogLevel: (_request, response, error) =>
-      error !== undefined || response.statusCode >= 500 ? "error" : "info",
+    customLogLevel: (_request, response) => (response.statusCode >= 500 ? "warn" : "info"),
+    // The problem handler tells errors in full; an error made up from the status says nothing more.
+    customErrorObject: (_request, _response, _error, { err: _err, ...line }: Record<string, unknown>) => line,
     serializers: {
       req: (request: { method: string; url: string }) => ({ method: request.method, url: request.url }),
       res: (response: { statusCode: number }) => ({ status: response.statusCode }),

@@ -30,7 +30,7 @@ export async function callerOfToken(context: Context, text: string): Promise<Tok
 
 /** Queued behind what is being written; nobody waits for it. */
 function noteUse(context: Context, id: number, at: number): void {
-  context.db
-    .write((writer) => writer.update(Token, { lastUsedAt: at }, { id }))
-    .catch((error: unknown) => context.logger.warn({ err: error, token: id }, "last use of a token not noted"));
+  context.background("note the use of a token", () =>
+    context.db.write((writer) => writer.update(Token, { lastUsedAt: at }, { id })),
+  );
 }
