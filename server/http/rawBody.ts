@@ -1,7 +1,6 @@
-import express from "express";
 import type { Request, Response } from "express";
 import type { z } from "zod";
-import { UnsupportedMedia } from "./problem.ts";
+import { MalformedRequest, PayloadTooLarge, UnsupportedMedia } from "./problem.ts";
 
 /** A body that the handler decodes itself, off the event loop; the schema is for the document. */
 export interface RawBody {
@@ -22,12 +21,13 @@ export function raw(options: { readonly describedBy: z.ZodType }): RawBody {
 export type BodyReader<T> = (request: Request, response: Response) => Promise<T>;
 
 /**
- * Reads whole bodies of at most `maxBytes` as sent.
- * @throws UnsupportedMedia for another content type or encoding; body-parser's error when it is too large.
+ * Reads whole bodies of at most `maxBytes` as sent, into memory of their own that can be handed to another thread. A
+ * body that tells its length is read into its place at once: a parser that gathers pieces and joins them holds a large
+ * body twice.
+ * @throws UnsupportedMedia for another content type or encoding; PayloadTooLarge; MalformedRequest when it ends early.
  */
 export function rawBodyReader(maxBytes: number): BodyReader<RawContent> {
-  const read = express.raw({ inflate: true, limit: maxBytes, type: () => true });
-  return async (request, response) => {
+  return async (request) => {
     requireJson(request);
     const encoding = (request.headers["content-encoding"] ?? "identity").trim().toLowerCase();
     if (encoding !== "identity" && encoding !== "gzip") {
@@ -35,12 +35,39 @@ export function rawBodyReader(maxBytes: number): BodyReader<RawContent> {
         "Accept-Encoding": "gzip, identity",
       });
     }
-    // To the parser the body is as it is: what is compressed stays so.
-    delete request.headers["content-encoding"];
-    await new Promise<void>((resolve, reject) => read(request, response, (e?: unknown) => (e ? reject(e) : resolve())));
-    const bytes = Buffer.isBuffer(request.body) ? request.body : Buffer.alloc(0);
-    return { bytes, encoding };
+    return { bytes: await readBytes(request, maxBytes), encoding };
   };
+}
+
+const FIRST_GUESS = 64 * 1024;
+
+async function readBytes(request: Request, maxBytes: number): Promise<Buffer> {
+  const told = request.headers["content-length"];
+  const length = told === undefined ? null : Number(told);
+  if (length !== null && length > maxBytes) throw tooLarge(maxBytes);
+  let bytes = new Uint8Array(length ?? FIRST_GUESS);
+  let size = 0;
+  try {
+    for await (const chunk of request as AsyncIterable<Buffer>) {
+      if (size + chunk.length > maxBytes) throw tooLarge(maxBytes);
+      if (size + chunk.length > bytes.length) bytes = enlarged(bytes, size + chunk.length);
+      bytes.set(chunk, size);
+      size += chunk.length;
+    }
+  } catch (error) {
+    throw error instanceof PayloadTooLarge ? error : new MalformedRequest("The body ended before it was whole.");
+  }
+  return Buffer.from(size === bytes.length ? bytes.buffer : bytes.slice(0, size).buffer);
+}
+
+function enlarged(bytes: Uint8Array, needed: number): Uint8Array<ArrayBuffer> {
+  const larger = new Uint8Array(Math.max(needed, 2 * bytes.length));
+  larger.set(bytes);
+  return larger;
+}
+
+function tooLarge(maxBytes: number): PayloadTooLarge {
+  return new PayloadTooLarge(`The body is larger than ${maxBytes} bytes.`);
 }
 
 /** JSON is UTF-8 (RFC 8259): another charset would be read wrongly. */

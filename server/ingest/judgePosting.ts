@@ -22,7 +22,8 @@ import { TileSet } from "./tileSet.ts";
 import type { PackedTiles } from "./tileSet.ts";
 
 export interface Posting {
-  readonly body: Uint8Array;
+  /** Taken out as soon as it is read, so that a large body is not held while its blocks are judged. */
+  body: Uint8Array;
   readonly encoding: "identity" | "gzip";
   readonly limits: Limits;
   readonly tolerances: Tolerances;
@@ -81,9 +82,7 @@ export interface StoredWorst {
  * @throws RejectedPosting with everything that is wrong with the document.
  */
 export function judgePosting(posting: Posting): JudgedPosting {
-  const bytes = inflateBody(posting.body, posting.encoding, posting.limits.decodedBytes);
-  const bodyHash = createHash("sha256").update(bytes).digest();
-  const document = readSkeleton(parseJson(bytes), posting.limits);
+  const { document, bodyHash, bytes } = takeDocument(posting);
   const complaints = new Complaints();
   const names = new Map<string, number>();
   const tiles = new TileSet();
@@ -101,8 +100,17 @@ export function judgePosting(posting: Posting): JudgedPosting {
   if (complaints.any) throw invalid(complaints);
   const { format, commit, history, lane, run, shard } = document;
   const header = { format, commit, history, lane, run, shard };
-  return { header, bodyHash, bytes: bytes.byteLength, blocks: judged, tiles: tiles.pack() };
+  return { header, bodyHash, bytes, blocks: judged, tiles: tiles.pack() };
 }
+
+function takeDocument(posting: Posting): { document: SkeletonDocument; bodyHash: Uint8Array; bytes: number } {
+  const inflated = inflateBody(posting.body, posting.encoding, posting.limits.decodedBytes);
+  posting.body = NOTHING;
+  const bodyHash = createHash("sha256").update(inflated).digest();
+  return { document: readSkeleton(parseJson(inflated), posting.limits), bodyHash, bytes: inflated.byteLength };
+}
+
+const NOTHING = new Uint8Array(0);
 
 function nameKey(block: SkeletonBlock): string {
   return JSON.stringify([block.model, block.point, block.output.name, block.input.name]);

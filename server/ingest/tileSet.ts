@@ -3,72 +3,94 @@ import type { EncodedTile } from "./tiles.ts";
 import { PLANE_WIDTH } from "./planes.ts";
 import type { PlaneName, PlaneTiles } from "./planes.ts";
 
+const HASH_BYTES = 32;
+const CHUNK_BYTES = 1 << 20;
+
 /** The distinct tiles of one posting, and planes as indices into them. */
 export class TileSet {
-  readonly tiles: EncodedTile[] = [];
   private readonly indexByHash = new Map<string, number>();
+  private readonly hashes: Buffer[] = [];
+  private readonly encodings: number[] = [];
+  private readonly places: { chunk: number; start: number; end: number }[] = [];
+  private readonly chunks: Uint8Array[] = [];
+  /** Bytes taken of the last chunk. */
+  private filled = CHUNK_BYTES;
 
+  /** Cuts a plane into tiles; only those that are new are copied, so that the plane itself can be let go. */
   addPlane(name: PlaneName, values: ArrayBufferView, reference = 0, step = 0): PlaneTiles<number> {
     const bytes = new Uint8Array(values.buffer, values.byteOffset, values.byteLength);
-    const tiles = encodePlane(bytes, PLANE_WIDTH[name]).map((tile) => this.indexOf(tile));
+    const known = (hash: Buffer) => this.indexByHash.has(keyOf(hash));
+    const tiles = encodePlane(bytes, PLANE_WIDTH[name], known).map((tile) => this.indexOf(tile));
     return { name, reference, step, tiles };
   }
 
   hashAt(index: number): Buffer {
-    return this.tiles[index].hash;
+    return this.hashes[index];
   }
 
   private indexOf(tile: EncodedTile): number {
-    const key = tile.hash.toString("latin1");
+    const key = keyOf(tile.hash);
     const known = this.indexByHash.get(key);
     if (known !== undefined) return known;
-    this.tiles.push(tile);
-    this.indexByHash.set(key, this.tiles.length - 1);
-    return this.tiles.length - 1;
+    const index = this.hashes.push(tile.hash) - 1;
+    this.encodings.push(tile.encoding);
+    this.places.push(this.keep(tile.data));
+    this.indexByHash.set(key, index);
+    return index;
   }
 
-  /** All tiles in a few buffers that can be handed to another thread without copying. */
+  private keep(data: Uint8Array): { chunk: number; start: number; end: number } {
+    if (this.filled + data.length > CHUNK_BYTES) {
+      this.chunks.push(new Uint8Array(Math.max(CHUNK_BYTES, data.length)));
+      this.filled = 0;
+    }
+    const chunk = this.chunks.length - 1;
+    const start = this.filled;
+    this.chunks[chunk].set(data, start);
+    this.filled += data.length;
+    return { chunk, start, end: this.filled };
+  }
+
+  /** All tiles in a form that can be handed to another thread without copying. */
   pack(): PackedTiles {
-    const bytes = this.tiles.reduce((sum, tile) => sum + tile.data.length, 0);
-    const packed = {
-      hashes: new Uint8Array(this.tiles.length * HASH_BYTES),
-      encodings: new Uint8Array(this.tiles.length),
-      ends: new Uint32Array(this.tiles.length),
-      data: new Uint8Array(bytes),
+    const hashes = new Uint8Array(this.hashes.length * HASH_BYTES);
+    this.hashes.forEach((hash, at) => hashes.set(hash, at * HASH_BYTES));
+    return {
+      hashes,
+      encodings: Uint8Array.from(this.encodings),
+      places: Uint32Array.from(this.places.flatMap(({ chunk, start, end }) => [chunk, start, end])),
+      chunks: this.chunks,
     };
-    let end = 0;
-    this.tiles.forEach((tile, at) => {
-      packed.hashes.set(tile.hash, at * HASH_BYTES);
-      packed.encodings[at] = tile.encoding;
-      packed.data.set(tile.data, end);
-      end += tile.data.length;
-      packed.ends[at] = end;
-    });
-    this.tiles.length = 0;
-    return packed;
   }
 }
 
-const HASH_BYTES = 32;
+function keyOf(hash: Buffer): string {
+  return hash.toString("latin1");
+}
 
 export interface PackedTiles {
   readonly hashes: Uint8Array;
   readonly encodings: Uint8Array;
-  /** End of each tile in `data`. */
-  readonly ends: Uint32Array;
-  readonly data: Uint8Array;
+  /** Chunk, start and end of each tile. */
+  readonly places: Uint32Array;
+  readonly chunks: readonly Uint8Array[];
 }
 
 /** The tiles of a pack, as views. */
 export function unpackTiles(packed: PackedTiles): EncodedTile[] {
-  const { hashes, encodings, ends, data } = packed;
-  return Array.from(encodings, (encoding, at) => ({
-    encoding,
-    hash: Buffer.from(hashes.buffer, hashes.byteOffset + at * HASH_BYTES, HASH_BYTES),
-    data: Buffer.from(data.buffer, data.byteOffset + (ends[at - 1] ?? 0), ends[at] - (ends[at - 1] ?? 0)),
-  }));
+  const { hashes, encodings, places, chunks } = packed;
+  return Array.from(encodings, (encoding, at) => {
+    const [chunk, start, end] = places.subarray(at * 3, at * 3 + 3);
+    const { buffer, byteOffset } = chunks[chunk];
+    return {
+      encoding,
+      hash: Buffer.from(hashes.buffer, hashes.byteOffset + at * HASH_BYTES, HASH_BYTES),
+      data: Buffer.from(buffer, byteOffset + start, end - start),
+    };
+  });
 }
 
 export function transferListOf(packed: PackedTiles): ArrayBuffer[] {
-  return [packed.hashes, packed.encodings, packed.ends, packed.data].map((part) => part.buffer as ArrayBuffer);
+  const parts = [packed.hashes, packed.encodings, packed.places, ...packed.chunks];
+  return parts.map((part) => part.buffer as ArrayBuffer);
 }

@@ -17,32 +17,40 @@ export interface EncodedTile {
   readonly data: Buffer;
 }
 
-/** A plane is deflated only if a sample of its tiles shrinks below this share. */
-const WORTH_DEFLATING = 0.85;
-/** One tile of so many is the sample. */
+/** Tiles are deflated only where a sample shrinks below this share: full mantissas shrink by a tenth for much work. */
+const WORTH_DEFLATING = 0.75;
+/** One tile of so many is a sample. */
 const SAMPLE_EVERY = 32;
 
-/** Cuts a plane's bytes into encoded tiles of 4,096 entries. */
-export function encodePlane(bytes: Uint8Array, width: Width): EncodedTile[] {
+/**
+ * Cuts a plane's bytes into encoded tiles of 4,096 entries. Raw tiles are views of the plane; tiles that are `known`
+ * by their hash are not encoded again and carry no data.
+ */
+export function encodePlane(bytes: Uint8Array, width: Width, known: (hash: Buffer) => boolean): EncodedTile[] {
   const size = TILE_ENTRIES * width;
   const count = Math.ceil(bytes.length / size);
-  const parts = Array.from({ length: count }, (_, at) => bytes.subarray(at * size, (at + 1) * size));
-  const deflate = width === 1 || parts.some((part, at) => at % SAMPLE_EVERY === 0 && shrinks(part, width));
-  return parts.map((part) => encodeTile(part, width, deflate));
+  let deflate: boolean | null = width === 1 ? true : null;
+  return Array.from({ length: count }, (_, at) => {
+    const part = bytes.subarray(at * size, (at + 1) * size);
+    const hash = createHash("sha256").update(Uint8Array.of(width)).update(part).digest();
+    if (known(hash)) return { hash, encoding: RAW, data: NOTHING };
+    if (isConstant(part, width)) return { hash, encoding: CONSTANT, data: constant(part, width) };
+    // The first tile of a plane that has to be stored, and every 32nd after it, tells whether deflating is worth it.
+    if (width > 1 && (deflate === null || at % SAMPLE_EVERY === 0)) deflate = shrinks(part, width);
+    const data = deflate ? deflateRawSync(shuffle(part, width), { level: 1 }) : part;
+    const smaller = data.length < part.length;
+    return { hash, encoding: smaller ? SHUFFLED_DEFLATED : RAW, data: asBuffer(smaller ? data : part) };
+  });
+}
+
+const NOTHING = Buffer.alloc(0);
+
+function asBuffer(part: Uint8Array): Buffer {
+  return Buffer.from(part.buffer, part.byteOffset, part.byteLength);
 }
 
 function shrinks(part: Uint8Array, width: Width): boolean {
   return deflateRawSync(shuffle(part, width), { level: 1 }).length < WORTH_DEFLATING * part.length;
-}
-
-function encodeTile(part: Uint8Array, width: Width, deflate: boolean): EncodedTile {
-  const hash = createHash("sha256").update(Uint8Array.of(width)).update(part).digest();
-  if (isConstant(part, width)) return { hash, encoding: CONSTANT, data: constant(part, width) };
-  if (deflate) {
-    const data = deflateRawSync(shuffle(part, width), { level: 1 });
-    if (data.length < part.length) return { hash, encoding: SHUFFLED_DEFLATED, data };
-  }
-  return { hash, encoding: RAW, data: Buffer.from(part) };
 }
 
 function isConstant(part: Uint8Array, width: Width): boolean {
