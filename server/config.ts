@@ -62,7 +62,10 @@ const settings = z
     CLINOGRAPH_MAX_ENTRIES: whole(1, 1e9, DEFAULT_LIMITS.entries),
     CLINOGRAPH_MAX_BLOCKS: whole(1, 1e7, DEFAULT_LIMITS.blocks),
     CLINOGRAPH_JUDGE_THREADS: whole(1, 64, Math.max(1, availableParallelism() - 1)),
-    CLINOGRAPH_METRICS_TOKEN: z.string().min(16, "must have at least 16 characters").optional(),
+    CLINOGRAPH_METRICS_TOKEN: z
+      .string()
+      .regex(/^\S{16,}$/, "must have at least 16 characters, and no spaces")
+      .optional(),
     CLINOGRAPH_TRUSTED_PROXIES: whole(0, 10, 0),
     CLINOGRAPH_REQUESTS_PER_MINUTE: whole(0, 1e6, 3000),
     LOG_LEVEL: z.enum(LOG_LEVELS).default("info"),

@@ -4,6 +4,7 @@ import type { Context } from "../context.ts";
 import type { Project } from "../db/models/Project.ts";
 import type { Action } from "../features/policies.ts";
 import type { Anyone, Caller, PersonActor } from "./actor.ts";
+import { MAX_JSON_BYTES } from "./jsonBody.ts";
 import type { ProblemSlug } from "./problemCatalogue.ts";
 import type { RawBody, RawContent } from "./rawBody.ts";
 import type { Reply } from "./reply.ts";
@@ -61,6 +62,8 @@ interface RouteOptions<P extends string, A extends Auth, S extends z.ZodRawShape
   readonly params?: S;
   readonly query?: Q;
   readonly body?: B;
+  /** Largest JSON body, where that is not `MAX_JSON_BYTES`. */
+  readonly maxBodyBytes?: number;
   /** Null: nothing is answered (204). */
   readonly response: R;
   readonly status?: number;
@@ -84,6 +87,7 @@ export interface Route {
   readonly params: z.ZodObject | null;
   readonly query: z.ZodType | null;
   readonly body: z.ZodType | RawBody | null;
+  readonly maxBodyBytes: number;
   readonly response: z.ZodType | null;
   readonly status: number;
   readonly responses: Readonly<Record<number, { description: string; schema: z.ZodType }>>;
@@ -117,6 +121,7 @@ export function defineRoute<
     params: names.length > 0 ? z.strictObject({ ...shape, ...options.params }) : null,
     query: options.query ?? null,
     body: options.body ?? null,
+    maxBodyBytes: options.maxBodyBytes ?? MAX_JSON_BYTES,
     response: options.response,
     status: options.status ?? (options.response === null ? 204 : 200),
     responses: options.responses ?? {},

@@ -7,8 +7,8 @@ import type { BodyReader } from "./rawBody.ts";
 export const MAX_JSON_BYTES = 1024 * 1024;
 
 /** Reads small JSON bodies, with the same words for what cannot be parsed as for a build. */
-export function jsonBodyReader(): BodyReader<unknown> {
-  const read = express.raw({ limit: MAX_JSON_BYTES, type: () => true });
+export function jsonBodyReader(maxBytes: number): BodyReader<unknown> {
+  const read = express.raw({ limit: maxBytes, type: () => true });
   return async (request, response) => {
     requireJson(request);
     await new Promise<void>((resolve, reject) => read(request, response, (e?: unknown) => (e ? reject(e) : resolve())));

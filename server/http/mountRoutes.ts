@@ -13,22 +13,20 @@ import { Forbidden, MethodNotAllowed, NotFound } from "./problem.ts";
 import { requestLimiter } from "./rateLimit.ts";
 import type { Limiter } from "./rateLimit.ts";
 import { rawBodyReader } from "./rawBody.ts";
+import type { BodyReader } from "./rawBody.ts";
 import { Reply } from "./reply.ts";
 import { parseWith } from "./validate.ts";
 
-interface Readers {
-  readonly json: ReturnType<typeof jsonBodyReader>;
-  readonly raw: ReturnType<typeof rawBodyReader>;
-}
+/** Reads and checks the body that a route wants. */
+type ReadBody = BodyReader<unknown>;
 
 /** A router that serves the routes, answers 405 where only the method is wrong and 404 elsewhere. */
 export function mountRoutes(context: Context, routes: readonly Route[]): Router {
   const router = Router({ caseSensitive: true });
   const limit = requestLimiter(context.config.requestsPerMinute);
-  const readers = { json: jsonBodyReader(), raw: rawBodyReader(context.config.limits.wireBytes) };
   const methods = new Map<string, string[]>();
   for (const route of routes) {
-    router[route.method](route.path, serve(context, route, limit, readers));
+    router[route.method](route.path, serve(context, route, limit, bodyReader(context, route)));
     methods.set(route.path, [...(methods.get(route.path) ?? []), route.method.toUpperCase()]);
   }
   for (const [path, allowed] of methods) {
@@ -42,7 +40,7 @@ export function mountRoutes(context: Context, routes: readonly Route[]): Router 
   return router;
 }
 
-function serve(context: Context, route: Route, limit: Limiter, readers: Readers): RequestHandler {
+function serve(context: Context, route: Route, limit: Limiter, readBody: ReadBody): RequestHandler {
   return async (request, response) => {
     response.locals.route = route.path;
     const actor = await authenticate(context, route.auth, request);
@@ -50,7 +48,7 @@ function serve(context: Context, route: Route, limit: Limiter, readers: Readers)
     const params = readParams(route, request);
     const project = await authorise(context, route, actor, params);
     const query = route.query ? parseWith(route.query, { ...request.query }, ["query"]) : {};
-    const body = await readBody(route, readers, request, response);
+    const body = await readBody(request, response);
     const requestId = String(request.id);
     const result = await route.handler({ context, actor, params, query, body, project, request, response, requestId });
     answer(context, route, response, result instanceof Reply ? result : new Reply(route.status, result, {}));
@@ -86,10 +84,11 @@ async function authorise(context: Context, route: Route, actor: Actor, params: P
   return project;
 }
 
-async function readBody(route: Route, readers: Readers, request: Request, response: Response): Promise<unknown> {
-  if (route.body === null) return undefined;
-  if ("describedBy" in route.body) return readers.raw(request, response);
-  return parseWith(route.body, await readers.json(request, response));
+function bodyReader(context: Context, { body, maxBodyBytes }: Route): ReadBody {
+  if (body === null) return () => Promise.resolve(undefined);
+  if ("describedBy" in body) return rawBodyReader(context.config.limits.wireBytes);
+  const read = jsonBodyReader(maxBodyBytes);
+  return async (request, response) => parseWith(body, await read(request, response));
 }
 
 function answer(context: Context, route: Route, response: Response, result: Reply): void {

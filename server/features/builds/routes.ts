@@ -15,6 +15,9 @@ const buildId = z
   .regex(/^\d{1,15}$/)
   .transform(Number);
 
+/** The ten thousand commits that one request may tell, with their changed paths. */
+const MAX_HISTORY_BYTES = 16 * 1024 * 1024;
+
 export const routes: Route[] = [
   defineRoute({
     method: "post",
@@ -65,6 +68,7 @@ export const routes: Route[] = [
     auth: "caller",
     can: "commit.post",
     body: postCommits,
+    maxBodyBytes: MAX_HISTORY_BYTES,
     response: postedCommits,
     problems: ["conflict", "invalid"],
     handler: ({ context, project, body }) => postCommitHistory(context, project, body.commits),
