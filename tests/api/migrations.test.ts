@@ -1,0 +1,124 @@
+import { copyFile, readFile, rm } from "node:fs/promises";
+import { existsSync } from "node:fs";
+import { QueryTypes } from "sequelize";
+import type { Sequelize } from "sequelize";
+import { expect, it } from "vitest";
+import { connect } from "../../server/db/connection.ts";
+import { migrate, migrator } from "../../server/db/migrator.ts";
+import { MIGRATIONS } from "../../server/db/migrations/index.ts";
+import { startTestServer } from "../support/server.ts";
+
+interface Column {
+  name: string;
+  type: string;
+  notnull: number;
+  dflt_value: string | null;
+}
+
+async function tablesOf(sequelize: Sequelize): Promise<Record<string, Column[]>> {
+  const tables = await sequelize.query<{ name: string }>(
+    "SELECT name FROM sqlite_master WHERE type = 'table' AND name NOT LIKE 'sqlite_%' AND name <> 'migrations' ORDER BY name",
+    { type: QueryTypes.SELECT },
+  );
+  const shapes: Record<string, Column[]> = {};
+  for (const { name } of tables) {
+    shapes[name] = await sequelize.query<Column>(
+      `SELECT name, type, "notnull", dflt_value FROM pragma_table_info('${name}') ORDER BY name`,
+      { type: QueryTypes.SELECT },
+    );
+  }
+  return shapes;
+}
+
+const brokenReferences = (sequelize: Sequelize) =>
+  sequelize.query("PRAGMA foreign_key_check", { type: QueryTypes.SELECT });
+
+/** A file with people, projects, tokens, a build and a waiver in it. */
+async function filledFile(): Promise<string> {
+  const server = await startTestServer();
+  const { slug, tokens } = await server.seedProject("hull", { "lead@example.org": "lead" });
+  const lead = await server.agent("lead@example.org");
+  const posted = await server
+    .guest()
+    .post(`/api/v1/projects/${slug}/builds`)
+    .set("Authorization", `Bearer ${tokens.post}`)
+    .send({
+      format: "clinograph.build/1",
+      commit: { sha: "b".repeat(40), branch: "main" },
+      run: { id: "1" },
+      blocks: [
+        {
+          model: "rotor.thrust",
+          output: { name: "thrust", size: 1 },
+          input: { name: "pitch", size: 1 },
+          derivative: { method: "analytic", values: [[2]] },
+        },
+      ],
+    });
+  expect(posted.status).toBe(201);
+  await lead.post(`/api/v1/projects/${slug}/waivers`).send({
+    selector: { model: "rotor.*" },
+    reason: "known",
+    maxError: 1e-3,
+    expiresAt: "2099-01-01T00:00:00Z",
+  });
+  const copy = `${server.context.config.dataFolder}.sqlite`;
+  await server.context.idle();
+  await server.context.db.sequelize.query("PRAGMA wal_checkpoint(TRUNCATE)");
+  await copyFile(server.context.config.databaseFile, copy);
+  await server.close();
+  return copy;
+}
+
+async function removeFile(file: string): Promise<void> {
+  for (const suffix of ["", "-wal", "-shm", ".before-migration"]) await rm(`${file}${suffix}`, { force: true });
+}
+
+it("every migration goes down and up again on a filled database, and leaves the same tables", async () => {
+  const file = await filledFile();
+  const sequelize = await connect(file);
+  const before = await tablesOf(sequelize);
+  expect(Object.keys(before)).toContain("users");
+  for (const { name } of MIGRATIONS.toReversed()) {
+    await migrator(sequelize).down({ to: name });
+    expect(await brokenReferences(sequelize), name).toEqual([]);
+  }
+  expect(await tablesOf(sequelize)).toEqual({});
+  const ran = await migrator(sequelize).up();
+  expect(ran.map((migration) => migration.name)).toEqual(MIGRATIONS.map((migration) => migration.name));
+  expect(await tablesOf(sequelize)).toEqual(before);
+  expect(await brokenReferences(sequelize)).toEqual([]);
+  await sequelize.close();
+  await removeFile(file);
+});
+
+it("the newest migration alone leaves what older ones made as it was", async () => {
+  const file = await filledFile();
+  const sequelize = await connect(file);
+  const count = async () =>
+    sequelize.query("SELECT (SELECT count(*) FROM users) AS users, (SELECT count(*) FROM tokens) AS tokens", {
+      type: QueryTypes.SELECT,
+    });
+  const before = await count();
+  expect(before).toEqual([{ users: 1, tokens: 3 }]);
+  await migrator(sequelize).down();
+  await migrator(sequelize).up();
+  expect(await count()).toEqual(before);
+  await sequelize.close();
+  await removeFile(file);
+});
+
+it("a file is put back as it was when a migration fails", async () => {
+  const file = await filledFile();
+  const preparing = await connect(file);
+  // A table in the way of the newest migration, once that is pending again.
+  await migrator(preparing).down();
+  await preparing.query("CREATE TABLE lanes (id INTEGER)");
+  await preparing.query("PRAGMA wal_checkpoint(TRUNCATE)");
+  await preparing.close();
+  const before = await readFile(file);
+  await expect(migrate(() => connect(file), file)).rejects.toThrow(/lanes/);
+  expect((await readFile(file)).equals(before)).toBe(true);
+  expect(existsSync(`${file}-wal`)).toBe(false);
+  await removeFile(file);
+});
