@@ -13,10 +13,15 @@ export class TileSet {
   private readonly encodings: number[] = [];
   private readonly places: { chunk: number; start: number; end: number }[] = [];
   private readonly chunks: Uint8Array[] = [];
-  /** Bytes taken of the last chunk. */
+  private readonly planeChunks = new Map<ArrayBufferLike, number>();
+  /** The chunk that small data goes to, and the bytes taken of it. */
+  private current = -1;
   private filled = CHUNK_BYTES;
 
-  /** Cuts a plane into tiles; only those that are new are copied, so that the plane itself can be let go. */
+  /**
+   * Cuts a plane into tiles. Small planes are copied into chunks; a large one is kept as it is and handed over with
+   * the tiles, so it must not be used after `pack`.
+   */
   addPlane(name: PlaneName, values: ArrayBufferView, reference = 0, step = 0): PlaneTiles<number> {
     const bytes = new Uint8Array(values.buffer, values.byteOffset, values.byteLength);
     const known = (hash: Buffer) => this.indexByHash.has(keyOf(hash));
@@ -40,15 +45,24 @@ export class TileSet {
   }
 
   private keep(data: Uint8Array): { chunk: number; start: number; end: number } {
+    if (data.buffer.byteLength >= CHUNK_BYTES) return this.keepInPlace(data);
     if (this.filled + data.length > CHUNK_BYTES) {
-      this.chunks.push(new Uint8Array(Math.max(CHUNK_BYTES, data.length)));
+      this.current = this.chunks.push(new Uint8Array(CHUNK_BYTES)) - 1;
       this.filled = 0;
     }
-    const chunk = this.chunks.length - 1;
     const start = this.filled;
-    this.chunks[chunk].set(data, start);
+    this.chunks[this.current].set(data, start);
     this.filled += data.length;
-    return { chunk, start, end: this.filled };
+    return { chunk: this.current, start, end: this.filled };
+  }
+
+  private keepInPlace(data: Uint8Array): { chunk: number; start: number; end: number } {
+    let chunk = this.planeChunks.get(data.buffer);
+    if (chunk === undefined) {
+      chunk = this.chunks.push(new Uint8Array(data.buffer)) - 1;
+      this.planeChunks.set(data.buffer, chunk);
+    }
+    return { chunk, start: data.byteOffset, end: data.byteOffset + data.length };
   }
 
   /** All tiles in a form that can be handed to another thread without copying. */
