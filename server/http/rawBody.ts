@@ -48,13 +48,15 @@ async function readBytes(request: Request, maxBytes: number): Promise<Buffer> {
   let bytes = new Uint8Array(length ?? FIRST_GUESS);
   let size = 0;
   try {
-    for await (const chunk of request as AsyncIterable<Buffer>) {
+    // Leaving the loop must not end the connection: the refusal has to arrive, so the rest is let in and dropped.
+    for await (const chunk of request.iterator({ destroyOnReturn: false }) as AsyncIterable<Buffer>) {
       if (size + chunk.length > maxBytes) throw tooLarge(maxBytes);
       if (size + chunk.length > bytes.length) bytes = enlarged(bytes, size + chunk.length);
       bytes.set(chunk, size);
       size += chunk.length;
     }
   } catch (error) {
+    request.resume();
     throw error instanceof PayloadTooLarge ? error : new MalformedRequest("The body ended before it was whole.");
   }
   return Buffer.from(size === bytes.length ? bytes.buffer : bytes.slice(0, size).buffer);

@@ -1,3 +1,7 @@
+import { once } from "node:events";
+import { request } from "node:http";
+import type { IncomingMessage } from "node:http";
+import type { AddressInfo } from "node:net";
 import { gzipSync } from "node:zlib";
 import express from "express";
 import supertest from "supertest";
@@ -110,6 +114,34 @@ describe("bodies", () => {
   });
 });
 
+it("a body that tells no length is refused as soon as it is too large, and the refusal arrives", async () => {
+  const limits = { ...server.context.config.limits, wireBytes: 100_000 };
+  const context = { ...server.context, config: { ...server.context.config, limits } };
+  const app = express();
+  app.use(requestLog(context.logger), mountRoutes(context, [sizes]), problemHandler(context.logger));
+  const listening = app.listen(0, "127.0.0.1");
+  await once(listening, "listening");
+  const { port } = listening.address() as AddressInfo;
+  const sending = request({
+    port,
+    host: "127.0.0.1",
+    method: "POST",
+    path: "/sizes",
+    headers: { "Content-Type": "application/json" },
+  });
+  for (let i = 0; i < 400; i++) sending.write(Buffer.alloc(50_000, 32));
+  sending.end();
+  const sent = once(sending, "finish");
+  const [response] = (await once(sending, "response")) as [IncomingMessage];
+  expect(response.statusCode).toBe(413);
+  response.resume();
+  await once(response, "end");
+  // The rest is let in and thrown away: a client that sends on to the end sees the answer, not a reset connection.
+  await sent;
+  listening.closeAllConnections();
+  listening.close();
+});
+
 describe("mistakes of ours", () => {
   const failing = (fail: (context: Context) => Promise<unknown>) =>
     defineRoute({
@@ -198,8 +230,8 @@ describe("requests", () => {
   });
 
   it("are counted, told how many are left, and refused when there are too many", async () => {
-    const request = appOf([echo], { requestsPerMinute: 2 });
-    const send = () => request.post("/echo").send({});
+    const limited = appOf([echo], { requestsPerMinute: 2 });
+    const send = () => limited.post("/echo").send({});
     const first = await send();
     expect(first.headers["ratelimit-policy"]).toMatch(/q=2/);
     await send();
