@@ -10,13 +10,22 @@ import { hashSecret } from "../tokens/tokenText.ts";
 const GONE = "This link is not valid: it was used, has expired, or is cut off.";
 
 /** @throws NotFound where the link does not work (any more). */
-async function openLink(writer: Writer, secret: string, purpose: Invitation["purpose"]): Promise<Invitation> {
+async function openLink(secret: string, purpose: Invitation["purpose"], writer?: Writer): Promise<Invitation> {
   const invitation = await Invitation.findOne({
     where: { tokenHash: hashSecret(secret), purpose },
-    transaction: writer.transaction,
+    transaction: writer?.transaction ?? null,
   });
   if (invitation === null || invitation.usedAt !== null || invitation.expiresAt <= Date.now()) throw new NotFound(GONE);
   return invitation;
+}
+
+/** Hashing is slow on purpose: it is done for those who have a link, and outside the transaction. */
+async function hashForLink(
+  given: { readonly token: string; readonly password: string },
+  purpose: Invitation["purpose"],
+): Promise<string> {
+  await openLink(given.token, purpose);
+  return hashPassword(given.password);
 }
 
 interface FirstPerson {
@@ -28,9 +37,9 @@ interface FirstPerson {
 
 /** Makes the first administrator. @throws NotFound, Conflict */
 export async function setUp(context: Context, given: FirstPerson): Promise<User> {
-  const passwordHash = await hashPassword(given.password);
+  const passwordHash = await hashForLink(given, "set-up");
   return context.db.write(async (writer) => {
-    const invitation = await openLink(writer, given.token, "set-up");
+    const invitation = await openLink(given.token, "set-up", writer);
     if ((await User.count({ transaction: writer.transaction })) > 0) {
       throw new Conflict("There is an administrator already.");
     }
@@ -56,10 +65,10 @@ export async function acceptInvitation(
   context: Context,
   given: { readonly token: string; readonly name: string; readonly password: string },
 ): Promise<User> {
-  const passwordHash = await hashPassword(given.password);
+  const passwordHash = await hashForLink(given, "invitation");
   return context.db.write(async (writer) => {
     const { transaction } = writer;
-    const { userId, projectId } = await openLink(writer, given.token, "invitation");
+    const { userId, projectId } = await openLink(given.token, "invitation", writer);
     const user = userId === null ? null : await User.findByPk(userId, { transaction });
     if (user === null || user.disabledAt !== null) throw new NotFound(GONE);
     const { name } = given;
