@@ -1,4 +1,5 @@
 import { VERDICTS } from "../../shared/domain/vocabulary.ts";
+import type { Verdict } from "../../shared/domain/vocabulary.ts";
 import { MARKS } from "./marks.ts";
 import type { Palette } from "./palette.ts";
 import { crisp, drawPaper, drawRulerFigures, line, monoFont, textFont } from "./drawPaper.ts";
@@ -26,13 +27,33 @@ function inView(marks: readonly StripMark[], first: number, last: number): reado
   return marks.slice(Math.max(0, lowerBound(first) - 1), lowerBound(last + 1) + 1);
 }
 
+/**
+ * The marks of one verdict, without those that would be drawn over the one before: where commits stand closer than
+ * pixels can tell, nothing is lost and the drawing stays quick.
+ */
+export function apartMarks(marks: readonly StripMark[], verdict: Verdict, g: StripGeometry): StripMark[] {
+  const kept: StripMark[] = [];
+  const nearX = g.pitch < 4 ? 3 : 0;
+  let last: StripMark | undefined;
+  for (const mark of marks) {
+    if (mark.verdict !== verdict) continue;
+    const over =
+      last !== undefined &&
+      (mark.index - last.index) * g.pitch < nearX &&
+      Math.abs(placeY(g, mark.place) - placeY(g, last.place)) < 2;
+    if (over) continue;
+    kept.push(mark);
+    last = mark;
+  }
+  return kept;
+}
+
 function drawMarks(c: CanvasRenderingContext2D, g: StripGeometry, marks: readonly StripMark[], palette: Palette): void {
   const size = Math.min(1, Math.max(0.45, g.pitch / 11));
   for (const verdict of VERDICTS) {
     const path = new Path2D();
     const shape = new Path2D(MARKS[verdict].path);
-    for (const mark of marks) {
-      if (mark.verdict !== verdict) continue;
+    for (const mark of apartMarks(marks, verdict, g)) {
       const scale = mark.mainline ? size : size * 0.75;
       const [x, y] = [columnX(g, mark.index) - 6 * scale, placeY(g, mark.place) - 6 * scale];
       path.addPath(shape, new DOMMatrix([scale, 0, 0, scale, x, y]));
@@ -77,6 +98,8 @@ function drawGaps(c: CanvasRenderingContext2D, g: StripGeometry, layout: StripLa
   const { first, last } = columnsInView(g, layout.count);
   c.strokeStyle = palette.quiet;
   c.lineWidth = 1;
+  // Where commits stand dense, so do their gaps: they must not blacken the foot.
+  c.globalAlpha = Math.min(1, Math.max(0.25, g.pitch / 5));
   c.beginPath();
   for (const index of layout.gaps) {
     if (index < first || index > last) continue;
@@ -84,6 +107,7 @@ function drawGaps(c: CanvasRenderingContext2D, g: StripGeometry, layout: StripLa
     line(c, x, g.foot - 10, x, g.foot);
   }
   c.stroke();
+  c.globalAlpha = 1;
 }
 
 function drawBrackets(c: CanvasRenderingContext2D, g: StripGeometry, layout: StripLayout, palette: Palette): void {
