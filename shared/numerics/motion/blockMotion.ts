@@ -1,20 +1,11 @@
-import { MOTION_CODE, VERDICT_CODE } from "../../domain/vocabulary.ts";
+import { MOTION_CODE, MOTIONS, VERDICT_CODE } from "../../domain/vocabulary.ts";
 import type { MotionCounts, MotionSide } from "../types.ts";
-import { absoluteUncertainty } from "../uncertainty/absoluteUncertainty.ts";
 
 /** Relative movement that binary64 arithmetic may make by itself. */
 const STILL = 1e-12;
-/** Motion code by: 1 where a moved, plus 2 where r moved, plus 4 where the entry does not agree now. */
-const MOTION_OF = Uint8Array.of(
-  MOTION_CODE.still,
-  MOTION_CODE["derivative-only"],
-  MOTION_CODE["model-only"],
-  MOTION_CODE.together,
-  MOTION_CODE.still,
-  MOTION_CODE["derivative-only"],
-  MOTION_CODE["model-only"],
-  MOTION_CODE.apart,
-);
+const { together, apart } = MOTION_CODE;
+const DERIVATIVE_ONLY = MOTION_CODE["derivative-only"];
+const MODEL_ONLY = MOTION_CODE["model-only"];
 
 /**
  * Motion of every entry of a block since the previous judged build of its lane (section 3 of the judging rules).
@@ -42,23 +33,24 @@ export function blockMotion(
   checkSide("before", before, rows, columns);
   expectLength("now.verdict", now.verdict.length, rows * columns);
   const motion = new Uint8Array(rows * columns);
-  const tallies = new Float64Array(MOTION_OF.length);
+  const counts = new Float64Array(MOTIONS.length);
   for (let row = 0; row < rows; row += 1) {
     const valueMoved = outputMoved(now.outputValues, before.outputValues, row);
-    moveRow(now, before, row * columns, (row + 1) * columns, valueMoved, motion, tallies);
+    moveRow(now, before, row * columns, (row + 1) * columns, valueMoved, motion, counts);
   }
   return {
     motion,
     counts: {
-      still: tallies[MOTION_CODE.still],
-      together: tallies[MOTION_CODE.together],
-      "derivative-only": tallies[MOTION_CODE["derivative-only"]],
-      "model-only": tallies[MOTION_CODE["model-only"]],
-      apart: tallies[MOTION_CODE.apart],
+      still: motion.length - counts[together] - counts[DERIVATIVE_ONLY] - counts[MODEL_ONLY] - counts[apart],
+      together: counts[together],
+      "derivative-only": counts[DERIVATIVE_ONLY],
+      "model-only": counts[MODEL_ONLY],
+      apart: counts[apart],
     },
   };
 }
 
+/** One row, start <= k < end; `motion` is all `still` before, and only what moved is written and counted. */
 function moveRow(
   now: MotionSide & { readonly verdict: Uint8Array },
   before: MotionSide,
@@ -66,41 +58,55 @@ function moveRow(
   end: number,
   valueMoved: boolean,
   motion: Uint8Array,
-  tallies: Float64Array,
+  counts: Float64Array,
 ): void {
   const { derivative, reference, resolution, floor, verdict } = now;
-  for (let k = start; k < end; k += 1) {
+  const { derivative: derivativeBefore, reference: referenceBefore, resolution: resolutionBefore } = before;
+  const first = valueMoved ? start : firstChange(now, before, start, end);
+  for (let k = first; k < end; k += 1) {
     const a = derivative[k];
-    const b = before.derivative[k];
+    const b = derivativeBefore[k];
     const r = reference[k];
-    const s = before.reference[k];
-    const seen = verdict[k];
+    const s = referenceBefore[k];
     const change = Math.abs(a - b);
-    const changed = a !== b && moved(a, b, change, floor);
-    let modelMoved = false;
-    if (r !== s || valueMoved) {
-      const coarse =
-        absoluteUncertainty(resolution[k], r, floor) + absoluteUncertainty(before.resolution[k], s, before.floor);
-      if (Math.abs(r - s) > coarse) modelMoved = true;
-      else if (valueMoved) {
-        const blind = coarse !== coarse || (changed ? change <= coarse : seen === VERDICT_CODE.unresolved);
-        modelMoved = blind;
-      }
-    }
-    const code = MOTION_OF[(changed ? 1 : 0) + (modelMoved ? 2 : 0) + (seen === VERDICT_CODE.agrees ? 0 : 4)];
+    const changed = moved(a, b, change, floor);
+    const coarse =
+      resolution[k] * Math.max(Math.abs(r), floor) + resolutionBefore[k] * Math.max(Math.abs(s), before.floor);
+    let modelMoved = Math.abs(r - s) > coarse;
+    if (valueMoved && !modelMoved) modelMoved = changed ? !(change > coarse) : cannotTell(coarse, verdict[k]);
+    if (!changed && !modelMoved) continue;
+    let code: number = MODEL_ONLY;
+    if (changed && !modelMoved) code = DERIVATIVE_ONLY;
+    else if (changed) code = verdict[k] === VERDICT_CODE.agrees ? together : apart;
     motion[k] = code;
-    tallies[code] += 1;
+    counts[code] += 1;
   }
 }
 
+/** First entry of a row that is not the same number on both sides: most rows of most builds have none. */
+function firstChange(now: MotionSide, before: MotionSide, start: number, end: number): number {
+  const { derivative, reference } = now;
+  const { derivative: derivativeBefore, reference: referenceBefore } = before;
+  let k = start;
+  while (k < end && derivative[k] === derivativeBefore[k] && reference[k] === referenceBefore[k]) k += 1;
+  return k;
+}
+
+/** True where the reference could not say whether the model moved under a derivative that did not. */
+function cannotTell(coarse: number, verdict: number): boolean {
+  return Number.isNaN(coarse) || verdict === VERDICT_CODE.unresolved;
+}
+
+/** True where b is not a but for rounding. A change well above the limit, the common one, is told without branches. */
 function moved(a: number, b: number, change: number, floor: number): boolean {
-  if (change < Infinity) return change > STILL * Math.max(Math.abs(a), Math.abs(b), floor);
-  return a === a || b === b;
+  if (change > STILL * (Math.abs(a) + Math.abs(b) + floor)) return true;
+  if (!(change < Infinity)) return a !== b && (a === a || b === b);
+  return change > STILL * Math.max(Math.abs(a), Math.abs(b), floor);
 }
 
 function outputMoved(now: Float64Array | null, before: Float64Array | null, row: number): boolean {
   if (now === null || before === null) return false;
-  return now[row] !== before[row] && moved(now[row], before[row], Math.abs(now[row] - before[row]), 0);
+  return moved(now[row], before[row], Math.abs(now[row] - before[row]), 0);
 }
 
 function checkSide(name: string, side: MotionSide, rows: number, columns: number): void {

@@ -3,6 +3,7 @@ import type { Tolerances } from "../../domain/tolerances.ts";
 import type { BestReference, BlockNumbers } from "../types.ts";
 import { NO_SOURCE } from "../types.ts";
 import { combineReferences } from "./combineReferences.ts";
+import type { Estimator } from "./estimator.ts";
 import { prepareReference } from "./prepareReference.ts";
 import { soleReference } from "./soleReference.ts";
 
@@ -16,7 +17,7 @@ import { soleReference } from "./soleReference.ts";
  * that a difference does not share: code that dropped an imaginary part once is not trusted with a zero again.
  * A difference that is exactly 0 where a complex step is not (beyond its U) is set aside there.
  * `sawNoChange` marks entries whose differences are all exactly 0, at least one of them made with a step that
- * could have seen a change of the entry's natural size (U <= max(|F|/L, |r|)).
+ * could have seen a change of the entry's natural size P/L above the noise (`stepModel`).
  *
  * Shapes: rows x columns, row-major; references over their own columns. An empty block gives empty arrays.
  * Units: values and U in output unit per input unit, steps in input units.
@@ -32,13 +33,20 @@ import { soleReference } from "./soleReference.ts";
  * the parts name their own.
  */
 export function bestReference(block: BlockNumbers, tolerances: Tolerances): BestReference {
+  return bestOf(block, prepareReferences(block, tolerances));
+}
+
+/** Checks the shapes of a block and makes its references ready. */
+export function prepareReferences(block: BlockNumbers, tolerances: Tolerances): Estimator[] {
   checkBlock(block);
-  const estimators = block.references.map((reference, k) =>
-    prepareReference(block, reference, tolerances, `references[${k}]`),
-  );
-  const [sole, ...others] = estimators;
+  return block.references.map((reference, k) => prepareReference(block, reference, tolerances, `references[${k}]`));
+}
+
+/** The best of references that are ready. */
+export function bestOf(block: BlockNumbers, estimators: readonly Estimator[]): BestReference {
+  const [sole] = estimators;
   if (sole === undefined) return unreferenced(block.rows * block.columns);
-  if (others.length === 0 && sole.position === null) return soleReference(block, sole);
+  if (estimators.length === 1 && sole.position === null) return soleReference(block, sole);
   return combineReferences(block, estimators);
 }
 

@@ -4,17 +4,13 @@ import type { Estimates, Estimator } from "./estimator.ts";
 import { CHANGED, newEstimates, SAW_NO_CHANGE } from "./estimator.ts";
 import type { FindingCounts } from "./findings.ts";
 import { findingsOf, newFindingCounts } from "./findings.ts";
+import { largestKnown } from "./largestKnown.ts";
 import { isDifference } from "./scheme.ts";
 
 /** Entries of a band of rows: its scratch stays in the processor's cache. */
 const BAND_ENTRIES = 4096;
 
 type Planes = Pick<BestReference, "value" | "uncertainty" | "source" | "step" | "conflict" | "sawNoChange">;
-
-/** What a pass over the block found. */
-interface Tally extends FindingCounts {
-  largest: number;
-}
 
 /** One reference within the combination. */
 interface Member {
@@ -60,15 +56,21 @@ export function combineReferences(block: BlockNumbers, estimators: readonly Esti
   if (members.some((member) => member.distrusted)) counts = combine(rows, columns, bandRows, members, planes);
   return {
     ...planes,
-    largest: counts.largest,
+    largest: largestKnown(planes.value, planes.uncertainty),
     assumed: estimators.map((estimator) => estimator.assumed),
     kinds: estimators.map((estimator) => estimator.kind),
     findings: findingsOf(block, counts),
   };
 }
 
-function combine(rows: number, columns: number, bandRows: number, members: readonly Member[], planes: Planes): Tally {
-  const counts: Tally = { ...newFindingCounts(members.length), largest: 0 };
+function combine(
+  rows: number,
+  columns: number,
+  bandRows: number,
+  members: readonly Member[],
+  planes: Planes,
+): FindingCounts {
+  const counts = newFindingCounts(members.length);
   for (let first = 0; first < rows; first += bandRows) {
     const last = Math.min(rows, first + bandRows);
     for (const { estimator, band } of members) {
@@ -98,7 +100,7 @@ function decide(
   column: number,
   at: number,
   planes: Planes,
-  counts: Tally,
+  counts: FindingCounts,
 ): void {
   // What each kind of reference sees beyond its own uncertainty.
   let complexSees = false;
@@ -152,7 +154,6 @@ function decide(
   }
   const conflict = low > high;
   if (conflict) counts.conflicts += 1;
-  else if (2 * least <= Math.abs(value)) counts.largest = Math.max(counts.largest, Math.abs(value));
   planes.value[at] = value;
   planes.uncertainty[at] = conflict ? Infinity : least;
   planes.source[at] = best;

@@ -2,7 +2,7 @@ import type { UncertaintyKind } from "../../domain/vocabulary.ts";
 
 /** Codes of `Estimates.unchanged`. CHANGED: the estimate is not 0, or not at every step. */
 export const CHANGED = 0;
-/** Exactly 0 at every step, by steps that could have seen a change of the entry's natural size. */
+/** Exactly 0 at every step, one of which could have seen a change of the entry's natural size P/L above the noise. */
 export const SAW_NO_CHANGE = 1;
 /** Exactly 0 at every step, but by steps too small to see anything. */
 export const BLIND = 2;
@@ -18,12 +18,12 @@ export interface Estimates {
   readonly unchanged: Uint8Array;
 }
 
-/** What a kernel noticed on its way. */
-export interface FillResult {
-  /** Entries that have no estimate or are exactly 0. */
-  readonly odd: number;
-  /** Largest |value| among the entries with U <= |value|/2. */
-  readonly largest: number;
+/** The values of a reference that is not a sweep: they are its estimates as they stand. */
+export interface Posted {
+  /** The posted plane itself, or a copy with NaN for what is infinite. */
+  readonly values: Float64Array;
+  /** Index of the largest |value|, -1 where there is none. */
+  readonly peak: number;
 }
 
 /** One reference made ready: all that depends on its columns alone is worked out. */
@@ -35,13 +35,14 @@ export interface Estimator {
   readonly position: Int32Array | null;
   /** True where |F|, |x| or the step had to be assumed. */
   readonly assumed: boolean;
-  /** The posted values where they are the estimates as they stand, else null. */
-  readonly posted: Float64Array | null;
+  /** Null for a sweep. */
+  readonly posted: Posted | null;
   /**
    * Writes the estimates of rows first <= i < last to the start of `out`, whose `step` and `unchanged` must be 0.
-   * `out.value` may be `posted` itself when all rows are asked for.
+   * `out.value` may be the posted values themselves: then it is left alone. Returns how many entries have no
+   * estimate or are exactly 0.
    */
-  readonly fill: (first: number, last: number, out: Estimates) => FillResult;
+  readonly fill: (first: number, last: number, out: Estimates) => number;
 }
 
 /** Room for the estimates of `entries` entries; `value` is used in place of a new array. */

@@ -1,5 +1,5 @@
 import { UNIT_ROUNDOFF } from "../roundoff.ts";
-import type { Estimates, FillResult } from "./estimator.ts";
+import type { Estimates } from "./estimator.ts";
 import { BLIND } from "./estimator.ts";
 
 const ROUNDOFFS = 64;
@@ -7,7 +7,8 @@ const ROUNDOFFS = 64;
 /**
  * Estimates by a method without truncation (`analytic`, `ad-*`, `high-precision`): U = 64 u max(|r|, floor).
  *
- * NaN policy: a value that is not finite is no estimate (NaN). Cost: one pass, nothing is allocated.
+ * Shapes: `values` without infinities; rows first <= i < last go to the start of `out`. NaN policy: NaN is no
+ * estimate. Cost: one pass, nothing is allocated per entry. Returns how many entries have no estimate or are 0.
  */
 export function fillExact(
   values: Float64Array,
@@ -16,20 +17,15 @@ export function fillExact(
   first: number,
   last: number,
   out: Estimates,
-): FillResult {
-  const copy = out.value === values ? null : out.value;
+): number {
+  if (out.value !== values) out.value.set(values.subarray(first * width, last * width));
   let odd = 0;
-  let largest = 0;
   for (let at = first * width, k = 0; at < last * width; at += 1, k += 1) {
-    const r = values[at];
-    const m = Math.abs(r);
-    const u = ROUNDOFFS * UNIT_ROUNDOFF * Math.max(m, floor) + (r - r);
-    out.uncertainty[k] = u;
-    if (copy !== null) copy[k] = u >= 0 ? r : NaN;
-    if (m > largest && 2 * u <= m) largest = m;
-    if (m > 0 && u >= 0) continue;
+    const m = Math.abs(values[at]);
+    out.uncertainty[k] = ROUNDOFFS * UNIT_ROUNDOFF * Math.max(m, floor);
+    if (m > 0) continue;
     odd += 1;
     if (m === 0) out.unchanged[k] = BLIND;
   }
-  return { odd, largest };
+  return odd;
 }

@@ -1,5 +1,5 @@
 import type { ColumnModel } from "./columnModel.ts";
-import type { Estimates, FillResult } from "./estimator.ts";
+import type { Estimates } from "./estimator.ts";
 import { BLIND, SAW_NO_CHANGE } from "./estimator.ts";
 import type { Geometry } from "./geometry.ts";
 import { entrySize } from "./stepModel.ts";
@@ -7,8 +7,9 @@ import { entrySize } from "./stepModel.ts";
 /**
  * Estimates by a single step: the posted values with their modelled uncertainty, U as in `stepModel`.
  *
- * Shapes: `values` the reference's plane, `rowSize` one size P a row; rows first <= i < last go to the start of `out`.
- * NaN policy: a value that is not finite is no estimate (NaN). Cost: one pass, nothing is allocated per entry.
+ * Shapes: `values` the reference's plane without infinities, `rowSize` one size P > 0 a row; rows first <= i < last
+ * go to the start of `out`. NaN policy: NaN is no estimate. Cost: one pass, nothing is allocated per entry.
+ * Returns how many entries have no estimate or are exactly 0.
  */
 export function fillSingleStep(
   values: Float64Array,
@@ -18,32 +19,24 @@ export function fillSingleStep(
   first: number,
   last: number,
   out: Estimates,
-): FillResult {
-  const { truncation, noise, rounding, unusable, perLength } = model;
+): number {
+  const { truncation, noise, rounding, perLength } = model;
   const { width, outputs } = sizes;
   const { uncertainty, unchanged } = out;
-  const copy = out.value === values ? null : out.value;
+  if (out.value !== values) out.value.set(values.subarray(first * width, last * width));
   let odd = 0;
-  let largest = 0;
-  for (let row = first, k = 0; row < last; row += 1) {
+  for (let row = first, k = 0, at = first * width; row < last; row += 1) {
     const value = outputs[row];
     const size = rowSize[row];
-    const at = row * width;
-    for (let c = 0; c < width; c += 1, k += 1) {
-      const r = values[at + c];
-      const m = Math.abs(r);
+    for (let c = 0; c < width; c += 1, k += 1, at += 1) {
+      const m = Math.abs(values[at]);
       const ofRow = size * perLength[c];
-      const u =
-        entrySize(m, value * perLength[c], ofRow) * truncation[c] + size * noise[c] + m * rounding[c] + unusable[c];
-      // r - r is 0, or NaN where r is not finite.
-      const finite = u + (r - r);
-      uncertainty[k] = finite;
-      if (copy !== null) copy[k] = finite >= 0 ? r : NaN;
-      if (m > largest && 2 * finite <= m) largest = m;
-      if (m > 0 && finite >= 0) continue;
+      const u = entrySize(m, value * perLength[c], ofRow) * truncation[c] + size * noise[c] + m * rounding[c];
+      uncertainty[k] = u;
+      if (m > 0) continue;
       odd += 1;
-      if (m === 0) unchanged[k] = u <= ofRow ? SAW_NO_CHANGE : BLIND;
+      if (m === 0) unchanged[k] = noise[c] <= perLength[c] ? SAW_NO_CHANGE : BLIND;
     }
   }
-  return { odd, largest };
+  return odd;
 }

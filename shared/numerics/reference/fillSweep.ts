@@ -1,4 +1,4 @@
-import type { Estimates, FillResult } from "./estimator.ts";
+import type { Estimates } from "./estimator.ts";
 import { BLIND, SAW_NO_CHANGE } from "./estimator.ts";
 import type { Geometry } from "./geometry.ts";
 import { leastSweepError } from "./leastSweepError.ts";
@@ -29,13 +29,12 @@ export function fillSweep(
   first: number,
   last: number,
   out: Estimates,
-): FillResult {
+): number {
   const { width } = sizes;
   const measured = scheme.noisyValues > 0;
   const survey = { noise: 0, size: 0 };
   const choice = { index: 0, error: 0 };
   let odd = 0;
-  let largest = 0;
   for (let row = first, k = 0; row < last; row += 1) {
     const value = sizes.outputs[row];
     survey.size = value;
@@ -71,14 +70,13 @@ export function fillSweep(
       out.value[k] = r;
       out.uncertainty[k] = u;
       out.step[k] = reader.posted[choice.index];
-      const m = Math.abs(r);
-      if (m > largest && 2 * u <= m) largest = m;
-      if (m > 0 || !allZero(reader.values, n)) continue;
+      if (r !== 0 || !allZero(reader.values, n)) continue;
       odd += 1;
-      out.unchanged[k] = u <= survey.size / length ? SAW_NO_CHANGE : BLIND;
+      const sees = noiseFactor(scheme, reader.steps[0], precision) * length <= 1;
+      out.unchanged[k] = sees ? SAW_NO_CHANGE : BLIND;
     }
   }
-  return { odd, largest };
+  return odd;
 }
 
 function allZero(values: Float64Array, n: number): boolean {

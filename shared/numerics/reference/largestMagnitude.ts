@@ -1,9 +1,13 @@
-/** Largest |value| among the finite ones; 0 when there is none. One pass, nothing is allocated. */
-export function largestMagnitude(values: Float64Array): number {
-  let largest = 0;
-  for (let k = 0; k < values.length; k += 1) {
+/** Index of the largest |value|, infinite ones included; -1 where all are NaN. One pass, nothing is allocated. */
+export function largestMagnitude(values: Float64Array, start = 0, end = values.length): number {
+  let largest = -1;
+  let index = -1;
+  for (let k = start; k < end; k += 1) {
     const m = Math.abs(values[k]);
-    if (m > largest && m < Infinity) largest = m;
+    if (m > largest) {
+      largest = m;
+      index = k;
+    }
   }
-  return largest;
+  return index;
 }

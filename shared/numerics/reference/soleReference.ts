@@ -1,8 +1,9 @@
 import type { BestReference, BlockNumbers } from "../types.ts";
 import { NO_SOURCE } from "../types.ts";
-import type { Estimator } from "./estimator.ts";
+import type { Estimates, Estimator } from "./estimator.ts";
 import { newEstimates, SAW_NO_CHANGE } from "./estimator.ts";
 import { findingsOf, newFindingCounts } from "./findings.ts";
+import { largestKnown } from "./largestKnown.ts";
 import { isDifference } from "./scheme.ts";
 
 /**
@@ -11,24 +12,14 @@ import { isDifference } from "./scheme.ts";
  */
 export function soleReference(block: BlockNumbers, sole: Estimator): BestReference {
   const entries = block.rows * block.columns;
-  const estimates = newEstimates(entries, sole.posted ?? undefined);
-  const { odd, largest } = sole.fill(0, block.rows, estimates);
+  const estimates = newEstimates(entries, sole.posted?.values);
   const source = new Uint8Array(entries);
-  const sawNoChange = estimates.unchanged;
-  let { value } = estimates;
-  const difference = block.references.every((reference) => isDifference(reference.method));
-  for (let k = 0; k < entries && odd > 0; k += 1) {
-    if (sawNoChange[k] !== 0) sawNoChange[k] = difference && sawNoChange[k] === SAW_NO_CHANGE ? 1 : 0;
-    if (estimates.uncertainty[k] >= 0) continue;
-    source[k] = NO_SOURCE;
-    if (Number.isNaN(value[k])) continue;
-    if (value === sole.posted) value = value.slice();
-    value[k] = NaN;
-  }
+  const sawNoChange = new Uint8Array(entries);
+  if (sole.fill(0, block.rows, estimates) > 0) markOddEntries(block, estimates, 0, entries, source, sawNoChange);
   return {
-    value,
+    value: estimates.value,
     uncertainty: estimates.uncertainty,
-    largest,
+    largest: largestKnown(estimates.value, estimates.uncertainty),
     source,
     step: estimates.step,
     conflict: new Uint8Array(entries),
@@ -37,4 +28,20 @@ export function soleReference(block: BlockNumbers, sole: Estimator): BestReferen
     kinds: [sole.kind],
     findings: findingsOf(block, newFindingCounts(1)),
   };
+}
+
+/** Marks, among `count` estimates that belong to the entries from `start`, those without a reference or change. */
+export function markOddEntries(
+  block: BlockNumbers,
+  estimates: Estimates,
+  start: number,
+  count: number,
+  source: Uint8Array,
+  sawNoChange: Uint8Array,
+): void {
+  const difference = block.references.every((reference) => isDifference(reference.method));
+  for (let k = 0; k < count; k += 1) {
+    if (!(estimates.uncertainty[k] >= 0)) source[start + k] = NO_SOURCE;
+    else if (difference && estimates.unchanged[k] === SAW_NO_CHANGE) sawNoChange[start + k] = 1;
+  }
 }

@@ -43,10 +43,10 @@ export function roundingFactor(scheme: Scheme, h: number, x: number): number {
 
 /**
  * S of an entry of magnitude m, in the unit of the entry: max(|F|/L, m), or P/L where m is negligible beside it (an
- * entry at a stationary point is small, the curvature there is not). An exact 0 has seen no curvature either.
+ * entry at a stationary point is small, the curvature there is not).
  */
 export function entrySize(m: number, ofValue: number, ofRow: number): number {
-  return m > 0 && m < NEGLIGIBLE * ofRow ? ofRow : Math.max(ofValue, m);
+  return m < NEGLIGIBLE * ofRow ? ofRow : Math.max(ofValue, m);
 }
 
 /** Keeps a factor within the binary64 range, so that 0 times it stays 0. */

@@ -9,95 +9,72 @@ RANK[agrees] = 1;
 RANK[unresolved] = 2;
 RANK[disagrees] = 3;
 RANK[invalid] = 4;
+const AGREES_RANK = RANK[agrees];
 
-/** What the entries of one block are decided with. */
-export interface Limits {
+/** What the entries of one block are decided with and where it is written. */
+export interface Decision {
+  readonly derivative: Float64Array;
+  readonly best: Pick<BestReference, "value" | "source" | "sawNoChange">;
   readonly rtol: number;
   readonly floor: number;
   /** Guard factor g on U before an entry is accused, by source byte. */
   readonly guards: Float64Array;
+  readonly verdict: Uint8Array;
+  readonly tally: Tally;
 }
 
-export interface Decided {
-  readonly agrees: number;
-  readonly disagrees: number;
-  readonly unresolved: number;
-  readonly unreferenced: number;
-  readonly invalid: number;
-  /** Index of the worst entry by verdict, then by relative error, then the first; -1 in an empty block. */
-  readonly worst: number;
+/** Entries per verdict code, and the worst entry by verdict, then by relative error, then the first. */
+export interface Tally {
+  readonly counts: Float64Array;
+  /** Index, -1 before any. */
+  worst: number;
+  worstRank: number;
+  worstError: number;
+}
+
+export function newTally(): Tally {
+  return { counts: new Float64Array(VERDICTS.length), worst: -1, worstRank: -1, worstError: 0 };
 }
 
 /**
- * The kernel of `judgeBlock`: writes verdict and resolution of every entry, counts the verdicts and finds the worst.
- * One pass, nothing is allocated per entry; all arrays have one length.
+ * The kernel of `judgeBlock`: verdict of the entries start <= k < end, whose U stand at the start of `uncertainty`.
+ * One pass, nothing is allocated per entry; agreement, the commonest case, is told first.
  */
-export function decideEntries(
-  derivative: Float64Array,
-  best: BestReference,
-  limits: Limits,
-  verdict: Uint8Array,
-  resolution: Float32Array,
-): Decided {
-  const { value, uncertainty, source, sawNoChange } = best;
-  const { rtol, floor, guards } = limits;
-  // The next binary32 number up has the next bit pattern; resolutions are never negative.
-  const bits = new Int32Array(resolution.buffer, resolution.byteOffset, resolution.length);
-  const rounded = new Float32Array(1);
-  const roundedBits = new Int32Array(rounded.buffer);
+export function decideEntries(decision: Decision, uncertainty: Float64Array, start: number, end: number): void {
+  const { derivative, rtol, floor, guards, verdict, tally } = decision;
+  const { value, source, sawNoChange } = decision.best;
+  let { worst, worstRank, worstError } = tally;
   let agreeing = 0;
-  let disagreeing = 0;
-  let open = 0;
-  let without = 0;
-  let worst = -1;
-  let worstRank = -1;
-  let worstError = 0;
-  for (let k = 0; k < derivative.length; k += 1) {
+  for (let k = start, j = 0; k < end; k += 1, j += 1) {
     const a = derivative[k];
     const r = value[k];
-    const u = uncertainty[k];
+    const u = uncertainty[j];
     const size = Math.max(Math.abs(r), floor);
     const tolerance = rtol * size;
     const distance = Math.abs(a - r);
-    let code: number;
-    if (!(distance < Infinity)) {
-      code = decideFar(a, r, u, guards[source[k]], rtol * (size / 2));
-      if (code === agrees) agreeing += 1;
-      else if (code === disagrees) disagreeing += 1;
-      else if (code === unresolved) open += 1;
-      else if (code === unreferenced) without += 1;
-    } else if (distance + u <= tolerance || (a === 0 && sawNoChange[k] === 1)) {
-      code = agrees;
-      agreeing += 1;
-    } else if (distance - guards[source[k]] * u > tolerance) {
-      code = disagrees;
-      disagreeing += 1;
-    } else {
-      code = unresolved;
-      open += 1;
-    }
-    verdict[k] = code;
-    const rank = RANK[code];
-    if (rank >= worstRank) {
-      const error = distance / size;
-      if (rank > worstRank || error > worstError) {
-        worst = k;
-        worstRank = rank;
-        worstError = error;
+    let code: number = agrees;
+    if (!(distance + u <= tolerance)) {
+      if (!(distance < Infinity)) code = decideFar(a, r, u, guards[source[k]], rtol * (size / 2));
+      else if (a !== 0 || sawNoChange[k] === 0) {
+        code = distance - guards[source[k]] * u > tolerance ? disagrees : unresolved;
       }
     }
-    const relative = size > 0 ? u / size : u > 0 ? Infinity : u;
-    rounded[0] = relative;
-    bits[k] = roundedBits[0] + (rounded[0] < relative ? 1 : 0);
+    verdict[k] = code;
+    if (code === agrees) {
+      agreeing += 1;
+      if (worstRank > AGREES_RANK || (worstRank === AGREES_RANK && !(distance > worstError * size))) continue;
+    } else {
+      tally.counts[code] += 1;
+      if (worstRank > RANK[code] || (worstRank === RANK[code] && !(distance > worstError * size))) continue;
+    }
+    worst = k;
+    worstRank = RANK[code];
+    worstError = distance === 0 ? 0 : distance / size;
   }
-  return {
-    agrees: agreeing,
-    disagrees: disagreeing,
-    unresolved: open,
-    unreferenced: without,
-    invalid: derivative.length - agreeing - disagreeing - open - without,
-    worst,
-  };
+  tally.counts[agrees] += agreeing;
+  tally.worst = worst;
+  tally.worstRank = worstRank;
+  tally.worstError = worstError;
 }
 
 /** The rare rest: something is not finite, or |a - r| overflows and is compared at half scale. */

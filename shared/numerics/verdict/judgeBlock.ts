@@ -1,11 +1,15 @@
 import type { Tolerances } from "../../domain/tolerances.ts";
-import { bestReference } from "../reference/bestReference.ts";
+import { VERDICT_CODE } from "../../domain/vocabulary.ts";
 import { isDifference } from "../reference/scheme.ts";
-import type { BestReference, BlockNumbers, JudgedBlock, WorstEntry } from "../types.ts";
+import type { Selection } from "../reference/selectReferences.ts";
+import { selectReferences } from "../reference/selectReferences.ts";
+import type { BestReference, BlockNumbers, JudgedBlock, VerdictCounts, WorstEntry } from "../types.ts";
 import { NO_SOURCE } from "../types.ts";
 import { blockFloor } from "./blockFloor.ts";
-import { decideEntries } from "./decideEntries.ts";
+import type { Decision, Tally } from "./decideEntries.ts";
+import { decideEntries, newTally } from "./decideEntries.ts";
 import { relativeError } from "./relativeError.ts";
+import { writeResolutions } from "./writeResolutions.ts";
 
 /** A modelled difference rests on assumed curvature, so it accuses only beyond so many times its U. */
 const MODEL_GUARD = 10;
@@ -32,21 +36,46 @@ const MODEL_GUARD = 10;
  * assessment; ISO 14253-1:2017 (the three-way rule with U as guard band on both sides).
  */
 export function judgeBlock(block: BlockNumbers, tolerances: Tolerances): JudgedBlock {
-  const best = bestReference(block, tolerances);
+  const { rows, columns } = block;
+  const selection = selectReferences(block, tolerances);
+  const { best, bandRows } = selection;
   const floor = blockFloor(best, tolerances);
-  const entries = block.rows * block.columns;
-  const verdict = new Uint8Array(entries);
-  const resolution = new Float32Array(entries);
-  const limits = { rtol: tolerances.rtol, floor, guards: guardsOf(block, best) };
-  const { worst, ...counts } = decideEntries(block.derivative, best, limits, verdict, resolution);
+  const decision: Decision = {
+    derivative: block.derivative,
+    best,
+    rtol: tolerances.rtol,
+    floor,
+    guards: guardsOf(block, best),
+    verdict: new Uint8Array(rows * columns),
+    tally: newTally(),
+  };
+  const resolution = new Float32Array(rows * columns);
+  for (let first = 0; first < rows; first += bandRows) {
+    const last = Math.min(rows, first + bandRows);
+    const uncertainty = selection.uncertaintyOf(first, last);
+    decideEntries(decision, uncertainty, first * columns, last * columns);
+    writeResolutions(best.value, uncertainty, floor, first * columns, last * columns, resolution);
+  }
+  const { verdict, tally } = decision;
   return {
     best,
     verdict,
     resolution,
     floor,
     tolerances,
-    counts: { entries, ...counts },
-    worst: worst < 0 ? null : entryAt(worst, block, best, floor),
+    counts: countsOf(rows * columns, tally),
+    worst: tally.worst < 0 ? null : entryAt(tally.worst, columns, decision, selection),
+  };
+}
+
+function countsOf(entries: number, { counts }: Tally): VerdictCounts {
+  return {
+    entries,
+    agrees: counts[VERDICT_CODE.agrees],
+    disagrees: counts[VERDICT_CODE.disagrees],
+    unresolved: counts[VERDICT_CODE.unresolved],
+    unreferenced: counts[VERDICT_CODE.unreferenced],
+    invalid: counts[VERDICT_CODE.invalid],
   };
 }
 
@@ -59,13 +88,17 @@ function guardsOf(block: BlockNumbers, best: BestReference): Float64Array {
   return guards;
 }
 
-function entryAt(k: number, block: BlockNumbers, best: BestReference, floor: number): WorstEntry {
+function entryAt(k: number, columns: number, decision: Decision, selection: Selection): WorstEntry {
+  const row = Math.floor(k / columns);
+  const column = k % columns;
+  const derivative = decision.derivative[k];
+  const reference = decision.best.value[k];
   return {
-    row: Math.floor(k / block.columns),
-    column: k % block.columns,
-    error: relativeError(block.derivative[k], best.value[k], floor),
-    derivative: block.derivative[k],
-    reference: best.value[k],
-    uncertainty: best.uncertainty[k],
+    row,
+    column,
+    error: relativeError(derivative, reference, decision.floor),
+    derivative,
+    reference,
+    uncertainty: selection.uncertaintyAt(row, column),
   };
 }
