@@ -5,6 +5,7 @@ import { completeBuild, storePosting } from "../../server/record/storePosting.ts
 import { settleProject } from "../../server/trace/settleProject.ts";
 import { DEFAULT_LIMITS } from "../../shared/domain/limits.ts";
 import { DEFAULT_TOLERANCES } from "../../shared/domain/tolerances.ts";
+import { DEFAULT_GATE_POLICY } from "../../shared/domain/vocabulary.ts";
 import type { BuildDocument } from "../../shared/schemas/build.ts";
 import { openRecord } from "../../tests/support/record.ts";
 import type { TestRecord } from "../../tests/support/record.ts";
@@ -46,7 +47,7 @@ export async function run(): Promise<void> {
   (block?.derivative.values as number[][])[1][2] = 100;
   await record.post(broken);
   const question = {
-    project: { id: record.project.id, policy: {} },
+    project: { id: record.project.id, policy: DEFAULT_GATE_POLICY },
     lane: "default",
     commit: shaOf(BUILDS),
     base: null,

@@ -1,5 +1,6 @@
 import type { Writer } from "../db/write.ts";
 import type { JudgedPosting } from "../ingest/judgePosting.ts";
+import { storeSummary } from "./buildSummary.ts";
 import { RecordConflict } from "./conflict.ts";
 import { storeBlocks } from "./storeBlocks.ts";
 import { storeCommits } from "./storeCommits.ts";
@@ -56,6 +57,7 @@ export async function storePosting(
   return { laneId, buildId: build.id, shardId, allHere: n === build.shardCount, repeated: null };
 }
 
+/** Marks a build as whole, `missing` shards aside, and sums it up. */
 export async function completeBuild(
   w: Writer,
   buildId: number,
@@ -67,6 +69,7 @@ export async function completeBuild(
     now,
     JSON.stringify(missing),
   ]);
+  await storeSummary(w, buildId);
 }
 
 async function ensureLane(w: Writer, projectId: number, name: string): Promise<number> {

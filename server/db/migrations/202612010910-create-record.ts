@@ -50,6 +50,7 @@ CREATE TABLE builds (
   createdAt INTEGER NOT NULL,
   completedAt INTEGER,
   baselineBuildId INTEGER REFERENCES builds(id) ON DELETE SET NULL,
+  summary TEXT,
   UNIQUE (laneId, commitId, runId)
 );
 CREATE INDEX builds_project ON builds (projectId, id);

@@ -20,6 +20,8 @@ export class Build extends Model<InferAttributes<Build>, InferCreationAttributes
   declare completedAt: CreationOptional<number | null>;
   /** Build of the nearest judged ancestor, that motion is told against. */
   declare baselineBuildId: CreationOptional<number | null>;
+  /** JSON: BuildSummary, of complete builds. */
+  declare summary: CreationOptional<string | null>;
 
   static initialise(sequelize: Sequelize): void {
     Build.init(
@@ -38,6 +40,7 @@ export class Build extends Model<InferAttributes<Build>, InferCreationAttributes
         createdAt: { type: DataTypes.INTEGER, allowNull: false },
         completedAt: { type: DataTypes.INTEGER, allowNull: true },
         baselineBuildId: { type: DataTypes.INTEGER, allowNull: true },
+        summary: { type: DataTypes.TEXT, allowNull: true },
       },
       { sequelize, tableName: "builds", timestamps: false },
     );

@@ -1,9 +1,10 @@
-import type { PostedBuild, SummaryCounts } from "../../../shared/schemas/build.ts";
+import type { PostedBuild } from "../../../shared/schemas/build.ts";
 import type { Project } from "../../db/models/Project.ts";
 import type { Reader } from "../../db/reader.ts";
 import { loadGate } from "../gate/loadGate.ts";
 import { presentGate } from "../gate/present.ts";
-import type { GatePolicy } from "../../../shared/domain/vocabulary.ts";
+import { policyOf } from "../projects/settings.ts";
+import { sumUpBuild } from "../../record/buildSummary.ts";
 import type { StoredTrace } from "../../trace/storedTrace.ts";
 import { urlsOf } from "./urls.ts";
 
@@ -29,27 +30,20 @@ export async function composeAnswer(
      FROM builds b JOIN lanes l ON l.id = b.laneId JOIN commits c ON c.id = b.commitId WHERE b.id = $1`,
     [buildId],
   );
-  const policy = JSON.parse(project.policy) as Partial<GatePolicy>;
-  const question = { project: { id: project.id, policy }, lane: build.lane, commit: build.sha, base: null };
+  const question = {
+    project: { id: project.id, policy: policyOf(project) },
+    lane: build.lane,
+    commit: build.sha,
+    base: null,
+  };
   const gate = await loadGate(reader, question, now);
   const id = String(build.id);
   return {
     build: { id, url: urls.build(id), state: build.state, lane: build.lane, commit: build.sha },
-    summary: await loadSummary(reader, buildId),
+    summary: (await sumUpBuild(reader, buildId)).counts,
     gate: presentGate(question, gate, urls),
     breaks: await loadBreaks(reader, build, urls),
   };
-}
-
-async function loadSummary(reader: Reader, buildId: number): Promise<SummaryCounts> {
-  const sum = (name: string) => `COALESCE(sum(s.${name}), 0) AS ${name}`;
-  const [summary] = await reader.select<SummaryCounts>(
-    `SELECT count(*) AS blocks, COALESCE(sum(s.rowCount * s.columnCount), 0) AS entries,
-       ${["agrees", "disagrees", "unresolved", "unreferenced", "invalid"].map(sum).join(", ")}
-     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId WHERE bb.buildId = $1`,
-    [buildId],
-  );
-  return summary;
 }
 
 async function loadBreaks(

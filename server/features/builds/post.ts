@@ -1,5 +1,3 @@
-import { DEFAULT_TOLERANCES } from "../../../shared/domain/tolerances.ts";
-import type { Tolerances } from "../../../shared/domain/tolerances.ts";
 import type { PostedBuild } from "../../../shared/schemas/build.ts";
 import type { Context } from "../../context.ts";
 import type { Project } from "../../db/models/Project.ts";
@@ -10,6 +8,7 @@ import type { JudgedPosting } from "../../ingest/judgePosting.ts";
 import { RecordConflict } from "../../record/conflict.ts";
 import { completeBuild, storePosting } from "../../record/storePosting.ts";
 import { settleProject } from "../../trace/settleProject.ts";
+import { tolerancesOf } from "../projects/settings.ts";
 import { composeAnswer } from "./answer.ts";
 
 /** `kept`: a dry run keeps nothing; `respond-async`: stored at once, judged against the lane afterwards (RFC 7240). */
@@ -41,7 +40,7 @@ export async function postBuild(
   mode: PostingMode,
 ): Promise<Posted> {
   const { limits } = context.config;
-  const tolerances = { ...DEFAULT_TOLERANCES, ...(JSON.parse(project.tolerances) as Partial<Tolerances>) };
+  const tolerances = tolerancesOf(project);
   const judged = await context.judge.posting({ body: body.bytes, encoding: body.encoding, limits, tolerances });
   try {
     return await context.db.write((w) => record(w, context, project, judged, mode));

@@ -1,4 +1,3 @@
-import { DEFAULT_GATE_POLICY } from "../../../shared/domain/vocabulary.ts";
 import type { GatePolicy } from "../../../shared/domain/vocabulary.ts";
 import { decideGate } from "../../../shared/history/decideGate.ts";
 import { nearestJudgedAncestor } from "../../../shared/history/nearestJudgedAncestor.ts";
@@ -9,7 +8,7 @@ import { findLane, loadLaneBuilds } from "../../record/laneBuilds.ts";
 import { loadGateEntries } from "./loadGateEntries.ts";
 
 export interface GateQuestion {
-  readonly project: { readonly id: number; readonly policy: Partial<GatePolicy> };
+  readonly project: { readonly id: number; readonly policy: GatePolicy };
   readonly lane: string;
   readonly commit: string;
   /** Null for the newest judged ancestor on the default branch. */
@@ -34,7 +33,7 @@ export interface GateBlockRow extends GateBlock {
 /** Loads what the gate has to know of a commit and its base, and decides. */
 export async function loadGate(reader: Reader, question: GateQuestion, now: number): Promise<GateAnswer> {
   const { project, lane, commit } = question;
-  const policy = { ...DEFAULT_GATE_POLICY, ...project.policy };
+  const { policy } = project;
   const laneId = await findLane(reader, project.id, lane);
   const { graph, mainline } = await loadGraph(reader, project.id);
   const { speaking } = laneId === null ? { speaking: new Map<string, never>() } : await loadLaneBuilds(reader, laneId);

@@ -1,9 +1,9 @@
-import type { GatePolicy } from "../../../shared/domain/vocabulary.ts";
 import { DEFAULT_LANE } from "../../../shared/domain/vocabulary.ts";
 import { gate, gateQuery } from "../../../shared/schemas/gate.ts";
 import { defineRoute } from "../../http/defineRoute.ts";
 import type { Route } from "../../http/defineRoute.ts";
 import { urlsOf } from "../builds/urls.ts";
+import { policyOf } from "../projects/settings.ts";
 import { loadGate } from "./loadGate.ts";
 import { presentGate } from "./present.ts";
 
@@ -21,7 +21,7 @@ export const routes: Route[] = [
     response: gate,
     handler: async ({ context, project, query }) => {
       const question = {
-        project: { id: project.id, policy: JSON.parse(project.policy) as Partial<GatePolicy> },
+        project: { id: project.id, policy: policyOf(project) },
         lane: query.lane ?? DEFAULT_LANE,
         commit: query.commit,
         base: query.base ?? null,

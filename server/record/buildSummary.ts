@@ -1,0 +1,77 @@
+import type { Verdict } from "../../shared/domain/vocabulary.ts";
+import type { SummaryCounts } from "../../shared/schemas/build.ts";
+import { fromWire } from "../../shared/schemas/common.ts";
+import type { Reader } from "../db/reader.ts";
+import type { Writer } from "../db/write.ts";
+import type { StoredWorst } from "../ingest/judgePosting.ts";
+
+/** JSON of a complete build's `summary` column: what lists and the strip show of it without reading its blocks. */
+export interface BuildSummary {
+  readonly counts: SummaryCounts;
+  /** The worst entry over all blocks. */
+  readonly worst: (StoredWorst & { readonly blockId: number }) | null;
+}
+
+interface BlockCounts {
+  readonly blockId: number;
+  readonly entries: number;
+  readonly agrees: number;
+  readonly disagrees: number;
+  readonly unresolved: number;
+  readonly unreferenced: number;
+  readonly invalid: number;
+  readonly worst: string | null;
+}
+
+/** Adds up the blocks that a build has so far. */
+export async function sumUpBuild(reader: Reader, buildId: number): Promise<BuildSummary> {
+  const blocks = await reader.select<BlockCounts>(
+    `SELECT bb.blockId, s.rowCount * s.columnCount AS entries,
+       s.agrees, s.disagrees, s.unresolved, s.unreferenced, s.invalid, s.worst
+     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId WHERE bb.buildId = $1 ORDER BY bb.blockId`,
+    [buildId],
+  );
+  const sum = (name: "entries" | Verdict) => blocks.reduce((total, block) => total + block[name], 0);
+  let worst: BuildSummary["worst"] = null;
+  for (const { blockId, worst: stored } of blocks) {
+    if (stored === null) continue;
+    const candidate = { ...(JSON.parse(stored) as StoredWorst), blockId };
+    if (worst === null || isWorse(candidate, worst)) worst = candidate;
+  }
+  return {
+    counts: {
+      blocks: blocks.length,
+      entries: sum("entries"),
+      agrees: sum("agrees"),
+      disagrees: sum("disagrees"),
+      unresolved: sum("unresolved"),
+      unreferenced: sum("unreferenced"),
+      invalid: sum("invalid"),
+    },
+    worst,
+  };
+}
+
+export async function storeSummary(w: Writer, buildId: number): Promise<void> {
+  await w.run("UPDATE builds SET summary = $2 WHERE id = $1", [buildId, JSON.stringify(await sumUpBuild(w, buildId))]);
+}
+
+/** Worst verdict first. */
+const GRAVITY: readonly Verdict[] = ["invalid", "disagrees", "unresolved", "agrees", "unreferenced"];
+
+/** Orders entries by verdict, then by relative error; what has no error goes before what has one. */
+export function isWorse(a: StoredWorst, b: StoredWorst): boolean {
+  if (a.verdict !== b.verdict) return GRAVITY.indexOf(a.verdict) < GRAVITY.indexOf(b.verdict);
+  const size = (worst: StoredWorst) => (worst.error === null ? Infinity : fromWire(worst.error));
+  return size(a) > size(b);
+}
+
+/** The worst verdict that occurs, or null of no entries. */
+export function worstVerdict(counts: Pick<SummaryCounts, Verdict>): Verdict | null {
+  return GRAVITY.find((verdict) => counts[verdict] > 0) ?? null;
+}
+
+/** Share of the entries that have a reference, 0..1; null of no entries. */
+export function checkedShare(counts: SummaryCounts): number | null {
+  return counts.entries === 0 ? null : 1 - counts.unreferenced / counts.entries;
+}
