@@ -1,10 +1,7 @@
 import { reactive, ref } from "vue";
-import { config } from "zod";
 import type { ZodType } from "zod";
 import { asProblem } from "../api/problem.ts";
-
-// The content policy forbids compiling text to code, which zod would otherwise try.
-config({ jitless: true });
+import "../plugins/zodWords.ts";
 
 /**
  * One form: values, an error per field from the schema that the server uses too, then from the server's own answer.
