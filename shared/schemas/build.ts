@@ -199,3 +199,12 @@ export const buildRow = z
   })
   .meta({ id: "Build" });
 export type BuildRow = z.infer<typeof buildRow>;
+
+/** A build on its page. */
+export const buildDetail = buildRow
+  .extend({
+    /** The shards that came, in the order of their numbers. */
+    arrivals: z.array(z.object({ index: z.number().int(), receivedAt: timestamp, bytes: z.number().int() })),
+  })
+  .meta({ id: "BuildDetail" });
+export type BuildDetail = z.infer<typeof buildDetail>;

@@ -5,15 +5,11 @@ import { defineRoute } from "../../http/defineRoute.ts";
 import type { Route } from "../../http/defineRoute.ts";
 import { raw } from "../../http/rawBody.ts";
 import { reply } from "../../http/reply.ts";
+import { numericId } from "../numericId.ts";
 import { postCommitHistory } from "./commits.ts";
 import { closeBuild, completePending } from "./complete.ts";
 import { postBuild } from "./post.ts";
-
-/** Any id that is not a number names nothing. */
-const buildId = z
-  .string()
-  .regex(/^\d{1,15}$/)
-  .transform(Number);
+import { readRoutes } from "./readRoutes.ts";
 
 /** The ten thousand commits that one request may tell, with their changed paths. */
 const MAX_HISTORY_BYTES = 16 * 1024 * 1024;
@@ -54,7 +50,7 @@ export const routes: Route[] = [
     tag: "Posting",
     auth: "caller",
     can: "build.close",
-    params: { build: buildId },
+    params: { build: numericId },
     response: postedBuild,
     problems: ["conflict"],
     handler: ({ context, project, params }) => closeBuild(context, project, params.build),
@@ -73,4 +69,5 @@ export const routes: Route[] = [
     problems: ["conflict", "invalid"],
     handler: ({ context, project, body }) => postCommitHistory(context, project, body.commits),
   }),
+  ...readRoutes,
 ];
