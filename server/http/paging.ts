@@ -40,3 +40,18 @@ export function pageOf<Row extends { readonly id: number }, Item>(
     next: last === undefined ? null : Buffer.from(`after:${last.id}`, "latin1").toString("base64url"),
   };
 }
+
+/** A page of a list that is at hand as a whole and in an order of its own: the cursor is a place in it. */
+export function pageSlice<Row, Item>(
+  rows: readonly Row[],
+  { limit, after }: PageRequest,
+  present: (row: Row) => Item,
+): { items: Item[]; next: string | null } {
+  const first = after ?? 0;
+  const last = first + limit;
+  const more = last < rows.length;
+  return {
+    items: rows.slice(first, last).map(present),
+    next: more ? Buffer.from(`after:${last}`, "latin1").toString("base64url") : null,
+  };
+}

@@ -4,6 +4,7 @@ import { nextTest } from "../../shared/history/nextTest.ts";
 import { scoreSuspects } from "../../shared/history/scoreSuspects.ts";
 import type { SuspectFacts } from "../../shared/history/types.ts";
 import type { Reader } from "../db/reader.ts";
+import { loadCommitFacts } from "../record/commitFacts.ts";
 import type { ProjectGraph } from "../record/commitGraph.ts";
 import type { BreakDescription } from "./describeBreak.ts";
 import type { StoredTrace } from "./storedTrace.ts";
@@ -40,22 +41,4 @@ export async function rankSuspects(
     historyIncomplete: found.historyIncomplete,
     bad: found.bad,
   };
-}
-
-async function loadCommitFacts(
-  reader: Reader,
-  projectId: number,
-  shas: readonly string[],
-): Promise<Map<string, { author: string | null; changedPaths: string[] | null }>> {
-  const rows = await reader.select<{ sha: string; authorName: string | null; changedPaths: string | null }>(
-    `SELECT sha, authorName, changedPaths FROM commits
-     WHERE projectId = $1 AND sha IN (SELECT value FROM json_each($2))`,
-    [projectId, JSON.stringify(shas)],
-  );
-  return new Map(
-    rows.map(({ sha, authorName, changedPaths }) => [
-      sha,
-      { author: authorName, changedPaths: changedPaths === null ? null : (JSON.parse(changedPaths) as string[]) },
-    ]),
-  );
 }

@@ -1,0 +1,94 @@
+import { TILE_ENTRIES } from "../../../shared/domain/limits.ts";
+import { absoluteUncertainty } from "../../../shared/numerics/uncertainty/absoluteUncertainty.ts";
+import { relativeError } from "../../../shared/numerics/verdict/relativeError.ts";
+import type { Reader } from "../../db/reader.ts";
+import { PLANE_WIDTH, unpackPlanes } from "../../ingest/planes.ts";
+import type { PlaneName, PlaneTiles } from "../../ingest/planes.ts";
+import { decodeTile } from "../../ingest/tiles.ts";
+import { loadPlane, loadTiles, tilesOf } from "../../record/readPlanes.ts";
+
+/** Rows first <= i < last and columns likewise. */
+export interface Window {
+  readonly rows: readonly [number, number];
+  readonly columns: readonly [number, number];
+}
+
+/** The numbers of a window, row-major. */
+export interface BlockPlanes {
+  readonly derivative: Float64Array;
+  readonly reference: Float64Array;
+  readonly uncertainty: Float64Array;
+  readonly error: Float64Array;
+  readonly verdict: Uint8Array;
+  readonly source: Uint8Array;
+  /** Null where there is no build to compare with. */
+  readonly motion: Uint8Array | null;
+}
+
+export interface PlanesWanted {
+  readonly snapshotPlanes: Buffer;
+  readonly motionPlanes: Buffer | null;
+  readonly columns: number;
+  readonly floor: number;
+  readonly window: Window;
+}
+
+/** Reads a window of a block's numbers, only the tiles that hold its rows. */
+export async function loadBlockPlanes(reader: Reader, wanted: PlanesWanted): Promise<BlockPlanes> {
+  const planes = unpackPlanes(wanted.snapshotPlanes);
+  const cut = (name: PlaneName, from = planes) => loadWindow(reader, from, name, wanted);
+  const derivative = new Float64Array(await cut("derivative"));
+  const reference = new Float64Array(await cut("reference"));
+  const resolution = new Float32Array(await cut("resolution"));
+  const { floor } = wanted;
+  return {
+    derivative,
+    reference,
+    uncertainty: Float64Array.from(resolution, (share, at) => absoluteUncertainty(share, reference[at], floor)),
+    error: Float64Array.from(derivative, (value, at) => relativeError(value, reference[at], floor)),
+    verdict: new Uint8Array(await cut("verdict")),
+    source: new Uint8Array(await cut("source")),
+    motion: wanted.motionPlanes && new Uint8Array(await cut("motion", unpackPlanes(wanted.motionPlanes))),
+  };
+}
+
+/** Output and input values as posted, or null. */
+export async function loadSideValues(
+  reader: Reader,
+  packed: Buffer,
+  name: "outputValues" | "inputValues",
+  size: number,
+): Promise<Float64Array | null> {
+  const planes = unpackPlanes(packed);
+  if (!planes.some((plane) => plane.name === name)) return null;
+  return new Float64Array(await loadPlane(reader, planes, name, size));
+}
+
+async function loadWindow(
+  reader: Reader,
+  planes: readonly PlaneTiles<number>[],
+  name: PlaneName,
+  { columns, window }: PlanesWanted,
+): Promise<ArrayBuffer> {
+  const width = PLANE_WIDTH[name];
+  const [firstRow, lastRow] = window.rows;
+  const [firstColumn, lastColumn] = window.columns;
+  const taken = (lastColumn - firstColumn) * width;
+  const out = new Uint8Array((lastRow - firstRow) * taken);
+  if (out.length === 0) return out.buffer;
+  const firstTile = Math.floor((firstRow * columns) / TILE_ENTRIES);
+  const ids = tilesOf(planes, name).slice(firstTile, Math.ceil((lastRow * columns) / TILE_ENTRIES));
+  const tiles = await loadTiles(reader, ids);
+  const bytes = Buffer.concat(
+    ids.map((id) => {
+      const tile = tiles.get(id);
+      if (!tile) throw new RangeError(`tile ${id} of plane ${name} is not in the record`);
+      return decodeTile(tile.encoding, Buffer.from(tile.data), width);
+    }),
+  );
+  for (let row = firstRow; row < lastRow; row += 1) {
+    const start = (row * columns + firstColumn - firstTile * TILE_ENTRIES) * width;
+    out.set(bytes.subarray(start, start + taken), (row - firstRow) * taken);
+  }
+  return out.buffer;
+}

@@ -1,0 +1,60 @@
+import type { Reader } from "../../db/reader.ts";
+
+/** A block of a build with everything but its numbers. */
+export interface LoadedBlock {
+  readonly blockId: number;
+  readonly buildId: number;
+  readonly sha: string;
+  readonly lane: string;
+  readonly model: string;
+  readonly point: string;
+  readonly output: string;
+  readonly input: string;
+  readonly snapshotId: number;
+  readonly rowCount: number;
+  readonly columnCount: number;
+  readonly rtol: number;
+  readonly floor: number;
+  readonly agrees: number;
+  readonly disagrees: number;
+  readonly unresolved: number;
+  readonly unreferenced: number;
+  readonly invalid: number;
+  /** JSON: StoredWorst, or null. */
+  readonly worst: string | null;
+  /** JSON: ResolutionBins. */
+  readonly resolutions: string;
+  /** JSON: BlockDetails. */
+  readonly details: string;
+  /** JSON: BlockCosts, or null. */
+  readonly costs: string | null;
+  /** JSON: MotionCounts, or null. */
+  readonly motionCounts: string | null;
+  readonly motionPlanes: Buffer | null;
+}
+
+const SELECT = `
+  SELECT bb.blockId, bb.buildId, c.sha, l.name AS lane, b.model, b.point, b.output, b.input, bb.snapshotId,
+    s.rowCount, s.columnCount, s.rtol, s.floor, s.agrees, s.disagrees, s.unresolved, s.unreferenced, s.invalid,
+    s.worst, s.resolutions, d.details, bb.costs, m.counts AS motionCounts, m.planes AS motionPlanes
+  FROM build_blocks bb JOIN builds u ON u.id = bb.buildId JOIN commits c ON c.id = u.commitId
+  JOIN lanes l ON l.id = u.laneId JOIN blocks b ON b.id = bb.blockId JOIN snapshots s ON s.id = bb.snapshotId
+  JOIN block_details d ON d.id = bb.detailsId LEFT JOIN motions m ON m.id = bb.motionId`;
+
+/** All blocks of a build. */
+export function loadBlockRows(reader: Reader, projectId: number, buildId: number): Promise<LoadedBlock[]> {
+  return reader.select<LoadedBlock>(`${SELECT} WHERE bb.buildId = $2 AND u.projectId = $1`, [projectId, buildId]);
+}
+
+export async function loadBlockRow(
+  reader: Reader,
+  projectId: number,
+  buildId: number,
+  blockId: number,
+): Promise<LoadedBlock | null> {
+  const [block] = await reader.select<LoadedBlock>(
+    `${SELECT} WHERE bb.buildId = $2 AND u.projectId = $1 AND bb.blockId = $3`,
+    [projectId, buildId, blockId],
+  );
+  return block ?? null;
+}

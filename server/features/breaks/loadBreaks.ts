@@ -1,0 +1,89 @@
+import type { Motion } from "../../../shared/domain/vocabulary.ts";
+import type { OnsetKind } from "../../../shared/history/types.ts";
+import type { Signature } from "../../../shared/schemas/break.ts";
+import type { Reader } from "../../db/reader.ts";
+
+/** A break as the record has it; what is JSON there is text here. */
+export interface LoadedBreak {
+  readonly id: number;
+  readonly number: number;
+  readonly lane: string;
+  readonly laneId: number;
+  readonly state: "open" | "repaired";
+  readonly kind: OnsetKind;
+  readonly onset: string;
+  readonly onsetBuildId: number;
+  readonly onsetAt: number | null;
+  readonly onsetSubject: string | null;
+  readonly onsetAuthor: string | null;
+  readonly lastGood: string | null;
+  readonly lastGoodBuildId: number | null;
+  readonly repairedBy: string | null;
+  readonly repairedByBuildId: number | null;
+  /** JSON: StoredTrace. */
+  readonly trace: string;
+  /** JSON: string[]. */
+  readonly models: string;
+  readonly entryCount: number;
+  /** JSON: StoredBreakWorst. */
+  readonly worst: string;
+  readonly motion: Motion | null;
+  readonly assigneeId: number | null;
+  readonly assigneeName: string | null;
+}
+
+const SELECT = `
+  SELECT b.id, b.number, l.name AS lane, b.laneId, b.state, b.kind, b.onset, b.onsetBuildId,
+    c.committedAt AS onsetAt, c.subject AS onsetSubject, c.authorName AS onsetAuthor,
+    b.lastGood, b.lastGoodBuildId, b.repairedBy, b.repairedByBuildId, b.trace, b.models, b.entryCount, b.worst,
+    b.motion, b.assigneeId, u.name AS assigneeName
+  FROM breaks b JOIN lanes l ON l.id = b.laneId
+  LEFT JOIN commits c ON c.projectId = b.projectId AND c.sha = b.onset LEFT JOIN users u ON u.id = b.assigneeId`;
+
+/** Breaks of a project that were not withdrawn, newest first. */
+export function loadBreaks(
+  reader: Reader,
+  projectId: number,
+  filter: { readonly lane: string | null; readonly state: "open" | "repaired" | null },
+): Promise<LoadedBreak[]> {
+  return reader.select<LoadedBreak>(
+    `${SELECT} WHERE b.projectId = $1 AND b.withdrawnAt IS NULL AND ($2 IS NULL OR l.name = $2)
+       AND ($3 IS NULL OR b.state = $3) ORDER BY b.number DESC`,
+    [projectId, filter.lane, filter.state],
+  );
+}
+
+/** A break, or the one that took its entries since: people keep addresses. */
+export async function loadBreak(reader: Reader, projectId: number, breakId: number): Promise<LoadedBreak | null> {
+  const [found] = await reader.select<LoadedBreak>(
+    `WITH RECURSIVE successors (id, next, withdrawnAt) AS (
+       SELECT id, supersededById, withdrawnAt FROM breaks WHERE id = $2 AND projectId = $1
+       UNION SELECT b.id, b.supersededById, b.withdrawnAt FROM breaks b JOIN successors s ON b.id = s.next)
+     ${SELECT} WHERE b.id = (SELECT id FROM successors WHERE withdrawnAt IS NULL LIMIT 1)`,
+    [projectId, breakId],
+  );
+  return found ?? null;
+}
+
+/** What was recognised in the blocks of each break at its onset, by break: the largest share of each kind. */
+export async function loadSignatures(reader: Reader, breakIds: readonly number[]): Promise<Map<number, Signature[]>> {
+  const rows = await reader.select<{ breakId: number; signatures: string }>(
+    `SELECT DISTINCT e.breakId, d.details ->> '$.signatures' AS signatures
+     FROM break_entries e JOIN breaks b ON b.id = e.breakId
+     JOIN build_blocks bb ON bb.buildId = b.onsetBuildId AND bb.blockId = e.blockId
+     JOIN block_details d ON d.id = bb.detailsId WHERE e.breakId IN (SELECT value FROM json_each($1))`,
+    [JSON.stringify(breakIds)],
+  );
+  const byBreak = new Map<number, Signature[]>();
+  for (const { breakId, signatures } of rows) {
+    const kept = byBreak.get(breakId) ?? [];
+    for (const found of JSON.parse(signatures) as Signature[]) {
+      const at = kept.findIndex(({ code }) => code === found.code);
+      if (at < 0) kept.push(found);
+      else if (found.share > kept[at].share) kept[at] = found;
+    }
+    byBreak.set(breakId, kept);
+  }
+  for (const kept of byBreak.values()) kept.sort((a, b) => b.share - a.share);
+  return byBreak;
+}

@@ -1,0 +1,187 @@
+import { MOTIONS, VERDICTS } from "../../../shared/domain/vocabulary.ts";
+import { absoluteUncertainty } from "../../../shared/numerics/uncertainty/absoluteUncertainty.ts";
+import { relativeError } from "../../../shared/numerics/verdict/relativeError.ts";
+import type { HistoryItem } from "../../../shared/schemas/block.ts";
+import { toWire } from "../../../shared/schemas/common.ts";
+import type { Reader } from "../../db/reader.ts";
+import { timeOrNull } from "../../http/present.ts";
+import { unpackPlanes } from "../../ingest/planes.ts";
+import { loadCommitFacts } from "../../record/commitFacts.ts";
+import { commitColumns } from "../../record/commitColumns.ts";
+import { loadGraph } from "../../record/commitGraph.ts";
+import { unpackEntries } from "../../record/entryList.ts";
+import { loadLaneBuilds } from "../../record/laneBuilds.ts";
+import { loadSnapshots, loadSparsePlanes, loadTiles, SparsePlane, tilesOf } from "../../record/readPlanes.ts";
+import type { SnapshotPlanes } from "../../record/readPlanes.ts";
+import { TILE_ENTRIES } from "../../../shared/domain/limits.ts";
+
+export interface EntryWanted {
+  readonly projectId: number;
+  readonly laneId: number;
+  readonly blockId: number;
+  readonly row: number;
+  readonly column: number;
+  /** Only commits that this branch contains; null for all. */
+  readonly branch: string | null;
+  /** The newest so many. */
+  readonly limit: number;
+}
+
+interface BuildOfBlock {
+  readonly buildId: number;
+  readonly snapshotId: number;
+  readonly motionId: number | null;
+}
+
+/**
+ * One entry over the builds of a lane, in commit order. Reads one tile of each plane for each distinct snapshot that
+ * holds the entry, however many builds share it.
+ */
+export async function loadEntryHistory(reader: Reader, wanted: EntryWanted): Promise<HistoryItem[]> {
+  const { projectId, laneId, blockId, row, column } = wanted;
+  const builds = await loadBuildsOfBlock(reader, wanted);
+  const snapshots = await loadSnapshots(
+    reader,
+    builds.map((build) => build.snapshotId),
+  );
+  const holding = [...snapshots.values()].filter(({ rows, columns }) => row < rows && column < columns);
+  const numbers = await loadNumbers(reader, holding, row, column);
+  const motions = await loadMotions(reader, builds, snapshots, row, column);
+  const events = await loadEvents(reader, laneId, blockId, snapshots, row, column);
+  const commits = await loadCommitFacts(
+    reader,
+    projectId,
+    builds.map((build) => build.sha),
+  );
+  return builds.flatMap(({ sha, buildId, snapshotId, motionId }) => {
+    const values = numbers.get(snapshotId);
+    if (values === undefined) return [];
+    const commit = commits.get(sha);
+    return [
+      {
+        commit: sha,
+        buildId: String(buildId),
+        subject: commit?.subject ?? null,
+        author: commit?.author ?? null,
+        committedAt: timeOrNull(commit?.committedAt ?? null),
+        ...values,
+        motion: motionId === null ? null : (motions.get(`${motionId} ${snapshotId}`) ?? null),
+        drift: null,
+        event: events.get(sha) ?? null,
+      },
+    ];
+  });
+}
+
+async function loadBuildsOfBlock(
+  reader: Reader,
+  wanted: EntryWanted,
+): Promise<(BuildOfBlock & { readonly sha: string })[]> {
+  const project = await loadGraph(reader, wanted.projectId);
+  const { speaking } = await loadLaneBuilds(reader, wanted.laneId);
+  const rows = await reader.select<BuildOfBlock>(
+    "SELECT buildId, snapshotId, motionId FROM build_blocks WHERE blockId = $1",
+    [wanted.blockId],
+  );
+  const ofBuild = new Map(rows.map((row) => [row.buildId, row]));
+  const tip = wanted.branch === null ? null : (project.tips.get(wanted.branch) ?? null);
+  if (wanted.branch !== null && tip === null) return [];
+  const within = tip === null ? null : project.graph.ancestors(tip);
+  const builds = commitColumns(project).flatMap((sha) => {
+    const build = speaking.get(sha);
+    const row = build && ofBuild.get(build.id);
+    return row && (within === null || within.has(sha)) ? [{ ...row, sha }] : [];
+  });
+  return builds.slice(-wanted.limit);
+}
+
+type Numbers = Pick<HistoryItem, "derivative" | "reference" | "uncertainty" | "error" | "verdict">;
+
+async function loadNumbers(
+  reader: Reader,
+  snapshots: readonly SnapshotPlanes[],
+  row: number,
+  column: number,
+): Promise<Map<number, Numbers>> {
+  const entryOf = (snapshot: SnapshotPlanes) => row * snapshot.columns + column;
+  const planes = await loadSparsePlanes(
+    reader,
+    snapshots.map((snapshot) => ({ snapshot, entries: [entryOf(snapshot)] })),
+    ["derivative", "reference", "resolution", "verdict"],
+  );
+  const orNull = (value: number) => (Number.isNaN(value) ? null : toWire(value));
+  return new Map(
+    snapshots.map((snapshot, at) => {
+      const entry = entryOf(snapshot);
+      const derivative = planes[at].derivative.at(entry);
+      const reference = planes[at].reference.at(entry);
+      const uncertainty = absoluteUncertainty(planes[at].resolution.at(entry), reference, snapshot.floor);
+      return [
+        snapshot.id,
+        {
+          derivative: toWire(derivative),
+          reference: orNull(reference),
+          uncertainty: orNull(uncertainty),
+          error: orNull(relativeError(derivative, reference, snapshot.floor)),
+          verdict: VERDICTS[planes[at].verdict.at(entry)],
+        },
+      ];
+    }),
+  );
+}
+
+/** By motion and snapshot (which tells the shape). */
+async function loadMotions(
+  reader: Reader,
+  builds: readonly BuildOfBlock[],
+  snapshots: ReadonlyMap<number, SnapshotPlanes>,
+  row: number,
+  column: number,
+): Promise<Map<string, HistoryItem["motion"]>> {
+  const ids = [...new Set(builds.flatMap(({ motionId }) => (motionId === null ? [] : [motionId])))];
+  const stored = await reader.select<{ id: number; planes: Buffer }>(
+    "SELECT id, planes FROM motions WHERE id IN (SELECT value FROM json_each($1))",
+    [JSON.stringify(ids)],
+  );
+  const tilesById = new Map(stored.map(({ id, planes }) => [id, tilesOf(unpackPlanes(planes), "motion")]));
+  const pairs = new Map<string, { tiles: readonly number[]; entry: number }>();
+  for (const { motionId, snapshotId } of builds) {
+    const tiles = motionId === null ? undefined : tilesById.get(motionId);
+    const columns = snapshots.get(snapshotId)?.columns ?? 0;
+    if (tiles) pairs.set(`${motionId} ${snapshotId}`, { tiles, entry: row * columns + column });
+  }
+  const needed = [...pairs.values()].map(({ tiles, entry }) => tiles[Math.floor(entry / TILE_ENTRIES)]);
+  const tiles = await loadTiles(
+    reader,
+    needed.filter((id) => id !== undefined),
+  );
+  return new Map(
+    [...pairs]
+      .filter(([, pair]) => pair.tiles[Math.floor(pair.entry / TILE_ENTRIES)] !== undefined)
+      .map(([key, pair]) => [key, MOTIONS[new SparsePlane("motion", pair.tiles, tiles).at(pair.entry)] ?? null]),
+  );
+}
+
+async function loadEvents(
+  reader: Reader,
+  laneId: number,
+  blockId: number,
+  snapshots: ReadonlyMap<number, SnapshotPlanes>,
+  row: number,
+  column: number,
+): Promise<Map<string, "break" | "repair">> {
+  const rows = await reader.select<{ onset: string; repairedBy: string | null; columns: number; entries: Buffer }>(
+    `SELECT b.onset, b.repairedBy, e.columnCount AS columns, e.entries
+     FROM breaks b JOIN break_entries e ON e.breakId = b.id
+     WHERE b.laneId = $1 AND e.blockId = $2 AND b.withdrawnAt IS NULL`,
+    [laneId, blockId],
+  );
+  const shapes = new Set([...snapshots.values()].map(({ columns }) => columns));
+  const events = new Map<string, "break" | "repair">();
+  for (const { onset, repairedBy, columns, entries } of rows) {
+    if (!shapes.has(columns) || !unpackEntries(entries).includes(row * columns + column)) continue;
+    events.set(onset, "break");
+    if (repairedBy !== null && !events.has(repairedBy)) events.set(repairedBy, "repair");
+  }
+  return events;
+}
