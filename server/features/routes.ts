@@ -3,15 +3,20 @@ import { defineRoute } from "../http/defineRoute.ts";
 import type { Route } from "../http/defineRoute.ts";
 import { openApiDocument } from "../http/openapi.ts";
 import { routes as audit } from "./audit/routes.ts";
+import { routes as blocks } from "./blocks/routes.ts";
+import { routes as breaks } from "./breaks/routes.ts";
 import { routes as builds } from "./builds/routes.ts";
 import { routes as gate } from "./gate/routes.ts";
+import { routes as history } from "./history/routes.ts";
 import { routes as invitations } from "./invitations/routes.ts";
 import { routes as members } from "./members/routes.ts";
+import { routes as overview } from "./overview/routes.ts";
 import { routes as people } from "./people/routes.ts";
 import { routes as projects } from "./projects/routes.ts";
 import { routes as session } from "./session/routes.ts";
 import { routes as tokens } from "./tokens/routes.ts";
 import { routes as waivers } from "./waivers/routes.ts";
+import { routes as wanted } from "./wanted/routes.ts";
 
 const document = defineRoute({
   method: "get",
@@ -30,7 +35,12 @@ export const ROUTES: readonly Route[] = [
   ...invitations,
   ...projects,
   ...builds,
+  ...blocks,
   ...gate,
+  ...overview,
+  ...history,
+  ...breaks,
+  ...wanted,
   ...members,
   ...tokens,
   ...waivers,

@@ -12,6 +12,8 @@ export interface SilentLane {
   readonly lane: string;
   /** Milliseconds since 1970. */
   readonly lastBuildAt: number;
+  /** Sha of the commit of that build. */
+  readonly lastCommit: string;
 }
 
 /**
@@ -23,8 +25,16 @@ export async function loadSilentLanes(
   projectIds: readonly number[],
   now: number,
 ): Promise<SilentLane[]> {
-  const rows = await reader.select<{ projectId: number; laneId: number; lane: string; times: string }>(
-    `SELECT l.projectId, l.id AS laneId, l.name AS lane, json_group_array(b.at ORDER BY b.at) AS times
+  const rows = await reader.select<{
+    projectId: number;
+    laneId: number;
+    lane: string;
+    times: string;
+    lastCommit: string;
+  }>(
+    `SELECT l.projectId, l.id AS laneId, l.name AS lane, json_group_array(b.at ORDER BY b.at) AS times,
+       (SELECT c.sha FROM builds o JOIN commits c ON c.id = o.commitId WHERE o.laneId = l.id AND o.state = 'complete'
+        ORDER BY COALESCE(o.finishedAt, o.startedAt, o.completedAt) DESC LIMIT 1) AS lastCommit
      FROM lanes l JOIN (SELECT laneId, COALESCE(finishedAt, startedAt, completedAt) AS at FROM builds
        WHERE state = 'complete') b ON b.laneId = l.id
      WHERE l.projectId IN (SELECT value FROM json_each($1)) GROUP BY l.id ORDER BY l.name`,

@@ -1,0 +1,111 @@
+import type { Overview } from "../../../shared/schemas/project.ts";
+import { loadBlockRows } from "../blocks/loadBlockRows.ts";
+import type { LoadedBlock } from "../blocks/loadBlockRows.ts";
+import type { Reader } from "../../db/reader.ts";
+import { timeOrNull } from "../../http/present.ts";
+import { resolutionCurve } from "../../ingest/resolutionBins.ts";
+import type { ResolutionBins } from "../../ingest/resolutionBins.ts";
+import { checkedShare } from "../../record/buildSummary.ts";
+import type { BuildSummary } from "../../record/buildSummary.ts";
+import { loadCommitFacts } from "../../record/commitFacts.ts";
+import { loadGraph } from "../../record/commitGraph.ts";
+import type { ProjectGraph } from "../../record/commitGraph.ts";
+import { loadLaneBuilds } from "../../record/laneBuilds.ts";
+import type { LaneBuild } from "../../record/laneBuilds.ts";
+import { loadBreaks } from "../breaks/loadBreaks.ts";
+import { modelRows } from "./modelRows.ts";
+import { breaksAt } from "./breaksAt.ts";
+import { overviewSentence } from "./sentence.ts";
+import { loadSilentLanes } from "./silentLanes.ts";
+
+export interface OverviewWanted {
+  readonly projectId: number;
+  readonly lane: string;
+  /** Null where nothing was posted to it. */
+  readonly laneId: number | null;
+  /** The commit to speak of; null for the newest judged one of the default branch. */
+  readonly at: string | null;
+  readonly rtol: number;
+}
+
+/** Everything the overview says of one commit of a lane: is it sound, and what is new against its baseline. */
+export async function loadOverview(reader: Reader, wanted: OverviewWanted, now: number): Promise<Overview> {
+  const { projectId, lane, laneId, rtol } = wanted;
+  const project = await loadGraph(reader, projectId);
+  const speaking = laneId === null ? new Map<string, LaneBuild>() : (await loadLaneBuilds(reader, laneId)).speaking;
+  const commit = wanted.at ?? newestJudged(project, speaking);
+  const build = commit === null ? undefined : speaking.get(commit);
+  const facts = commit === null ? undefined : (await loadCommitFacts(reader, projectId, [commit])).get(commit);
+  const blocks = build ? await loadBlockRows(reader, projectId, build.id) : [];
+  const baselineId = build?.baselineBuildId ?? null;
+  const baselineBlocks = baselineId === null ? [] : await loadBlockRows(reader, projectId, baselineId);
+  const counts = build ? await loadCounts(reader, build.id) : null;
+  const breaks = breaksAt(project, await loadBreaks(reader, projectId, { lane, state: null }), commit);
+  const vanishedBlocks = vanished(blocks, baselineBlocks);
+  return {
+    lane,
+    commit,
+    buildId: build ? String(build.id) : null,
+    subject: facts?.subject ?? null,
+    author: facts?.author ?? null,
+    committedAt: timeOrNull(facts?.committedAt ?? null),
+    baseline: baselineId === null ? null : baselineOf(baselineId, speaking),
+    rtol,
+    counts,
+    sentence: overviewSentence({
+      commit,
+      judged: build !== undefined,
+      counts,
+      newBreaks: breaks.fresh,
+      repairedBreaks: breaks.repaired,
+      openBreaks: breaks.open,
+      vanished: vanishedBlocks.length,
+      hasBaseline: baselineId !== null,
+    }),
+    openBreaks: breaks.open.map((one) => one.brief),
+    newBreaks: breaks.fresh.map((one) => one.brief.id),
+    repairedBreaks: breaks.repaired.map((one) => one.brief.id),
+    climbs: [],
+    silentLanes: (await loadSilentLanes(reader, [projectId], now)).map((silent) => ({
+      lane: silent.lane,
+      lastBuildAt: timeOrNull(silent.lastBuildAt),
+      commitsSince: commitsSince(project, silent.lastCommit),
+    })),
+    vanishedBlocks,
+    checkedShare: counts && checkedShare(counts),
+    resolutionCurve: resolutionCurve(
+      blocks.map((block) => JSON.parse(block.resolutions) as ResolutionBins),
+      counts?.entries ?? 0,
+    ),
+    models: modelRows(blocks),
+  };
+}
+
+/** The newest commit of the default branch that the lane judged; failing that, the newest of any branch. */
+function newestJudged(project: ProjectGraph, speaking: ReadonlyMap<string, LaneBuild>): string | null {
+  const judged = project.graph.topological().filter((sha) => speaking.has(sha));
+  return judged.findLast((sha) => project.mainline.has(sha)) ?? judged.at(-1) ?? null;
+}
+
+function baselineOf(baselineId: number, speaking: ReadonlyMap<string, LaneBuild>): Overview["baseline"] {
+  const build = [...speaking.values()].find(({ id }) => id === baselineId);
+  return build ? { commit: build.sha, buildId: String(build.id) } : null;
+}
+
+async function loadCounts(reader: Reader, buildId: number): Promise<BuildSummary["counts"]> {
+  const [{ summary }] = await reader.select<{ summary: string }>("SELECT summary FROM builds WHERE id = $1", [buildId]);
+  return (JSON.parse(summary) as BuildSummary).counts;
+}
+
+function vanished(now: readonly LoadedBlock[], before: readonly LoadedBlock[]): Overview["vanishedBlocks"] {
+  const here = new Set(now.map((block) => block.blockId));
+  return before
+    .filter((block) => !here.has(block.blockId))
+    .map(({ blockId, model, output, input, point }) => ({ blockId: String(blockId), model, output, input, point }));
+}
+
+/** Commits of the default branch since a lane was last built. */
+function commitsSince({ graph, mainline }: ProjectGraph, lastCommit: string): number {
+  const built = graph.ancestors(lastCommit);
+  return [...mainline].filter((sha) => !built.has(sha)).length;
+}
