@@ -1,5 +1,5 @@
 import { flushPromises } from "@vue/test-utils";
-import { afterEach, describe, expect, it, vi } from "vitest";
+import { describe, expect, it, vi } from "vitest";
 import { ApiProblem } from "../../src/api/problem.ts";
 import WaiverForm from "../../src/components/break/WaiverForm.vue";
 import InviteForm from "../../src/components/people/InviteForm.vue";
@@ -10,9 +10,6 @@ import { breakFixture } from "./fixtures/record.ts";
 import { stripFixture } from "./fixtures/history.ts";
 import { answerWith, mountAt } from "./support.ts";
 
-afterEach(() => {
-  document.body.innerHTML = "";
-});
 const type = async (wrapper: { findAll(s: string): { setValue(v: string): Promise<void> }[] }, values: string[]) => {
   const inputs = wrapper.findAll("input:not([type=checkbox])");
   for (const [k, value] of values.entries()) await inputs[k]!.setValue(value);

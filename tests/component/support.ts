@@ -1,10 +1,13 @@
-import { mount } from "@vue/test-utils";
+import { enableAutoUnmount, mount } from "@vue/test-utils";
 import { PiniaColada } from "@pinia/colada";
 import { createPinia, setActivePinia } from "pinia";
+import { afterEach } from "vitest";
 import type { Component } from "vue";
 import { createMemoryHistory, createRouter } from "vue-router";
 import type { RouteRecordRaw } from "vue-router";
 import { vuetify } from "../../src/plugins/vuetify.ts";
+
+enableAutoUnmount(afterEach);
 
 class StillObserver {
   observe(): void {}
@@ -32,6 +35,8 @@ const ROUTES = [
   named("overview", "/projects/:project"),
   named("breaks", "/projects/:project/breaks"),
   named("break", "/projects/:project/breaks/:id"),
+  named("builds", "/projects/:project/builds"),
+  named("members", "/projects/:project/members"),
   named("build", "/projects/:project/builds/:id"),
   named("block", "/projects/:project/builds/:id/blocks/:blockId"),
   named("tokens", "/projects/:project/tokens"),
@@ -83,6 +88,24 @@ export function answerWith(...answers: (Answer | "no network")[]): Sent[] {
     const told = type ?? (status >= 400 ? "application/problem+json" : "application/json");
     const content = status === 204 ? null : (text ?? JSON.stringify(body ?? {}));
     return new Response(content, { status, headers: { "Content-Type": told, ...headers } });
+  };
+  return sent;
+}
+
+/** Answers by path below /api/v1: the longest key that the path begins with wins; all else is 404. */
+export function answerByPath(answers: Readonly<Record<string, unknown>>): Sent[] {
+  const sent: Sent[] = [];
+  globalThis.fetch = async (input, init) => {
+    const path = String(input).replace("/api/v1", "");
+    const body = init?.body === undefined ? undefined : JSON.parse(String(init.body));
+    sent.push({ method: init?.method ?? "GET", path, headers: {}, body });
+    const key = Object.keys(answers)
+      .filter((known) => path.startsWith(known))
+      .sort((a, b) => b.length - a.length)[0];
+    const status = key === undefined ? 404 : 200;
+    const type = key === undefined ? "application/problem+json" : "application/json";
+    const answer = key === undefined ? { title: "Nothing here", status, instance: "req-404" } : answers[key];
+    return new Response(JSON.stringify(answer), { status, headers: { "Content-Type": type } });
   };
   return sent;
 }
