@@ -15,7 +15,7 @@ type Item = Wanted["items"][number];
 
 /**
  * What a CI scheduler should build next: commits that were asked for, then those that halve the suspects of most open
- * breaks, then the newest commit of lanes that fell silent.
+ * breaks, then the newest commit of lanes that fell silent without it.
  */
 export async function loadWanted(reader: Reader, project: Project, lane: string | null, now: number): Promise<Item[]> {
   return [
@@ -72,7 +72,13 @@ async function loadSilent(reader: Reader, projectId: number, lane: string | null
   const silent = (await loadSilentLanes(reader, [projectId], now)).filter((one) => lane === null || one.lane === lane);
   const { defaultTip } = await loadGraph(reader, projectId);
   if (defaultTip === null) return [];
-  return silent.map((one) => ({
+  const built = await reader.select<{ laneId: number }>(
+    `SELECT b.laneId FROM builds b JOIN commits c ON c.id = b.commitId
+     WHERE c.projectId = $1 AND c.sha = $2 AND b.state = 'complete'`,
+    [projectId, defaultTip],
+  );
+  const waiting = silent.filter(({ laneId }) => built.every((build) => build.laneId !== laneId));
+  return waiting.map((one) => ({
     commit: defaultTip,
     lane: one.lane,
     reason: "silent-lane",
