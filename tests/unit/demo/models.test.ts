@@ -1,103 +1,113 @@
 import { describe, expect, it } from "vitest";
-import { complexNumbers } from "../../../scripts/demo/algebra/complex.ts";
-import { dualNumbers, seeded } from "../../../scripts/demo/algebra/dual.ts";
-import {
-  jacobianByComplexStep,
-  jacobianByDifferences,
-  jacobianByDuals,
-} from "../../../scripts/demo/checks/jacobians.ts";
-import type { Code, Matrix } from "../../../scripts/demo/checks/jacobians.ts";
-import { derivativeOf } from "../../../scripts/demo/checks/makeBlock.ts";
-import { BLOCK_MODELS } from "../../../scripts/demo/models/index.ts";
-import type { BlockModel, Trait } from "../../../scripts/demo/models/types.ts";
+import { FIRST_CODE } from "../../../scripts/demo/code.ts";
+import type { Code } from "../../../scripts/demo/code.ts";
+import { byCentralDifferences, byComplexSteps, byDualNumbers, outputs } from "../../../scripts/demo/jacobians.ts";
+import type { Rows } from "../../../scripts/demo/jacobians.ts";
+import { MODELS } from "../../../scripts/demo/models/index.ts";
+import type { DemoModel } from "../../../scripts/demo/models/model.ts";
 
-/** Changes of models whose derivatives were changed with them. */
-const SOUND: readonly (readonly Trait[])[] = [
-  [],
-  ["blade-camber", "rotor-tip-loss", "drivetrain-friction", "drivetrain-friction-partials"],
-  ["wake-meander", "cost-drilling"],
-];
+/** Code bases whose derivatives were changed together with their models. */
+const SOUND: Readonly<Record<string, Code>> = {
+  first: FIRST_CODE,
+  later: { ...FIRST_CODE, flowSpeed: 2.4, stallExponent: 6, tipLoss: true, wakeGrowth: 0.031, cableCost: 436 },
+};
 
-const cases = BLOCK_MODELS.flatMap((block) =>
-  Object.entries(block.points).flatMap(([point, x]) =>
-    SOUND.map((traits) => ({
-      name: `${block.model} ${block.output.name} ${point} [${traits.join()}]`,
-      block,
-      x,
-      traits,
-    })),
-  ),
+const models: readonly DemoModel[] = MODELS;
+const cases = models.flatMap((model) =>
+  Object.entries(SOUND).map(([when, code]) => ({
+    name: `${model.model} ${model.output.name}, ${when} code`,
+    model,
+    code,
+  })),
 );
 
-const codeOf = (block: BlockModel, traits: readonly Trait[]): Code => ({
-  block,
-  traits: new Set(traits),
-  summation: "forward",
-});
-
 /** Largest |a - b| over max(|b|, a thousandth of the largest |b|). */
-function distance(a: Matrix, b: Matrix): number {
+function distance(a: Rows, b: Rows): number {
   const floor = 1e-3 * Math.max(...b.flat().map(Math.abs));
   return Math.max(
-    ...b.flatMap((row, r) =>
-      row.map((value, c) => Math.abs((a[r]?.[c] as number) - value) / Math.max(Math.abs(value), floor)),
-    ),
+    ...b.flatMap((row, r) => row.map((value, c) => Math.abs(a[r]![c]! - value) / Math.max(Math.abs(value), floor))),
   );
 }
 
 describe("the demo's models", () => {
-  it.each(cases)(
-    "$name: the derivative is that of dual numbers, complex step and differences",
-    ({ block, x, traits }) => {
-      const code = codeOf(block, traits);
-      const derivative = derivativeOf(code, x);
-      const dual = jacobianByDuals(code, x);
-      expect(derivative.length).toBe(block.output.elements.length);
-      expect(derivative.every((row) => row.length === block.input.elements.length)).toBe(true);
-      expect(distance(derivative, dual)).toBeLessThan(1e-13);
-      expect(distance(jacobianByComplexStep(code, x, 1e-20), dual)).toBeLessThan(1e-13);
-      expect(distance(jacobianByDifferences(code, x, { scheme: "central-difference", step: 1e-6 }), dual)).toBeLessThan(
-        1e-5,
-      );
-    },
-  );
+  it.each(cases)("$name: the hand-written derivative is that of dual numbers", ({ model, code }) => {
+    const exact = byDualNumbers(model, code);
+    const delivered = model.derivative?.(model.input.values, code) ?? exact;
+    expect(delivered.map((row) => row.length)).toEqual(model.output.elements.map(() => model.input.elements.length));
+    // The mooring's own iteration ends at a relative error of about 1e-12.
+    expect(distance(delivered, exact)).toBeLessThan(1e-11);
+  });
 
-  it("gives the same numbers on both platforms but for the last bits", () => {
-    for (const block of BLOCK_MODELS) {
-      const x = Object.values(block.points)[0] as readonly number[];
-      const forward = jacobianByDuals(codeOf(block, []), x);
-      const backward = jacobianByDuals({ ...codeOf(block, []), summation: "backward" }, x);
-      expect(distance(backward, forward)).toBeLessThan(1e-13);
+  it.each(cases)("$name: complex steps and central differences know the same derivative", ({ model, code }) => {
+    const exact = byDualNumbers(model, code);
+    expect(distance(byComplexSteps(model, code, 1e-20), exact)).toBeLessThan(1e-11);
+    const steps = model.input.values.map((value) => 1e-6 * Math.max(Math.abs(value), 0.1));
+    expect(distance(byCentralDifferences(model, code, steps), exact)).toBeLessThan(1e-4);
+  });
+
+  it("evaluates to the same numbers each time, all of them finite", () => {
+    for (const model of models) {
+      const values = outputs(model, FIRST_CODE);
+      expect(values.every(Number.isFinite)).toBe(true);
+      expect(outputs(model, FIRST_CODE)).toEqual(values);
     }
   });
 
-  it("names every element of a block once", () => {
-    for (const { input, output, points } of BLOCK_MODELS) {
+  it("names every element once, and every model as the scenario does", () => {
+    for (const { input, output } of models) {
       expect(new Set(input.elements).size).toBe(input.elements.length);
       expect(new Set(output.elements).size).toBe(output.elements.length);
-      for (const x of Object.values(points)) expect(x.length).toBe(input.elements.length);
+      expect(input.values.length).toBe(input.elements.length);
     }
+    expect(new Set(models.map((model) => model.model))).toEqual(
+      new Set(["blade.section", "rotor.thrust", "drivetrain.torque", "mooring.tension", "wake.deficit", "cost.energy"]),
+    );
   });
 });
 
-describe("the algebras", () => {
-  it("differentiate every operation as its rule says", () => {
-    const dual = dualNumbers("forward");
-    const complex = complexNumbers("forward");
-    const x = 0.7;
-    const rules = [
-      ["exp", Math.exp(x)],
-      ["log", 1 / x],
-      ["sqrt", 0.5 / Math.sqrt(x)],
-      ["sin", Math.cos(x)],
-      ["cos", -Math.sin(x)],
-    ] as const;
-    for (const [operation, slope] of rules) {
-      expect(dual[operation](seeded(x)).tangent).toBeCloseTo(slope, 14);
-      expect(complex[operation]({ re: x, im: 1e-20 }).im / 1e-20).toBeCloseTo(slope, 14);
+/** Each mistake of the history, alone in an otherwise sound code base, and the model whose derivative it spoils. */
+const MISTAKES: readonly (readonly [string, Partial<Code>, string])[] = [
+  ["a flipped sign", { temperatureSign: -1 }, "drivetrain.torque"],
+  ["degrees for radians", { liftInRadians: false }, "blade.section"],
+  ["a derivative left behind", { tipLoss: true, thrustKnowsTipLoss: false }, "rotor.thrust"],
+  ["single precision", { coordinatesInDouble: false }, "wake.deficit"],
+  ["a dropped term", { priceKnowsCable: false }, "cost.energy"],
+  ["a loosened solve", { mooringSweeps: 15 }, "mooring.tension"],
+  ["reordered rows", { transects: [0, 1, 3, 2, 4, 5] }, "wake.deficit"],
+  ["per cent", { efficiencyInPercent: true }, "drivetrain.torque"],
+];
+
+describe("the demo's mistakes", () => {
+  it.each(MISTAKES)("%s spoils the derivative of one model and no other", (_, set, spoilt) => {
+    const code = { ...FIRST_CODE, ...set };
+    const wrong = models.filter((model) => {
+      const delivered = model.derivative?.(model.input.values, code);
+      return delivered !== undefined && distance(delivered, byDualNumbers(model, code)) > 1e-6;
+    });
+    expect([...new Set(wrong.map((model) => model.model))]).toEqual([spoilt]);
+  });
+
+  it("loses the imaginary part where the depth is clipped, and nothing else", () => {
+    const clipped = { ...FIRST_CODE, clipsDepth: true };
+    const lost = models.filter(
+      (model) => distance(byComplexSteps(model, clipped, 1e-20), byComplexSteps(model, FIRST_CODE, 1e-20)) > 1e-6,
+    );
+    expect([...new Set(lost.map((model) => model.model))]).toEqual(["cost.energy"]);
+    for (const model of lost) {
+      const steps = model.input.values.map((value) => 1e-6 * Math.max(Math.abs(value), 0.1));
+      const delivered = model.derivative!(model.input.values, clipped);
+      expect(distance(byCentralDifferences(model, clipped, steps), delivered)).toBeLessThan(1e-4);
     }
-    expect(dual.div(dual.of(3), seeded(x)).tangent).toBeCloseTo(-3 / x ** 2, 13);
-    expect(complex.div(complex.of(3), { re: x, im: 1e-20 }).im / 1e-20).toBeCloseTo(-3 / x ** 2, 13);
-    expect(dual.mul(seeded(x), seeded(x)).tangent).toBeCloseTo(2 * x, 14);
+  });
+
+  it("climbs as the mooring's solve is loosened, sweep by sweep", () => {
+    const mooring = models.find((model) => model.model === "mooring.tension")!;
+    const errors = [31, 27, 23, 19, 15].map((mooringSweeps) => {
+      const code = { ...FIRST_CODE, mooringSweeps };
+      return distance(mooring.derivative!(mooring.input.values, code), byDualNumbers(mooring, code));
+    });
+    errors.slice(1).forEach((error, at) => expect(error).toBeGreaterThan(3 * errors[at]!));
+    expect(errors[3]).toBeLessThan(1e-6);
+    expect(errors[4]).toBeGreaterThan(1e-6);
   });
 });
