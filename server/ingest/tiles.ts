@@ -6,7 +6,7 @@ import { TILE_ENTRIES } from "../../shared/domain/limits.ts";
 export type Width = 8 | 4 | 1;
 
 /** How a stored tile is written; the number is in the database. */
-const RAW = 0;
+export const RAW = 0;
 const SHUFFLED_DEFLATED = 1;
 const CONSTANT = 2;
 

@@ -11,9 +11,9 @@ import { commitColumns } from "../../record/commitColumns.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
 import { unpackEntries } from "../../record/entryList.ts";
 import { loadLaneBuilds } from "../../record/laneBuilds.ts";
-import { loadSnapshots, loadSparsePlanes, loadTiles, SparsePlane, tilesOf } from "../../record/readPlanes.ts";
+import { loadEntryNumbers } from "../../record/readEntry.ts";
+import { loadSnapshots } from "../../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../../record/readPlanes.ts";
-import { TILE_ENTRIES } from "../../../shared/domain/limits.ts";
 
 export interface EntryWanted {
   readonly projectId: number;
@@ -103,27 +103,24 @@ async function loadNumbers(
   row: number,
   column: number,
 ): Promise<Map<number, Numbers>> {
-  const entryOf = (snapshot: SnapshotPlanes) => row * snapshot.columns + column;
-  const planes = await loadSparsePlanes(
-    reader,
-    snapshots.map((snapshot) => ({ snapshot, entries: [entryOf(snapshot)] })),
-    ["derivative", "reference", "resolution", "verdict"],
-  );
+  const places = snapshots.map(({ planes, columns }) => ({ planes, entry: row * columns + column }));
+  const derivatives = await loadEntryNumbers(reader, "derivative", places);
+  const references = await loadEntryNumbers(reader, "reference", places);
+  const resolutions = await loadEntryNumbers(reader, "resolution", places);
+  const verdicts = await loadEntryNumbers(reader, "verdict", places);
   const orNull = (value: number) => (Number.isNaN(value) ? null : toWire(value));
   return new Map(
-    snapshots.map((snapshot, at) => {
-      const entry = entryOf(snapshot);
-      const derivative = planes[at].derivative.at(entry);
-      const reference = planes[at].reference.at(entry);
-      const uncertainty = absoluteUncertainty(planes[at].resolution.at(entry), reference, snapshot.floor);
+    snapshots.map(({ id, floor }, at) => {
+      const derivative = derivatives[at];
+      const reference = references[at];
       return [
-        snapshot.id,
+        id,
         {
           derivative: toWire(derivative),
           reference: orNull(reference),
-          uncertainty: orNull(uncertainty),
-          error: orNull(relativeError(derivative, reference, snapshot.floor)),
-          verdict: VERDICTS[planes[at].verdict.at(entry)],
+          uncertainty: orNull(absoluteUncertainty(resolutions[at], reference, floor)),
+          error: orNull(relativeError(derivative, reference, floor)),
+          verdict: VERDICTS[verdicts[at]],
         },
       ];
     }),
@@ -138,28 +135,18 @@ async function loadMotions(
   row: number,
   column: number,
 ): Promise<Map<string, HistoryItem["motion"]>> {
-  const ids = [...new Set(builds.flatMap(({ motionId }) => (motionId === null ? [] : [motionId])))];
+  const moved = builds.filter((build) => build.motionId !== null);
   const stored = await reader.select<{ id: number; planes: Buffer }>(
     "SELECT id, planes FROM motions WHERE id IN (SELECT value FROM json_each($1))",
-    [JSON.stringify(ids)],
+    [JSON.stringify([...new Set(moved.map((build) => build.motionId))])],
   );
-  const tilesById = new Map(stored.map(({ id, planes }) => [id, tilesOf(unpackPlanes(planes), "motion")]));
-  const pairs = new Map<string, { tiles: readonly number[]; entry: number }>();
-  for (const { motionId, snapshotId } of builds) {
-    const tiles = motionId === null ? undefined : tilesById.get(motionId);
-    const columns = snapshots.get(snapshotId)?.columns ?? 0;
-    if (tiles) pairs.set(`${motionId} ${snapshotId}`, { tiles, entry: row * columns + column });
-  }
-  const needed = [...pairs.values()].map(({ tiles, entry }) => tiles[Math.floor(entry / TILE_ENTRIES)]);
-  const tiles = await loadTiles(
-    reader,
-    needed.filter((id) => id !== undefined),
-  );
-  return new Map(
-    [...pairs]
-      .filter(([, pair]) => pair.tiles[Math.floor(pair.entry / TILE_ENTRIES)] !== undefined)
-      .map(([key, pair]) => [key, MOTIONS[new SparsePlane("motion", pair.tiles, tiles).at(pair.entry)] ?? null]),
-  );
+  const planesById = new Map(stored.map(({ id, planes }) => [id, unpackPlanes(planes)]));
+  const places = moved.map(({ motionId, snapshotId }) => ({
+    planes: planesById.get(motionId as number) ?? [],
+    entry: row * (snapshots.get(snapshotId)?.columns ?? 0) + column,
+  }));
+  const codes = await loadEntryNumbers(reader, "motion", places);
+  return new Map(moved.map((build, at) => [`${build.motionId} ${build.snapshotId}`, MOTIONS[codes[at]] ?? null]));
 }
 
 async function loadEvents(

@@ -1,0 +1,51 @@
+import { loadEntryHistory } from "/work/main/server/features/history/loadEntryHistory.ts";
+import { openRecord } from "/work/main/tests/support/record.ts";
+import { judged, storeBuilds } from "/work/main/scripts/bench/record.ts";
+import { makeBuild } from "/work/main/scripts/bench/scenario.ts";
+import { loadGraph } from "/work/main/server/record/commitGraph.ts";
+import { loadLaneBuilds } from "/work/main/server/record/laneBuilds.ts";
+import { loadCommitFacts } from "/work/main/server/record/commitFacts.ts";
+import { commitColumns } from "/work/main/server/record/commitColumns.ts";
+import { loadSnapshots, loadSparsePlanes } from "/work/main/server/record/readPlanes.ts";
+const SHAPE = { blocks: 1, rows: 200, columns: 200 };
+const record = await openRecord();
+const templates = Array.from({ length: 100 }, (_, at) => judged(makeBuild(1, SHAPE, 1 + at)));
+await storeBuilds(record, Array.from({ length: 1000 }, (_, at) => {
+  const { commit, run: ci } = makeBuild(at + 1, { ...SHAPE, blocks: 0 }, 1);
+  const template = templates[Math.floor(at / 10)]!;
+  return { ...template, header: { ...template.header, commit, run: ci } };
+}));
+const { context: { db }, project } = record;
+const t = async (name: string, f: () => unknown) => {
+  const times: number[] = [];
+  for (let k = 0; k < 15; k++) { const s = performance.now(); await f(); times.push(performance.now() - s); }
+  console.log(name.padEnd(20), times.sort((a, b) => a - b)[7]!.toFixed(1));
+};
+const pg = await loadGraph(db, project.id);
+const lane = (await db.select<{ id: number }>("SELECT id FROM lanes"))[0]!.id;
+const block = (await db.select<{ id: number }>("SELECT id FROM blocks"))[0]!.id;
+await t("graph", () => loadGraph(db, project.id));
+await t("laneBuilds", () => loadLaneBuilds(db, lane));
+await t("build_blocks", () => db.select("SELECT buildId, snapshotId, motionId FROM build_blocks WHERE blockId = $1", [block]));
+await t("columns", () => commitColumns(pg));
+const shas = commitColumns(pg);
+await t("facts", () => loadCommitFacts(db, project.id, shas));
+const ids = (await db.select<{ id: number }>("SELECT id FROM snapshots")).map((r) => r.id);
+await t("snapshots", () => loadSnapshots(db, ids));
+const snaps = [...(await loadSnapshots(db, ids)).values()];
+await t("sparse", () => loadSparsePlanes(db, snaps.map((snapshot) => ({ snapshot, entries: [120 * 200 + 77] })), ["derivative", "reference", "resolution", "verdict"]));
+
+const tileIds = snaps.flatMap((sn) => ["derivative","reference","resolution","verdict"].map((n) => sn.planes.find((p) => p.name === n)!.tiles[5]!));
+const J = JSON.stringify([...new Set(tileIds)]);
+console.log(new Set(tileIds).size, await db.select("SELECT encoding, count(*) AS n, sum(length(data)) AS b FROM tiles WHERE id IN (SELECT value FROM json_each($1)) GROUP BY encoding", [J]));
+await t("full", () => db.select("SELECT id, encoding, data FROM tiles WHERE id IN (SELECT value FROM json_each($1))", [J]));
+await t("substr", () => db.select("SELECT id, encoding, CASE WHEN encoding = 0 THEN substr(data, 801, 8) ELSE data END AS data FROM tiles WHERE id IN (SELECT value FROM json_each($1))", [J]));
+await t("nodata", () => db.select("SELECT id, encoding FROM tiles WHERE id IN (SELECT value FROM json_each($1))", [J]));
+await t("length", () => db.select("SELECT id, encoding, length(data) AS n FROM tiles WHERE id IN (SELECT value FROM json_each($1))", [J]));
+const [planes] = [await loadSparsePlanes(db, snaps.map((snapshot) => ({ snapshot, entries: [120 * 200 + 77] })), ["derivative", "reference", "resolution", "verdict"])];
+await t("decode", async () => { const p = await loadSparsePlanes(db, snaps.map((snapshot) => ({ snapshot, entries: [120 * 200 + 77] })), ["derivative", "reference", "resolution", "verdict"]); const s = performance.now(); for (const q of p) for (const n of ["derivative", "reference", "resolution", "verdict"] as const) q[n].at(24077); (globalThis as any).d = performance.now() - s; });
+console.log("decode only", (globalThis as any).d, planes!.length);
+await t("motions", () => db.select("SELECT id, planes FROM motions"));
+await t("motionrows", async () => console.log((await db.select("SELECT count(*) AS n FROM motions"))));
+await t("all", () => loadEntryHistory(db, { projectId: project.id, laneId: lane, blockId: block, row: 120, column: 77, branch: null, limit: 1000 }));
+await record.dispose();
