@@ -116,7 +116,8 @@ function drawBrackets(c: CanvasRenderingContext2D, g: StripGeometry, layout: Str
     const half = Math.max(4, g.pitch / 2);
     const [x0, x1] = [columnX(g, bracket.first) - half, columnX(g, bracket.last) + half];
     if (x1 < g.left || x0 > g.right) continue;
-    const y = g.top + 3 + bracket.level * 15;
+    // The first level stands above the head of the ruler, where no mark can be.
+    const y = g.top - 11 + bracket.level * 15;
     c.strokeStyle = colour;
     c.lineWidth = 1.5;
     c.beginPath();
@@ -147,7 +148,7 @@ function drawCursor(c: CanvasRenderingContext2D, g: StripGeometry, cursor: Strip
   c.fillStyle = palette.ink;
   c.lineWidth = 1.5;
   c.beginPath();
-  line(c, x, g.top - 4, x, g.foot + 8);
+  line(c, x, g.top - 14, x, g.foot + 8);
   c.stroke();
   c.beginPath();
   c.moveTo(x, g.foot + 6);

@@ -33,7 +33,7 @@ export function fittingPitch(width: number, count: number): number {
 }
 
 export function stripGeometry(width: number, height: number, pitch: number, scroll: number): StripGeometry {
-  return { width, height, ...plotEdges(width), top: HOLES + 4, foot: height - HOLES - 9, pitch, scroll };
+  return { width, height, ...plotEdges(width), top: HOLES + 16, foot: height - HOLES - 9, pitch, scroll };
 }
 
 /** Width that the scrolled content needs. */

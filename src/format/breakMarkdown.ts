@@ -1,7 +1,7 @@
 import type { BreakDetail, BreakEntry } from "../../shared/schemas/break.ts";
 import { CAUTION } from "../../shared/domain/vocabulary.ts";
 import { numberText } from "./number.ts";
-import { MOTION_SENTENCE, shortSha } from "./words.ts";
+import { elsewhere, MOTION_SENTENCE, shortSha } from "./words.ts";
 
 /** Name of an entry: `thrust[0] by pitch[1]`. */
 export const entryName = (entry: Pick<BreakEntry, "output" | "input" | "row" | "column">) =>
@@ -31,7 +31,7 @@ export function breakMarkdown(record: BreakDetail, address: string): string {
   );
   const signature = record.signatures[0];
   return [
-    `### ${record.sentence}`,
+    `### ${elsewhere(record.sentence)}`,
     ``,
     `[Break ${record.number}](${address}) in lane ${record.lane}, since \`${shortSha(record.onset.commit)}\`.`,
     ...(signature ? [``, `**${signature.detail}**`] : []),

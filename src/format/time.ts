@@ -37,8 +37,9 @@ export function agoText(iso: string, now: number): string {
   return "just now";
 }
 
-/** A span of seconds for people: 0.21 s, 41 s, 3 min 5 s. */
+/** A span of seconds for people: under 0.1 s, 0.21 s, 41 s, 3 min 5 s. */
 export function spanText(seconds: number): string {
+  if (seconds < 0.05) return "under 0.1 s";
   if (seconds < 10) return `${Number(seconds.toPrecision(2))} s`;
   if (seconds < 100) return `${Math.round(seconds)} s`;
   const whole = Math.round(seconds);

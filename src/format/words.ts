@@ -103,6 +103,9 @@ export const SIGNATURE_WORD: Record<SignatureCode, string> = {
   "reference-not-finite": "the reference is not finite",
 };
 
+/** A break's sentence away from its commit: without the `here` that the overview of that commit says. */
+export const elsewhere = (sentence: string) => sentence.replace(/ here\.$/, ".");
+
 /** `1` of a byte plane as its word; 255 is none. */
 export const verdictOfCode = (code: number): Verdict | null => VERDICTS[code] ?? null;
 

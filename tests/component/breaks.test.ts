@@ -15,7 +15,8 @@ const strip = stripFixture();
 const record = breakFixture(strip);
 
 describe("a break as Markdown", () => {
-  const text = breakMarkdown(record, "https://clinograph.example/projects/tidewheel/breaks/31");
+  const here = { ...record, sentence: "Three partials of rotor.thrust stopped agreeing here." };
+  const text = breakMarkdown(here, "https://clinograph.example/projects/tidewheel/breaks/31");
   it("says what, who moved, which commit, the next test and the caution", () => {
     expect(text).toContain("### Three partials of rotor.thrust stopped agreeing.");
     expect(text).toContain("The derivative moved alone.");

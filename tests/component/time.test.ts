@@ -14,6 +14,7 @@ describe("times in a viewer's zone", () => {
     expect(agoText("2026-05-11T09:00:00Z", now)).toBe("3 days ago");
   });
   it("writes spans as people say them", () => {
+    expect(spanText(0)).toBe("under 0.1 s");
     expect(spanText(0.2134)).toBe("0.21 s");
     expect(spanText(41.4)).toBe("41 s");
     expect(spanText(185)).toBe("3 min 5 s");
