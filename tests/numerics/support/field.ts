@@ -10,6 +10,7 @@ export interface Field<T> {
   div(a: T, b: T): T;
   scale(a: T, factor: number): T;
   exp(a: T): T;
+  log(a: T): T;
   sin(a: T): T;
   cos(a: T): T;
   atan(a: T): T;
@@ -26,6 +27,7 @@ export const REAL: Field<number> = {
   div: (a, b) => a / b,
   scale: (a, factor) => a * factor,
   exp: Math.exp,
+  log: Math.log,
   sin: Math.sin,
   cos: Math.cos,
   atan: Math.atan,
@@ -55,6 +57,7 @@ export const COMPLEX: Field<Complex> = {
   },
   scale: (a, factor) => complex(a.re * factor, a.im * factor),
   exp: (a) => complex(Math.exp(a.re) * Math.cos(a.im), Math.exp(a.re) * Math.sin(a.im)),
+  log: (a) => complex(Math.log(Math.hypot(a.re, a.im)), Math.atan2(a.im, a.re)),
   sin: (a) => complex(Math.sin(a.re) * Math.cosh(a.im), Math.cos(a.re) * Math.sinh(a.im)),
   cos: (a) => complex(Math.cos(a.re) * Math.cosh(a.im), -Math.sin(a.re) * Math.sinh(a.im)),
   atan: (a) => {
