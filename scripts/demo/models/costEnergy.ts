@@ -75,14 +75,7 @@ export const energyCost: DemoModel = {
     const energy = (8766 * rated! * availability! * load) / Math.sqrt(1 + load ** 2);
     // Relative slope of the energy for a relative change of the load: 1 far below the knee, 0 far above.
     const knee = 1 / (1 + load ** 2);
-    const energyShares = [
-      (2 * knee) / diameter!,
-      (1 - knee) / rated!,
-      0,
-      0,
-      (3 * knee) / flow!,
-      1 / availability!,
-    ];
+    const energyShares = [(2 * knee) / diameter!, (1 - knee) / rated!, 0, 0, (3 * knee) / flow!, 1 / availability!];
     const yearly = ANNUITY * built + operation;
     const known = bySize.map((slope, j) => (j === 3 && !code.priceKnowsCable ? 0 : slope));
     const price = known.map((slope, j) => {
