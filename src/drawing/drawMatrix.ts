@@ -11,10 +11,16 @@ export interface Crosshair {
   readonly column: number;
 }
 
-/** A matrix fills the width; its entries are square where that keeps the height between 160 and 560 pixels. */
+/** Largest rectangle of one entry: a matrix of few entries stays a small picture. */
+const MOST = { width: 96, height: 48 } as const;
+
+export const matrixWidth = (columns: number) => Math.max(1, columns) * MOST.width;
+
+/** Entries are square where that keeps the whole between 160 and 560 pixels and none of them too tall. */
 export function matrixHeight(width: number, rows: number, columns: number): number {
   if (rows === 0 || columns === 0) return 160;
-  return Math.round(Math.min(560, Math.max(Math.min(160, rows * 40), (width / columns) * rows)));
+  const entry = Math.min(MOST.height, Math.max(width / columns, 160 / rows));
+  return Math.round(Math.min(560, entry * rows));
 }
 
 export function entryAt(view: MatrixView, x: number, y: number): Crosshair {

@@ -49,11 +49,11 @@ const SUPERSCRIPTS: Record<string, string> = {
   [MINUS]: "⁻",
 };
 
-/** The same in plain text, with superscript characters: for titles, Markdown and labels. */
+/** The same in plain text, with superscript characters: for titles, Markdown and labels; it does not break. */
 export function numberText(wire: WireNumber, digits = 2, plain = false): string {
   const { coefficient, exponent } = numberParts(wire, digits, plain);
   if (exponent === null) return coefficient;
-  return `${coefficient} × 10${[...exponent].map((c) => SUPERSCRIPTS[c] ?? c).join("")}`;
+  return `${coefficient}\u00a0×\u00a010${[...exponent].map((c) => SUPERSCRIPTS[c] ?? c).join("")}`;
 }
 
 /** A count with thin groups of three. */

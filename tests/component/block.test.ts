@@ -62,7 +62,7 @@ describe("the entry under the crosshair", () => {
 
 it("references stand side by side with their share of the judging", async () => {
   const { wrapper } = await mountAt(BlockReferences, { block, planes });
-  expect(wrapper.text()).toContain("5 from 1 × 10⁻³ to 1 × 10⁻⁷ relative");
+  expect(wrapper.text().replaceAll("\u00a0", " ")).toContain("5 from 1 × 10⁻³ to 1 × 10⁻⁷ relative");
   expect(wrapper.text()).toContain("100 % of the entries");
   expect(wrapper.text()).toContain("4 of 60");
 });

@@ -16,7 +16,7 @@ const record = breakFixture(strip);
 
 describe("a break as Markdown", () => {
   const here = { ...record, sentence: "Three partials of rotor.thrust stopped agreeing here." };
-  const text = breakMarkdown(here, "https://clinograph.example/projects/tidewheel/breaks/31");
+  const text = breakMarkdown(here, "https://clinograph.example/projects/tidewheel/breaks/31").replaceAll("\u00a0", " ");
   it("says what, who moved, which commit, the next test and the caution", () => {
     expect(text).toContain("### Three partials of rotor.thrust stopped agreeing.");
     expect(text).toContain("The derivative moved alone.");

@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { VERDICT_CODE } from "../../shared/domain/vocabulary.ts";
 import { cividis, cividisGradient } from "../../src/drawing/cividis.ts";
-import { entryAt, matrixHeight } from "../../src/drawing/drawMatrix.ts";
+import { entryAt, matrixHeight, matrixWidth } from "../../src/drawing/drawMatrix.ts";
 import { orderEntries } from "../../src/drawing/entryOrder.ts";
 import { entryColour, magnitudeSpan, matrixPixels, rgbOf } from "../../src/drawing/matrixImage.ts";
 import type { Palette } from "../../src/drawing/palette.ts";
@@ -92,7 +92,8 @@ describe("the matrix as pixels", () => {
     const view = { rows: 4, columns: 8, width: 800, height: 400 };
     expect(entryAt(view, 450, 210)).toEqual({ row: 2, column: 4 });
     expect(entryAt(view, 900, -5)).toEqual({ row: 0, column: 7 });
-    expect(matrixHeight(800, 4, 8)).toBe(400);
+    expect(matrixHeight(800, 40, 80)).toBe(400);
+    expect(matrixHeight(matrixWidth(2), 3, 2)).toBe(144);
     expect(matrixHeight(800, 4000, 8)).toBe(560);
   });
 });

@@ -51,7 +51,7 @@ describe("a ruler in a table", () => {
     expect(draw({ resolution: null }).find("rect").exists()).toBe(false);
   });
   it("says all of it in words too", () => {
-    expect(draw({ resolution: 1e-8 }).attributes("aria-label")).toBe(
+    expect(draw({ resolution: 1e-8 }).attributes("aria-label")!.replaceAll("\u00a0", " ")).toBe(
       "relative error 1.0 × 10⁻⁴, disagrees; tolerance 1.0 × 10⁻⁶; the reference sees down to 1.0 × 10⁻⁸",
     );
     expect(draw({ error: null, verdict: "unreferenced" }).find("g").exists()).toBe(false);
