@@ -68,10 +68,10 @@ async function reference(
   commit: DemoCommit,
   history: readonly DemoCommit[],
 ): Promise<Finding> {
-  for (const { commit: one, lanes } of history) {
-    if (!lanes.includes(LANE)) continue;
-    const { items } = await reader.get<{ items: BuildRow[] }>(`${base}/builds?lane=${LANE}&commit=${one.sha}`);
-    const build = items.find(({ current }) => current);
+  const { items } = await reader.get<{ items: BuildRow[] }>(`${base}/builds?lane=${LANE}&limit=500`);
+  const current = new Map(items.filter((build) => build.current).map((build) => [build.commit, build]));
+  for (const { commit: one } of history) {
+    const build = current.get(one.sha);
     if (!build) continue;
     const blocks = await reader.get<{ items: BlockRow[] }>(`${base}/builds/${build.id}/blocks?limit=500`);
     const marked = blocks.items.some(

@@ -76,10 +76,13 @@ try {
     prepared.complete();
     say(`Posted in ${((Date.now() - began) / 1000).toFixed(0)} s.`);
   }
+  // Seeded before: the address is wanted first.
+  const accounts = [...accountLines(server.url), "Ctrl-C stops it; run it again and it starts at once."];
+  if (!given.once && prepared.seededAt !== null) say("", ...accounts);
   const found = await findings(reader, history);
   say("", ...findingLines(found, await climbOf(reader, found)), "");
   if (given.once) stop(found.every(({ right }) => right) ? 0 : 1);
-  else say(...accountLines(server.url), "", "Ctrl-C stops it; run it again and it starts at once.");
+  else if (prepared.seededAt === null) say(...accounts);
 } catch (error) {
   // While it is being stopped, a posting that is cut off is no news.
   if (!stopping) {
