@@ -76,6 +76,17 @@ export function decodeTile(encoding: number, data: Buffer, width: Width): Uint8A
   return bytes;
 }
 
+/** The bytes of one number of a stored tile, without putting the whole tile in order. */
+export function oneOfTile(encoding: number, data: Buffer, width: Width, index: number): Uint8Array {
+  if (encoding === CONSTANT) return data.subarray(0, width);
+  if (encoding !== SHUFFLED_DEFLATED || width === 1) {
+    return decodeTile(encoding, data, width).subarray(index * width, (index + 1) * width);
+  }
+  const shuffled = inflateRawSync(data);
+  const count = shuffled.length / width;
+  return Uint8Array.from({ length: width }, (_, byte) => shuffled[byte * count + index]);
+}
+
 /** Puts first bytes together, then second bytes, and so on: neighbouring exponents compress, mantissas do not. */
 function shuffle(bytes: Uint8Array, width: Width): Uint8Array {
   if (width === 1) return bytes;

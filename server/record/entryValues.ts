@@ -2,6 +2,8 @@ import { VERDICTS } from "../../shared/domain/vocabulary.ts";
 import type { Verdict } from "../../shared/domain/vocabulary.ts";
 import { absoluteUncertainty } from "../../shared/numerics/uncertainty/absoluteUncertainty.ts";
 import { relativeError } from "../../shared/numerics/verdict/relativeError.ts";
+import { toWire } from "../../shared/schemas/common.ts";
+import type { WireNumber } from "../../shared/schemas/common.ts";
 import type { SparsePlane } from "./readPlanes.ts";
 
 /** The planes that tell what an entry is. */
@@ -19,15 +21,43 @@ export interface EntryValues {
   readonly verdict: Verdict;
 }
 
-/** `entry` is the flat index, `floor` that of the snapshot. */
-export function entryValuesAt(planes: EntryPlanes, entry: number, floor: number): EntryValues {
-  const derivative = planes.derivative.at(entry);
-  const reference = planes.reference.at(entry);
+/** What the four numbers in the record say; `floor` is that of the snapshot. */
+export function entryValuesOf(
+  stored: Readonly<Record<(typeof ENTRY_PLANES)[number], number>>,
+  floor: number,
+): EntryValues {
+  const { derivative, reference, resolution, verdict } = stored;
   return {
     derivative,
     reference,
-    uncertainty: absoluteUncertainty(planes.resolution.at(entry), reference, floor),
+    uncertainty: absoluteUncertainty(resolution, reference, floor),
     error: relativeError(derivative, reference, floor),
-    verdict: VERDICTS[planes.verdict.at(entry)],
+    verdict: VERDICTS[verdict],
+  };
+}
+
+/** `entry` is the flat index. */
+export function entryValuesAt(planes: EntryPlanes, entry: number, floor: number): EntryValues {
+  const { derivative, reference, resolution, verdict } = planes;
+  return entryValuesOf(
+    {
+      derivative: derivative.at(entry),
+      reference: reference.at(entry),
+      resolution: resolution.at(entry),
+      verdict: verdict.at(entry),
+    },
+    floor,
+  );
+}
+
+/** As the API tells them: null where there is no such number. */
+export function presentEntryValues({ derivative, reference, uncertainty, error, verdict }: EntryValues) {
+  const orNull = (value: number): WireNumber | null => (Number.isNaN(value) ? null : toWire(value));
+  return {
+    derivative: toWire(derivative),
+    reference: orNull(reference),
+    uncertainty: orNull(uncertainty),
+    error: orNull(error),
+    verdict,
   };
 }

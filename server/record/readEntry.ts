@@ -2,7 +2,7 @@ import { TILE_ENTRIES } from "../../shared/domain/limits.ts";
 import type { Reader } from "../db/reader.ts";
 import { PLANE_WIDTH } from "../ingest/planes.ts";
 import type { PlaneName, PlaneTiles } from "../ingest/planes.ts";
-import { decodeTile, RAW } from "../ingest/tiles.ts";
+import { oneOfTile, RAW } from "../ingest/tiles.ts";
 import { tilesOf } from "./readPlanes.ts";
 
 /** Where an entry's number stands: the planes of a snapshot (or motion) and its flat index there. */
@@ -36,14 +36,13 @@ export async function loadEntryNumbers(
   );
   const numbers = new Map<string, number>();
   for (const { tile, within, encoding, bytes } of rows) {
-    const plain = encoding === RAW ? bytes : decodeTile(encoding, bytes, width);
-    const view = new DataView(plain.buffer, plain.byteOffset, plain.byteLength);
-    numbers.set(`${tile} ${within}`, numberAt(view, encoding === RAW ? 0 : within, width));
+    const one = encoding === RAW ? bytes : oneOfTile(encoding, bytes, width, within);
+    numbers.set(`${tile} ${within}`, numberIn(new DataView(one.buffer, one.byteOffset, width), width));
   }
   return Float64Array.from(places, (place) => numbers.get(`${tileOf(place)} ${place.entry % TILE_ENTRIES}`) ?? NaN);
 }
 
-function numberAt(view: DataView, index: number, width: 8 | 4 | 1): number {
-  if (width === 8) return view.getFloat64(index * 8, true);
-  return width === 4 ? view.getFloat32(index * 4, true) : view.getUint8(index);
+function numberIn(view: DataView, width: 8 | 4 | 1): number {
+  if (width === 8) return view.getFloat64(0, true);
+  return width === 4 ? view.getFloat32(0, true) : view.getUint8(0);
 }

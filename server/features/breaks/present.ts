@@ -1,9 +1,8 @@
 import type { BreakDetail, BreakEntry, BreakRow, Signature } from "../../../shared/schemas/break.ts";
-import { toWire } from "../../../shared/schemas/common.ts";
 import type { Actor } from "../../http/actor.ts";
 import { time, timeOrNull } from "../../http/present.ts";
 import type { CommitFacts } from "../../record/commitFacts.ts";
-import type { EntryValues } from "../../record/entryValues.ts";
+import { presentEntryValues } from "../../record/entryValues.ts";
 import type { StoredBreakWorst, StoredTrace } from "../../trace/storedTrace.ts";
 import type { Urls } from "../builds/urls.ts";
 import { abilities } from "../policies.ts";
@@ -130,17 +129,6 @@ function presentSuspects(
   });
 }
 
-function presentValues({ derivative, reference, uncertainty, error, verdict }: EntryValues) {
-  const orNull = (value: number) => (Number.isNaN(value) ? null : toWire(value));
-  return {
-    derivative: toWire(derivative),
-    reference: orNull(reference),
-    uncertainty: orNull(uncertainty),
-    error: orNull(error),
-    verdict,
-  };
-}
-
 function presentEntry({ block, entry, values, before }: BreakEntryValues, one: LoadedBreak): BreakEntry {
   const at = commitBuild(one.lastGood, one.lastGoodBuildId);
   return {
@@ -151,7 +139,7 @@ function presentEntry({ block, entry, values, before }: BreakEntryValues, one: L
     point: block.point,
     row: Math.floor(entry / block.columns),
     column: entry % block.columns,
-    ...presentValues(values),
-    before: at === null || before === null ? null : { ...at, ...presentValues(before) },
+    ...presentEntryValues(values),
+    before: at === null || before === null ? null : { ...at, ...presentEntryValues(before) },
   };
 }

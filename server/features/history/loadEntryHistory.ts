@@ -1,8 +1,5 @@
-import { MOTIONS, VERDICTS } from "../../../shared/domain/vocabulary.ts";
-import { absoluteUncertainty } from "../../../shared/numerics/uncertainty/absoluteUncertainty.ts";
-import { relativeError } from "../../../shared/numerics/verdict/relativeError.ts";
+import { MOTIONS } from "../../../shared/domain/vocabulary.ts";
 import type { HistoryItem } from "../../../shared/schemas/block.ts";
-import { toWire } from "../../../shared/schemas/common.ts";
 import type { Reader } from "../../db/reader.ts";
 import { timeOrNull } from "../../http/present.ts";
 import { unpackPlanes } from "../../ingest/planes.ts";
@@ -10,6 +7,7 @@ import { loadCommitFacts } from "../../record/commitFacts.ts";
 import { commitColumns } from "../../record/commitColumns.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
 import { unpackEntries } from "../../record/entryList.ts";
+import { entryValuesOf, presentEntryValues } from "../../record/entryValues.ts";
 import { loadLaneBuilds } from "../../record/laneBuilds.ts";
 import { loadEntryNumbers } from "../../record/readEntry.ts";
 import { loadSnapshots } from "../../record/readPlanes.ts";
@@ -108,21 +106,15 @@ async function loadNumbers(
   const references = await loadEntryNumbers(reader, "reference", places);
   const resolutions = await loadEntryNumbers(reader, "resolution", places);
   const verdicts = await loadEntryNumbers(reader, "verdict", places);
-  const orNull = (value: number) => (Number.isNaN(value) ? null : toWire(value));
   return new Map(
     snapshots.map(({ id, floor }, at) => {
-      const derivative = derivatives[at];
-      const reference = references[at];
-      return [
-        id,
-        {
-          derivative: toWire(derivative),
-          reference: orNull(reference),
-          uncertainty: orNull(absoluteUncertainty(resolutions[at], reference, floor)),
-          error: orNull(relativeError(derivative, reference, floor)),
-          verdict: VERDICTS[verdicts[at]],
-        },
-      ];
+      const stored = {
+        derivative: derivatives[at],
+        reference: references[at],
+        resolution: resolutions[at],
+        verdict: verdicts[at],
+      };
+      return [id, presentEntryValues(entryValuesOf(stored, floor))];
     }),
   );
 }
