@@ -26,7 +26,7 @@ import { soleReference } from "./soleReference.ts";
  * NaN policy: a value that is not finite is no estimate; an entry without any has value, U = NaN and source
  * NO_SOURCE. No finite input makes U NaN otherwise; +Infinity means that the reference cannot tell.
  * Accuracy: U covered the true error of every entry of the published set of More, Garbow & Hillstrom with sweeps of
- * four steps or more (see tests/numerics/published). A single step's U assumes derivatives of the size S/L.
+ * four steps or more (tests/numerics/published.test.ts). A single step's U assumes derivatives of the size S/L.
  * Cost: one pass over each posted value, two over a sweep's, bands of rows as scratch, nothing allocated per entry.
  * `value` is the posted array itself where one single-step reference covers the whole block: do not write to it.
  * Source: J. J. More, B. S. Garbow, K. E. Hillstrom, ACM TOMS 7(1):17-41, 1981, doi:10.1145/355934.355936 (trials);

@@ -20,7 +20,7 @@ export function columnModel(scheme: Scheme, steps: Float64Array, precision: numb
   for (let c = 0; c < width; c += 1) {
     const h = steps[c];
     if (h > 0) {
-      truncation[c] = truncationFactor(scheme, h, lengths[c]);
+      truncation[c] = truncationFactor(scheme, h, precision, lengths[c]);
       noise[c] = noiseFactor(scheme, h, precision);
       rounding[c] = roundingFactor(scheme, h, inputs[c]);
     } else noise[c] = Infinity;

@@ -63,7 +63,7 @@ export function fillSweep(
         choice.index = n - 1;
         const h = reader.steps[n - 1];
         const m = Math.abs(reader.values[n - 1]);
-        u = entrySize(m, value / length, survey.size / length) * truncationFactor(scheme, h, length);
+        u = entrySize(m, value / length, survey.size / length) * truncationFactor(scheme, h, precision, length);
         u += survey.size * noiseFactor(scheme, h, precision) + m * roundingFactor(scheme, h, x);
       }
       const r = reader.values[choice.index];

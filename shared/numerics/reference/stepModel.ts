@@ -1,4 +1,4 @@
-import { UNIT_ROUNDOFF } from "../roundoff.ts";
+import { DEFAULT_PRECISION, UNIT_ROUNDOFF } from "../roundoff.ts";
 import type { Scheme } from "./scheme.ts";
 
 /*
@@ -7,27 +7,29 @@ import type { Scheme } from "./scheme.ts";
  *   U = S truncation + P noise + |r| rounding
  *
  * one-sided (10 h/2L, 3 * 2 eta/h, 3 (u|x|/h + 4u)); central (10 h^2/6L^2, 3 eta/h, 3 (u|x|/h + 4u));
- * complex step (16u + 2 h^2/6L^2, 0, 0). S stands for the second derivative times L, or the third times L^2.
+ * complex step (8 max(eta, 2u) + 2 h^2/6L^2, 0, 0): nothing is subtracted, but a solver that stops early stops early in the
+ * imaginary part, too. S stands for the second derivative times L, or the third times L^2.
  * The row's size P = max(|F|, sum over columns of |r| L) bounds the terms that F is made of to first order: where
  * they cancel, |F| alone says nothing of the rounding in them.
  *
  * Sources: P. E. Gill, W. Murray, M. A. Saunders, M. H. Wright, Computing forward-difference intervals for numerical
  * optimization, SIAM J. Sci. Stat. Comput. 4(2):310-321, 1983, doi:10.1137/0904025 (truncation and noise);
  * W. Squire, G. Trapp, SIAM Review 40(1):110-112, 1998, doi:10.1137/S003614459631241X (complex step);
- * the safety factors were set on the problems of More, Garbow & Hillstrom (tests/numerics/published).
+ * the safety factors were set on the problems of More, Garbow & Hillstrom (tests/numerics/published.test.ts).
  */
 const TRUNCATION_SAFETY = 10;
 const NOISE_SAFETY = 3;
-const COMPLEX_ROUNDOFFS = 16;
+const COMPLEX_PRECISIONS = 8;
 const COMPLEX_SAFETY = 2;
 /** An entry this small beside its row tells nothing of its own curvature. */
 const NEGLIGIBLE = 1e-3;
 
 /** Dimensionless; h and L in the unit of the input, both > 0. */
-export function truncationFactor(scheme: Scheme, h: number, length: number): number {
+export function truncationFactor(scheme: Scheme, h: number, precision: number, length: number): number {
   const ratio = h / length;
   const share = scheme.order === 1 ? ratio / 2 : (ratio * ratio) / 6;
-  if (scheme.noisyValues === 0) return finite(COMPLEX_ROUNDOFFS * UNIT_ROUNDOFF + COMPLEX_SAFETY * share);
+  if (scheme.noisyValues === 0)
+    return finite(COMPLEX_PRECISIONS * Math.max(precision, DEFAULT_PRECISION) + COMPLEX_SAFETY * share);
   return finite(TRUNCATION_SAFETY * share);
 }
 
