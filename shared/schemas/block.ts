@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { MAX_REFERENCES, MAX_SWEEP_STEPS } from "../domain/limits.ts";
 import { MOTIONS, REFERENCE_METHODS, UNCERTAINTY_KINDS, VERDICTS } from "../domain/vocabulary.ts";
 import { signature } from "./break.ts";
 import { counts } from "./build.ts";
@@ -100,6 +101,8 @@ export const blockDetail = blockRow
     /** Index into `references` of the reference an entry was judged with (255 or null = none). */
     source: z.union([z.array(z.number().nullable()), z.string()]),
     uncertaintyKind: z.enum(UNCERTAINTY_KINDS).nullable(),
+    /** What the reference asked for by `posted` and `step` said; null or NaN where it said nothing. */
+    posted: plane.optional(),
     outputValues: z.array(wireNumber).nullable(),
     inputValues: z.array(wireNumber).nullable(),
     derivativeMethod: z.string(),
@@ -115,6 +118,9 @@ export const blockQuery = z.strictObject({
   format: z.enum(["json", "f64le"]).optional(),
   rows: range.optional(),
   columns: range.optional(),
+  /** Index of a reference whose posted values are wanted beside the chosen ones, and of its step. */
+  posted: queryInteger(0, MAX_REFERENCES - 1).optional(),
+  step: queryInteger(0, MAX_SWEEP_STEPS - 1).optional(),
 });
 
 export const historyItem = z

@@ -204,6 +204,43 @@ describe("blocks of a build", () => {
     expect(all.reference).toBe(f64le(large).f64le);
   });
 
+  it("show what each reference said, step by step, beside the chosen one", async () => {
+    const tiller = await server.seedProject("tiller");
+    const [coarse, fine] = [numbers(2, 2, 11), numbers(2, 2, 12)];
+    const document = buildOf(commitOf(1), [
+      {
+        model: "wake.deficit",
+        output: { name: "f", size: 2 },
+        input: { name: "x", size: 3 },
+        derivative: { method: "analytic", values: numbers(2, 3, 1) },
+        references: [
+          { method: "complex-step", values: numbers(2, 3, 1) },
+          {
+            method: "central-difference",
+            columns: [2, 0],
+            sweep: [
+              { step: 1e-3, values: coarse },
+              { step: 1e-4, values: fine },
+            ],
+          },
+        ],
+      },
+    ]);
+    const { build } = await post(server, tiller, document);
+    const [row] = page(blockRow).parse((await read(`/builds/${build.id}/blocks`, tiller)).body).items;
+    const path = `/builds/${build.id}/blocks/${row?.blockId ?? ""}`;
+    const open = async (query: string) => blockDetail.parse((await read(`${path}?${query}`, tiller)).body).posted;
+    expect(await open("format=json")).toBeUndefined();
+    expect(await open("posted=0")).toEqual(numbers(2, 3, 1).flat());
+    expect(await open("posted=1")).toEqual(coarse.flatMap(([two, zero]) => [zero, null, two]));
+    expect(await open("posted=1&step=1")).toEqual(fine.flatMap(([two, zero]) => [zero, null, two]));
+    expect(await open("posted=1&step=1&rows=1:2&columns=1:3")).toEqual([null, fine[1]?.[0]]);
+    expect(doubles(await open("posted=1&format=f64le"))).toEqual(coarse.flatMap(([two, zero]) => [zero, NaN, two]));
+    for (const query of ["posted=2", "posted=1&step=2", "posted=-1"]) {
+      expect((await read(`${path}?${query}`, tiller)).status).toBe(422);
+    }
+  });
+
   it("are not found in another build's or project's place", async () => {
     const id = await blockIdOf("rotor.thrust");
     expect((await read(`/builds/999999/blocks/${id}`)).status).toBe(404);

@@ -3,7 +3,7 @@ import { absoluteUncertainty } from "../../../shared/numerics/uncertainty/absolu
 import { relativeError } from "../../../shared/numerics/verdict/relativeError.ts";
 import type { Reader } from "../../db/reader.ts";
 import { PLANE_WIDTH, unpackPlanes } from "../../ingest/planes.ts";
-import type { PlaneName, PlaneTiles } from "../../ingest/planes.ts";
+import type { PlaneName } from "../../ingest/planes.ts";
 import { decodeTile } from "../../ingest/tiles.ts";
 import { loadPlane, loadTiles, tilesOf } from "../../record/readPlanes.ts";
 
@@ -36,7 +36,7 @@ export interface PlanesWanted {
 /** Reads a window of a block's numbers, only the tiles that hold its rows. */
 export async function loadBlockPlanes(reader: Reader, wanted: PlanesWanted): Promise<BlockPlanes> {
   const planes = unpackPlanes(wanted.snapshotPlanes);
-  const cut = (name: PlaneName, from = planes) => loadWindow(reader, from, name, wanted);
+  const cut = (name: PlaneName, from = planes) => loadWindow(reader, name, tilesOf(from, name), wanted);
   const derivative = new Float64Array(await cut("derivative"));
   const reference = new Float64Array(await cut("reference"));
   const resolution = new Float32Array(await cut("resolution"));
@@ -64,11 +64,41 @@ export async function loadSideValues(
   return new Float64Array(await loadPlane(reader, planes, name, size));
 }
 
+/**
+ * What one posted reference said within the window at one of its steps, NaN where it said nothing; null where there is
+ * no such reference or step. `covered`: the columns that it has, in its order, or null for all.
+ */
+export async function loadPostedPlane(
+  reader: Reader,
+  wanted: Pick<PlanesWanted, "snapshotPlanes" | "columns" | "window">,
+  posted: { readonly reference: number; readonly step: number; readonly covered: readonly number[] | null },
+): Promise<Float64Array | null> {
+  const { columns, window } = wanted;
+  const planes = unpackPlanes(wanted.snapshotPlanes);
+  const { reference, step, covered } = posted;
+  if (!planes.some((p) => p.name === "posted" && p.reference === reference && p.step === step)) return null;
+  const tiles = tilesOf(planes, "posted", reference, step);
+  if (covered === null) return new Float64Array(await loadWindow(reader, "posted", tiles, { columns, window }));
+  const whole = { rows: window.rows, columns: [0, covered.length] } as const;
+  const narrow = new Float64Array(
+    await loadWindow(reader, "posted", tiles, { columns: covered.length, window: whole }),
+  );
+  const [firstColumn, lastColumn] = window.columns;
+  const width = lastColumn - firstColumn;
+  const rows = window.rows[1] - window.rows[0];
+  const values = new Float64Array(rows * width).fill(NaN);
+  covered.forEach((column, at) => {
+    if (column < firstColumn || column >= lastColumn) return;
+    for (let row = 0; row < rows; row++) values[row * width + column - firstColumn] = narrow[row * covered.length + at];
+  });
+  return values;
+}
+
 async function loadWindow(
   reader: Reader,
-  planes: readonly PlaneTiles<number>[],
   name: PlaneName,
-  { columns, window }: PlanesWanted,
+  planeTiles: readonly number[],
+  { columns, window }: Pick<PlanesWanted, "columns" | "window">,
 ): Promise<ArrayBuffer> {
   const width = PLANE_WIDTH[name];
   const [firstRow, lastRow] = window.rows;
@@ -77,7 +107,7 @@ async function loadWindow(
   const out = new Uint8Array((lastRow - firstRow) * taken);
   if (out.length === 0) return out.buffer;
   const firstTile = Math.floor((firstRow * columns) / TILE_ENTRIES);
-  const ids = tilesOf(planes, name).slice(firstTile, Math.ceil((lastRow * columns) / TILE_ENTRIES));
+  const ids = planeTiles.slice(firstTile, Math.ceil((lastRow * columns) / TILE_ENTRIES));
   const tiles = await loadTiles(reader, ids);
   const bytes = Buffer.concat(
     ids.map((id) => {

@@ -15,6 +15,7 @@ export function presentBlockDetail(
   sides: { readonly outputValues: Float64Array | null; readonly inputValues: Float64Array | null },
   window: Window,
   format: "json" | "f64le",
+  posted: Float64Array | null,
 ): BlockDetail {
   const details = JSON.parse(block.details) as BlockDetails;
   const costs = block.costs === null ? null : (JSON.parse(block.costs) as BlockCosts);
@@ -39,6 +40,7 @@ export function presentBlockDetail(
         ? base64(planes.source)
         : Array.from(planes.source, (index) => (index === NONE ? null : index)),
     uncertaintyKind: commonKind(details, planes.source),
+    ...(posted === null ? {} : { posted: numbers(posted) }),
     outputValues: sides.outputValues && Array.from(sides.outputValues, toWire),
     inputValues: sides.inputValues && Array.from(sides.inputValues, toWire),
     derivativeMethod: details.derivativeMethod,

@@ -5,12 +5,13 @@ import type { Reader } from "../../db/reader.ts";
 import { defineRoute } from "../../http/defineRoute.ts";
 import type { Route } from "../../http/defineRoute.ts";
 import { pageRequest, pageSlice } from "../../http/paging.ts";
-import { NotFound } from "../../http/problem.ts";
+import { Invalid, NotFound } from "../../http/problem.ts";
+import type { BlockDetails } from "../../ingest/blockDetails.ts";
 import { isWorse } from "../../record/buildSummary.ts";
 import type { StoredWorst } from "../../ingest/judgePosting.ts";
 import { loadBuild } from "../builds/loadBuilds.ts";
 import { numericId } from "../numericId.ts";
-import { loadBlockPlanes, loadSideValues } from "./loadBlockPlanes.ts";
+import { loadBlockPlanes, loadPostedPlane, loadSideValues } from "./loadBlockPlanes.ts";
 import { loadBlockRow, loadBlockRows } from "./loadBlockRows.ts";
 import type { LoadedBlock } from "./loadBlockRows.ts";
 import { presentBlockRow } from "./present.ts";
@@ -31,6 +32,26 @@ async function loadPlanesOf(reader: Reader, block: LoadedBlock) {
     block.snapshotId,
   ]);
   return snapshot.planes;
+}
+
+/** @throws Invalid for a reference or step that the block does not have. */
+async function postedPlane(
+  reader: Reader,
+  block: LoadedBlock,
+  wanted: Parameters<typeof loadPostedPlane>[1],
+  query: { readonly posted?: number | undefined; readonly step?: number | undefined },
+): Promise<Float64Array | null> {
+  if (query.posted === undefined) return null;
+  const reference = query.posted;
+  const { references } = JSON.parse(block.details) as BlockDetails;
+  const covered = references[reference]?.columns ?? null;
+  const plane = await loadPostedPlane(reader, wanted, { reference, step: query.step ?? 0, covered });
+  if (plane !== null) return plane;
+  const detail =
+    reference < references.length
+      ? `the reference has no step ${query.step ?? 0}`
+      : `the block has ${references.length} references, counted from 0`;
+  throw new Invalid([{ pointer: reference < references.length ? "#/query/step" : "#/query/posted", detail }]);
 }
 
 export const routes: Route[] = [
@@ -55,7 +76,7 @@ export const routes: Route[] = [
     path: "/projects/:project/builds/:build/blocks/:block",
     summary: "One block of a build with its numbers",
     description:
-      "Planes are row-major. `format=f64le` gives base64 planes; `rows=a:b&columns=c:d` a window; more than 250,000 entries need one of the two.",
+      "Planes are row-major. `format=f64le` gives base64 planes; `rows=a:b&columns=c:d` a window; more than 250,000 entries need one of the two. `posted=k` (and `step=s` of a sweep) adds what reference k said.",
     tag: "Builds",
     auth: "caller",
     can: "build.read",
@@ -75,7 +96,8 @@ export const routes: Route[] = [
         outputValues: await loadSideValues(db, snapshotPlanes, "outputValues", block.rowCount),
         inputValues: await loadSideValues(db, snapshotPlanes, "inputValues", block.columnCount),
       };
-      return presentBlockDetail(block, planes, sides, window, query.format ?? "json");
+      const posted = await postedPlane(db, block, { snapshotPlanes, columns, window }, query);
+      return presentBlockDetail(block, planes, sides, window, query.format ?? "json", posted);
     },
   }),
 ];
