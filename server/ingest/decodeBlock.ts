@@ -3,6 +3,7 @@ import type { Complaints, Path } from "./complaints.ts";
 import { decodeMatrix } from "./decodeMatrix.ts";
 import type { Shape } from "./decodeMatrix.ts";
 import { decodeVector } from "./decodeVector.ts";
+import { readNumber } from "./readNumber.ts";
 import type { SkeletonBlock } from "./skeleton.ts";
 
 type SkeletonReference = SkeletonBlock["references"][number];
@@ -61,7 +62,9 @@ function decodeReference(
   complaints: Complaints,
 ): ReferenceNumbers {
   const columns = coveredColumns(reference, block.columns, path, complaints);
-  const shape = { rows: block.rows, columns: columns?.length ?? block.columns };
+  // Columns that are wrong say nothing of the shape, and must not make memory be taken for it.
+  const posted = columns === "wrong" ? [] : postedSteps(reference, path, complaints);
+  const shape = { rows: block.rows, columns: columns === null ? block.columns : columns.length };
   let notFinite = 0;
   const readStep = (values: unknown, step: unknown, at: Path): ReferenceStep => {
     const matrix = decodeMatrix(values, shape, { null: NaN }, [...at, "values"], complaints);
@@ -69,14 +72,14 @@ function decodeReference(
     maskNotFinite(matrix.values, matrix.notFinite);
     return { values: matrix.values, step: decodeStep(step, shape.columns, [...at, "step"], complaints) };
   };
-  const steps = postedSteps(reference, path, complaints).map(({ values, step, at }) => readStep(values, step, at));
+  const steps = posted.map(({ values, step, at }) => readStep(values, step, at));
   return {
     method: reference.method,
     stepKind: reference.stepKind ?? "absolute",
     precision: reference.precision ?? null,
-    columns,
+    columns: columns === "wrong" ? null : columns,
     steps,
-    uncertainty: decodeUncertainty(reference.uncertainty, shape, path, complaints),
+    uncertainty: columns === "wrong" ? null : decodeUncertainty(reference.uncertainty, shape, path, complaints),
     notFinite,
   };
 }
@@ -92,15 +95,22 @@ function coveredColumns(
   size: number,
   path: Path,
   complaints: Complaints,
-): Int32Array | null {
+): Int32Array | "wrong" | null {
   if (reference.columns === undefined) return null;
   const seen = new Set<number>();
+  let wrong = false;
   reference.columns.forEach((column, k) => {
-    if (column >= size) complaints.add([...path, "columns", k], `must be below ${size}, the size of the input`);
-    if (seen.has(column)) complaints.add([...path, "columns", k], `column ${column} is given twice`);
+    const detail =
+      column >= size
+        ? `must be below ${size}, the size of the input`
+        : seen.has(column)
+          ? `column ${column} is given twice`
+          : null;
+    if (detail !== null) complaints.add([...path, "columns", k], detail);
+    wrong ||= detail !== null;
     seen.add(column);
   });
-  return Int32Array.from(reference.columns);
+  return wrong ? "wrong" : Int32Array.from(reference.columns);
 }
 
 /** A reference has `values` (with or without a step) or a `sweep`, never both. */
@@ -146,7 +156,11 @@ function decodeUncertainty(
   complaints: Complaints,
 ): number | Float64Array | null {
   if (posted === undefined) return null;
-  if (typeof posted === "number") return posted;
   const rule = { null: Infinity, notNegative: true };
+  if (typeof posted === "number") {
+    const { value, wrong } = readNumber(posted, rule);
+    if (wrong !== null) complaints.add([...path, "uncertainty"], wrong);
+    return value;
+  }
   return decodeMatrix(posted, shape, rule, [...path, "uncertainty"], complaints).values;
 }

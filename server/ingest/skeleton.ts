@@ -21,9 +21,27 @@ export function readSkeleton(document: unknown, limits: Limits): SkeletonDocumen
   if (count > limits.blocks) throw tooMany(count, "blocks", limits.blocks);
   const parsed = skeletonDocument.safeParse(document);
   if (!parsed.success) throw invalid(complaintsOf(parsed.error));
-  const entries = parsed.data.blocks.reduce((sum, block) => sum + block.output.size * block.input.size, 0);
+  const entries = parsed.data.blocks.reduce((sum, block) => sum + entriesOf(block), 0);
   if (entries > limits.entries) throw tooMany(entries, "entries", limits.entries);
+  const numbers = parsed.data.blocks.reduce((sum, block) => sum + entriesOf(block) * matricesOf(block), 0);
+  const most = NUMBERS_PER_ENTRY * limits.entries;
+  if (numbers > most) throw tooMany(numbers, "numbers in derivatives, references and sweeps", most);
   return parsed.data;
+}
+
+/** Sparse matrices take few bytes on the wire, whatever their size: what they unfold to is limited too. */
+const NUMBERS_PER_ENTRY = 16;
+
+/** Of an empty block the elements of its longer side count: they have values and names. */
+function entriesOf({ output, input }: SkeletonBlock): number {
+  return Math.max(1, output.size) * Math.max(1, input.size);
+}
+
+function matricesOf({ references }: SkeletonBlock): number {
+  return references.reduce((sum, { sweep, uncertainty }) => {
+    const stated = uncertainty === undefined || typeof uncertainty === "number" ? 0 : 1;
+    return sum + (sweep?.length ?? 1) + stated;
+  }, 1);
 }
 
 function blockCount(document: unknown): number {
@@ -50,7 +68,9 @@ function complaintsOf(error: z.ZodError): Complaints {
     if (issue.code === "unrecognized_keys") {
       for (const key of issue.keys) complaints.add([...path, key], "is not a property of the format");
     } else {
-      complaints.add(path, issue.message);
+      // A hole takes anything, and says of nothing at all only that it is "nonoptional".
+      const missing = issue.code === "invalid_type" && issue.expected === "nonoptional";
+      complaints.add(path, missing ? "is missing" : issue.message);
     }
   }
   return complaints;
