@@ -1,22 +1,18 @@
-import { sharedEntries } from "../record/entryList.ts";
-import type { StoredTrace } from "./storedTrace.ts";
+import { packEntries, sharedEntries } from "../record/entryList.ts";
 import type { BreakPart, LaneBreak } from "./traceLane.ts";
 
-/** A break as the record has it. */
-export interface RecordedBreak {
+/** What tracing has to know of a break in the record, to find it again. */
+export interface KnownBreak {
   readonly id: number;
   readonly onset: string;
-  readonly onsetBuildId: number;
-  readonly repairedBy: string | null;
-  readonly trace: StoredTrace;
   readonly parts: readonly BreakPart[];
 }
 
-export interface Matches {
+export interface Matches<B extends KnownBreak> {
   /** For each traced break, in order, the recorded one that it is, or null where it is new. */
-  readonly recordedOf: readonly (RecordedBreak | null)[];
+  readonly recordedOf: readonly (B | null)[];
   /** Recorded breaks that are none any more, with the index of the traced break that took their entries, or null. */
-  readonly gone: readonly { readonly recorded: RecordedBreak; readonly successor: number | null }[];
+  readonly gone: readonly { readonly recorded: B; readonly successor: number | null }[];
 }
 
 /**
@@ -24,7 +20,10 @@ export interface Matches {
  * traced break is the recorded one of the same onset with which it shares most entries; failing that, one whose onset
  * is among its bad commits. Every recorded break is matched at most once.
  */
-export function matchBreaks(recorded: readonly RecordedBreak[], traced: readonly LaneBreak[]): Matches {
+export function matchBreaks<B extends KnownBreak>(
+  recorded: readonly B[],
+  traced: readonly Pick<LaneBreak, "onset" | "bad" | "parts">[],
+): Matches<B> {
   const pairs = recorded.flatMap((old) =>
     traced.flatMap((now, at) => {
       if (old.onset !== now.onset && !now.bad.includes(old.onset)) return [];
@@ -33,8 +32,8 @@ export function matchBreaks(recorded: readonly RecordedBreak[], traced: readonly
     }),
   );
   pairs.sort((a, b) => Number(b.sameOnset) - Number(a.sameOnset) || b.shared - a.shared || a.old.id - b.old.id);
-  const recordedOf = new Array<RecordedBreak | null>(traced.length).fill(null);
-  const taken = new Set<RecordedBreak>();
+  const recordedOf = new Array<B | null>(traced.length).fill(null);
+  const taken = new Set<B>();
   for (const { old, at } of pairs) {
     if (recordedOf[at] !== null || taken.has(old)) continue;
     recordedOf[at] = old;
@@ -53,26 +52,13 @@ function sharedParts(a: readonly BreakPart[], b: readonly BreakPart[]): number {
   }, 0);
 }
 
-/** True where a repaired break is told exactly as it was: nothing of it has to be read or written again. */
-export function isSettled(recorded: RecordedBreak, found: LaneBreak, onsetBuildId: number): boolean {
-  const { trace } = recorded;
-  return (
-    found.repairedBy !== null &&
-    recorded.repairedBy === found.repairedBy &&
-    recorded.onset === found.onset &&
-    recorded.onsetBuildId === onsetBuildId &&
-    trace.bad.join() === found.bad.join() &&
-    trace.suspects.length === found.suspects.length &&
-    trace.suspects.every(({ sha }) => found.suspects.includes(sha)) &&
-    sameParts(recorded.parts, found.parts)
-  );
-}
-
+/** True where both hold the same entries of the same blocks, in whatever order the blocks are told. */
 export function sameParts(a: readonly BreakPart[], b: readonly BreakPart[]): boolean {
-  const key = (parts: readonly BreakPart[]) =>
-    parts
-      .map((part) => `${part.blockId} ${part.columns} ${part.entries.join()}`)
-      .sort()
-      .join(";");
-  return key(a) === key(b);
+  return (
+    a.length === b.length &&
+    a.every((part) => {
+      const other = b.find(({ blockId, columns }) => blockId === part.blockId && columns === part.columns);
+      return other !== undefined && packEntries(other.entries).equals(packEntries(part.entries));
+    })
+  );
 }

@@ -3,26 +3,22 @@ import { goodElsewhere } from "../../shared/history/goodElsewhere.ts";
 import { nextTest } from "../../shared/history/nextTest.ts";
 import { scoreSuspects } from "../../shared/history/scoreSuspects.ts";
 import type { SuspectFacts } from "../../shared/history/types.ts";
-import type { Reader } from "../db/reader.ts";
-import { loadCommitFacts } from "../record/commitFacts.ts";
+import type { CommitFacts } from "../record/commitFacts.ts";
 import type { ProjectGraph } from "../record/commitGraph.ts";
 import type { BreakDescription } from "./describeBreak.ts";
 import type { StoredTrace } from "./storedTrace.ts";
 import type { LaneBreak } from "./traceLane.ts";
 
 /** Scores a break's suspects, with reasons, and picks the commit worth building next. */
-export async function rankSuspects(
-  reader: Reader,
-  projectId: number,
-  project: ProjectGraph,
+export function rankSuspects(
+  { graph }: ProjectGraph,
   found: LaneBreak,
   description: BreakDescription,
+  commits: ReadonlyMap<string, CommitFacts>,
   built: { has(sha: string): boolean },
-): Promise<StoredTrace> {
-  const { graph } = project;
+): StoredTrace {
   const elsewhere = goodElsewhere(graph, found.onset, found.tests);
   const inGood = containedInGood(graph, found.suspects, elsewhere);
-  const commits = await loadCommitFacts(reader, projectId, found.suspects);
   const facts = found.suspects.map((sha): SuspectFacts => {
     const commit = commits.get(sha);
     return {
@@ -39,6 +35,7 @@ export async function rankSuspects(
     nextTest: nextTest(graph, found.suspects, { tested: built, goodElsewhere: elsewhere }),
     fixedBetween: found.fixedBetween,
     historyIncomplete: found.historyIncomplete,
+    sources,
     bad: found.bad,
   };
 }

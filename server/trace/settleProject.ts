@@ -1,17 +1,20 @@
 import type { Writer } from "../db/write.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
+import { loadCommitFacts } from "../record/commitFacts.ts";
 import { loadGraph } from "../record/commitGraph.ts";
 import type { ProjectGraph } from "../record/commitGraph.ts";
 import { loadLaneBuilds } from "../record/laneBuilds.ts";
 import type { LaneBuild } from "../record/laneBuilds.ts";
 import { updateBaselines } from "./baselines.ts";
 import { describeBreak } from "./describeBreak.ts";
+import type { BreakDescription } from "./describeBreak.ts";
 import { addEverBad } from "./everBad.ts";
 import { loadLaneTests } from "./laneTests.ts";
-import { isSettled, matchBreaks } from "./matchBreaks.ts";
+import { matchBreaks, sameParts } from "./matchBreaks.ts";
 import { updateMotions } from "./motions.ts";
 import { rankSuspects } from "./rankSuspects.ts";
-import { loadRecordedBreaks, storeBreak, withdrawBreak } from "./storeBreaks.ts";
+import { loadRecordedBreaks, recordedDescription, storeBreak, withdrawBreak } from "./storeBreaks.ts";
+import type { RecordedBreak } from "./storeBreaks.ts";
 import { traceLane } from "./traceLane.ts";
 import type { LaneBreak } from "./traceLane.ts";
 
@@ -43,28 +46,42 @@ export async function settleProject(
   const lanes = await w.select<{ id: number }>("SELECT id FROM lanes WHERE projectId = $1 ORDER BY id", [projectId]);
   for (const { id: laneId } of lanes) {
     const buildId = arrival?.laneId === laneId ? arrival.buildId : null;
-    for (const rebased of await updateBaselines(w, laneId, project.graph, buildId)) {
-      await updateMotions(w, judge, rebased);
-    }
+    const rebased = await updateBaselines(w, laneId, project.graph, buildId);
+    for (const one of rebased) await updateMotions(w, judge, one);
     if (buildId !== null) await addEverBad(w, laneId, buildId);
-    await retrace(w, project, { projectId, laneId }, now);
+    await retrace(w, project, { projectId, laneId }, new Set(rebased.map((one) => one.buildId)), now);
   }
 }
 
-async function retrace(w: Writer, project: ProjectGraph, lane: Lane, now: number): Promise<void> {
+/** `moved`: builds whose motions were told anew. */
+async function retrace(
+  w: Writer,
+  project: ProjectGraph,
+  lane: Lane,
+  moved: ReadonlySet<number>,
+  now: number,
+): Promise<void> {
   const traced = traceLane(project, await loadLaneTests(w, lane.laneId));
   const recorded = await loadRecordedBreaks(w, lane.laneId);
   const { speaking } = await loadLaneBuilds(w, lane.laneId);
+  const suspects = new Set(traced.flatMap((found) => found.suspects));
+  const commits = await loadCommitFacts(w, lane.projectId, [...suspects]);
+  const idOf = (sha: string | null) => (sha === null ? null : (speaking.get(sha)?.id ?? null));
   const { recordedOf, gone } = matchBreaks(recorded, traced);
   const ids: number[] = [];
   for (const [at, found] of traced.entries()) {
+    const onsetBuildId = (speaking.get(found.onset) as LaneBuild).id;
     const known = recordedOf[at];
-    const onsetBuild = speaking.get(found.onset) as LaneBuild;
-    if (known !== null && isSettled(known, found, onsetBuild.id)) {
-      ids.push(known.id);
-      continue;
-    }
-    const described = await describe(w, project, lane, found, speaking);
+    const description =
+      keptDescription(known, found, onsetBuildId, moved) ?? (await describeBreak(w, onsetBuildId, found.parts));
+    const described = {
+      found,
+      description,
+      trace: rankSuspects(project, found, description, commits, speaking),
+      onsetBuildId,
+      lastGoodBuildId: idOf(found.lastGood),
+      repairedByBuildId: idOf(found.repairedBy),
+    };
     ids.push(await storeBreak(w, lane, described, known, now));
   }
   for (const { recorded: old, successor } of gone) {
@@ -72,22 +89,13 @@ async function retrace(w: Writer, project: ProjectGraph, lane: Lane, now: number
   }
 }
 
-async function describe(
-  w: Writer,
-  project: ProjectGraph,
-  lane: Lane,
+/** What the same build said of the same entries before, so that their numbers are not read again; null if not. */
+function keptDescription(
+  known: RecordedBreak | null,
   found: LaneBreak,
-  speaking: ReadonlyMap<string, LaneBuild>,
-) {
-  const idOf = (sha: string | null) => (sha === null ? null : (speaking.get(sha)?.id ?? null));
-  const onsetBuildId = (speaking.get(found.onset) as LaneBuild).id;
-  const description = await describeBreak(w, onsetBuildId, found.parts);
-  return {
-    found,
-    description,
-    trace: await rankSuspects(w, lane.projectId, project, found, description, speaking),
-    onsetBuildId,
-    lastGoodBuildId: idOf(found.lastGood),
-    repairedByBuildId: idOf(found.repairedBy),
-  };
+  onsetBuildId: number,
+  moved: ReadonlySet<number>,
+): BreakDescription | null {
+  if (known === null || known.told.onsetBuildId !== onsetBuildId || moved.has(onsetBuildId)) return null;
+  return sameParts(known.parts, found.parts) ? recordedDescription(known) : null;
 }

@@ -1,37 +1,84 @@
+import type { Motion } from "../../shared/domain/vocabulary.ts";
 import type { Writer } from "../db/write.ts";
 import { packEntries, unpackEntries } from "../record/entryList.ts";
 import type { BreakDescription } from "./describeBreak.ts";
 import { sameParts } from "./matchBreaks.ts";
-import type { RecordedBreak } from "./matchBreaks.ts";
-import type { StoredTrace } from "./storedTrace.ts";
+import type { KnownBreak } from "./matchBreaks.ts";
+import type { StoredBreakWorst, StoredTrace } from "./storedTrace.ts";
 import type { BreakPart, LaneBreak } from "./traceLane.ts";
 
-interface RecordedPart {
-  readonly id: number;
+/** The columns that tracing tells of a break: all but its identity and what people add to it. */
+interface ToldColumns {
+  readonly state: string;
+  readonly kind: string;
   readonly onset: string;
   readonly onsetBuildId: number;
+  readonly lastGood: string | null;
+  readonly lastGoodBuildId: number | null;
   readonly repairedBy: string | null;
+  readonly repairedByBuildId: number | null;
+  /** JSON: StoredTrace. */
   readonly trace: string;
+  /** JSON: string[]. */
+  readonly models: string;
+  readonly entryCount: number;
+  /** JSON: StoredBreakWorst. */
+  readonly worst: string;
+  readonly motion: Motion | null;
+}
+const TOLD = [
+  "state",
+  "kind",
+  "onset",
+  "onsetBuildId",
+  "lastGood",
+  "lastGoodBuildId",
+  "repairedBy",
+  "repairedByBuildId",
+  "trace",
+  "models",
+  "entryCount",
+  "worst",
+  "motion",
+] as const satisfies readonly (keyof ToldColumns)[];
+
+/** A break as the record has it. */
+export interface RecordedBreak extends KnownBreak {
+  readonly told: ToldColumns;
+}
+
+type RecordedPart = ToldColumns & {
+  readonly id: number;
   readonly blockId: number;
   readonly columns: number;
   readonly entries: Buffer;
-}
+};
 
 /** The lane's breaks as the record has them, withdrawn ones aside. */
 export async function loadRecordedBreaks(w: Writer, laneId: number): Promise<RecordedBreak[]> {
   const rows = await w.select<RecordedPart>(
-    `SELECT b.id, b.onset, b.onsetBuildId, b.repairedBy, b.trace, e.blockId, e.columnCount AS columns, e.entries
+    `SELECT b.id, ${TOLD.map((name) => `b.${name}`).join(", ")}, e.blockId, e.columnCount AS columns, e.entries
      FROM breaks b JOIN break_entries e ON e.breakId = b.id
      WHERE b.laneId = $1 AND b.withdrawnAt IS NULL ORDER BY b.id, e.blockId, e.columnCount`,
     [laneId],
   );
   const breaks = new Map<number, RecordedBreak & { readonly parts: BreakPart[] }>();
-  for (const { blockId, columns, entries, trace, ...row } of rows) {
-    const known = breaks.get(row.id) ?? { ...row, trace: JSON.parse(trace) as StoredTrace, parts: [] };
-    breaks.set(row.id, known);
+  for (const { id, blockId, columns, entries, ...told } of rows) {
+    const known = breaks.get(id) ?? { id, onset: told.onset, told, parts: [] };
+    breaks.set(id, known);
     known.parts.push({ blockId, columns, entries: unpackEntries(entries) });
   }
   return [...breaks.values()];
+}
+
+/** The description as it was told when the break was written last. */
+export function recordedDescription({ told }: RecordedBreak): BreakDescription {
+  return {
+    models: JSON.parse(told.models) as string[],
+    sources: (JSON.parse(told.trace) as StoredTrace).sources,
+    worst: JSON.parse(told.worst) as StoredBreakWorst,
+    motion: told.motion,
+  };
 }
 
 export interface DescribedBreak {
@@ -44,7 +91,10 @@ export interface DescribedBreak {
   readonly repairedByBuildId: number | null;
 }
 
-/** Writes a break over the recorded one, or as a new one with the project's next number; answers with its id. */
+/**
+ * Writes a break over the recorded one where anything of it is new, or as a new one with the project's next number;
+ * answers with its id.
+ */
 export async function storeBreak(
   w: Writer,
   place: { readonly projectId: number; readonly laneId: number },
@@ -53,7 +103,7 @@ export async function storeBreak(
   now: number,
 ): Promise<number> {
   const { found, description, trace } = described;
-  const values = {
+  const told: ToldColumns = {
     state: found.state,
     kind: found.kind,
     onset: found.onset,
@@ -68,17 +118,18 @@ export async function storeBreak(
     worst: JSON.stringify(description.worst),
     motion: description.motion,
   };
-  const names = Object.keys(values);
-  const bound = Object.values(values);
+  const bound = TOLD.map((name) => told[name]);
   if (recorded !== null) {
-    const assignments = names.map((name, at) => `${name} = $${at + 2}`).join(", ");
-    await w.run(`UPDATE breaks SET ${assignments} WHERE id = $1`, [recorded.id, ...bound]);
+    if (TOLD.some((name) => told[name] !== recorded.told[name])) {
+      const assignments = TOLD.map((name, at) => `${name} = $${at + 2}`).join(", ");
+      await w.run(`UPDATE breaks SET ${assignments} WHERE id = $1`, [recorded.id, ...bound]);
+    }
     if (!sameParts(recorded.parts, found.parts)) await storeParts(w, recorded.id, found.parts);
     return recorded.id;
   }
-  const marks = names.map((_, at) => `$${at + 4}`).join(", ");
+  const marks = TOLD.map((_, at) => `$${at + 4}`).join(", ");
   await w.run(
-    `INSERT INTO breaks (projectId, laneId, createdAt, number, ${names.join(", ")})
+    `INSERT INTO breaks (projectId, laneId, createdAt, number, ${TOLD.join(", ")})
      SELECT $1, $2, $3, COALESCE(max(number), 0) + 1, ${marks} FROM breaks WHERE projectId = $1`,
     [place.projectId, place.laneId, now, ...bound],
   );

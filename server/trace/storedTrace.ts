@@ -8,6 +8,8 @@ export interface StoredTrace {
   readonly nextTest: NextTest | null;
   readonly fixedBetween: FixedBetween | null;
   readonly historyIncomplete: boolean;
+  /** Sources of the blocks, as the build of the onset told them. */
+  readonly sources: readonly string[];
   /** Every tested bad commit of the break, oldest first. */
   readonly bad: readonly string[];
 }
