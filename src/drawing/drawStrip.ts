@@ -5,6 +5,7 @@ import type { Palette } from "./palette.ts";
 import { crisp, drawPaper, drawRulerFigures, line, monoFont, textFont } from "./drawPaper.ts";
 import { columnsInView, columnX, placeY } from "./stripGeometry.ts";
 import type { StripGeometry } from "./stripGeometry.ts";
+import { LABEL_WIDTH, placeBrackets } from "./stripLayout.ts";
 import type { StripLayout, StripMark } from "./stripLayout.ts";
 
 export interface StripCursor {
@@ -111,13 +112,15 @@ function drawGaps(c: CanvasRenderingContext2D, g: StripGeometry, layout: StripLa
 }
 
 function drawBrackets(c: CanvasRenderingContext2D, g: StripGeometry, layout: StripLayout, palette: Palette): void {
+  const narrow = g.width < 600;
   const colour = palette.verdicts.disagrees;
-  for (const bracket of layout.brackets) {
+  const placed = placeBrackets(layout.brackets, g.pitch, narrow ? LABEL_WIDTH.narrow : LABEL_WIDTH.wide);
+  for (const bracket of placed) {
     const half = Math.max(4, g.pitch / 2);
     const [x0, x1] = [columnX(g, bracket.first) - half, columnX(g, bracket.last) + half];
     if (x1 < g.left || x0 > g.right) continue;
     // The first level stands above the head of the ruler, where no mark can be.
-    const y = g.top - 11 + bracket.level * 15;
+    const y = g.top - 11 + bracket.level * 14;
     c.strokeStyle = colour;
     c.lineWidth = 1.5;
     c.beginPath();
@@ -126,18 +129,16 @@ function drawBrackets(c: CanvasRenderingContext2D, g: StripGeometry, layout: Str
     c.lineTo(x1, y);
     c.lineTo(x1, y + 5);
     c.stroke();
-    const label = bracket.suspects === 1 ? "1 suspect" : `${bracket.suspects} suspects`;
+    if (bracket.words === "none") continue;
+    const label = narrow ? String(bracket.suspects) : `${bracket.suspects} suspects`;
     c.font = textFont(12, 650);
     const width = c.measureText(label).width;
-    const before = x0 - width - 8 > g.left;
-    const x = before ? x0 - width - 6 : x1 + 6;
-    c.globalAlpha = 0.85;
+    const x = bracket.words === "inside" ? (x0 + x1 - width) / 2 : x0 - width - 6;
     c.fillStyle = palette.sheet;
-    c.fillRect(x - 2, y - 6, width + 4, 14);
-    c.globalAlpha = 1;
+    c.fillRect(x - 4, y - 6, width + 8, 13);
     c.fillStyle = colour;
     c.textAlign = "left";
-    c.fillText(label, x, y + 5);
+    c.fillText(label, x, y + 4);
   }
 }
 

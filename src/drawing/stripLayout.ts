@@ -19,8 +19,6 @@ export interface StripBracket {
   readonly first: number;
   readonly last: number;
   readonly suspects: number;
-  /** 0 is the topmost; brackets that would overlap stand on different levels. */
-  readonly level: number;
 }
 /** What the strip shows, in columns and places: free of pixels, so that zoom and scroll only multiply. */
 export interface StripLayout {
@@ -39,22 +37,44 @@ function placeOf(column: StripColumn): number {
   return column.verdict === "invalid" ? 1 : 0;
 }
 
-function bracketLevels(strip: Strip, indexOf: ReadonlyMap<string, number>): StripBracket[] {
-  const spans = strip.brackets.flatMap(({ breakId, suspects, onset }) => {
-    const at = [...suspects, onset].flatMap((sha) => indexOf.get(sha) ?? []);
-    return at.length === 0
-      ? []
-      : [{ breakId, suspects: suspects.length, first: Math.min(...at), last: Math.max(...at) }];
-  });
+function spanBrackets(strip: Strip, indexOf: ReadonlyMap<string, number>): StripBracket[] {
+  return strip.brackets
+    .flatMap(({ breakId, suspects, onset }) => {
+      const at = [...suspects, onset].flatMap((sha) => indexOf.get(sha) ?? []);
+      if (at.length === 0) return [];
+      return [{ breakId, suspects: suspects.length, first: Math.min(...at), last: Math.max(...at) }];
+    })
+    .sort((a, b) => a.first - b.first);
+}
+
+/** Width of a bracket's words, `12 suspects` or, on a narrow strip, the number alone. */
+export const LABEL_WIDTH = { wide: 74, narrow: 18 } as const;
+const LEVELS = 3;
+
+export interface PlacedBracket extends StripBracket {
+  /** 0 is the topmost; what would overlap, words included, stands lower. */
+  readonly level: number;
+  /** Words stand in the bracket where it is wide enough, else before it; one suspect needs none. */
+  readonly words: "inside" | "before" | "none";
+}
+
+/** Places brackets at a zoom of `pitch` pixels a commit. Beyond three levels they share the lowest. */
+export function placeBrackets(
+  brackets: readonly StripBracket[],
+  pitch: number,
+  labelWidth: number = LABEL_WIDTH.wide,
+): PlacedBracket[] {
   const ends: number[] = [];
-  return spans
-    .sort((a, b) => a.first - b.first)
-    .map((span) => {
-      const free = ends.findIndex((end) => end < span.first - 6);
-      const level = free === -1 ? ends.length : free;
-      ends[level] = span.last;
-      return { ...span, level: Math.min(level, 2) };
-    });
+  return brackets.map((bracket) => {
+    const { first, last, suspects } = bracket;
+    const fits = (last - first + 1) * pitch >= labelWidth + 12;
+    const words = suspects === 1 ? "none" : fits ? "inside" : "before";
+    const start = first * pitch - (words === "before" ? labelWidth : 0);
+    const free = ends.findIndex((end) => end <= start);
+    const level = Math.min(free === -1 ? ends.length : free, LEVELS - 1);
+    ends[level] = Math.max(ends[level] ?? 0, (last + 1) * pitch);
+    return { ...bracket, level, words };
+  });
 }
 
 /** Lays the columns out once per strip, in time proportional to commits and links. */
@@ -96,7 +116,7 @@ export function layoutStrip(strip: Strip): StripLayout {
     trace: marks.filter((mark) => mark.mainline),
     links,
     gaps: markAt.flatMap((mark, index) => (mark === null ? [index] : [])),
-    brackets: bracketLevels(strip, indexOf),
+    brackets: spanBrackets(strip, indexOf),
   };
 }
 

@@ -1,11 +1,20 @@
 import type { BreakDetail, BreakEntry } from "../../shared/schemas/break.ts";
 import { CAUTION } from "../../shared/domain/vocabulary.ts";
 import { numberText } from "./number.ts";
-import { elsewhere, MOTION_SENTENCE, shortSha } from "./words.ts";
+import { elementName, elsewhere, MOTION_SENTENCE, shortSha } from "./words.ts";
 
-/** Name of an entry: `thrust[0] by pitch[1]`. */
-export const entryName = (entry: Pick<BreakEntry, "output" | "input" | "row" | "column">) =>
-  `${entry.output}[${entry.row}] by ${entry.input}[${entry.column}]`;
+type Side = Parameters<typeof elementName>[0];
+export type EntryNames = ReadonlyMap<string, { readonly output: Side; readonly input: Side }>;
+
+/** Name of an entry: `spring ebb by pitch` where its elements have names, else `thrust[2] by blade[0]`. */
+export function entryName(
+  entry: Pick<BreakEntry, "blockId" | "output" | "input" | "row" | "column">,
+  names?: EntryNames,
+): string {
+  const sides = names?.get(entry.blockId);
+  if (!sides) return `${entry.output}[${entry.row}] by ${entry.input}[${entry.column}]`;
+  return `${elementName(sides.output, entry.row)} by ${elementName(sides.input, entry.column)}`;
+}
 
 const WORST = { invalid: Number.POSITIVE_INFINITY } as const;
 const weight = (entry: BreakEntry) =>
@@ -17,12 +26,12 @@ export function worstFirst(entries: readonly BreakEntry[]): BreakEntry[] {
 const cell = (text: string) => text.replaceAll("|", "\\|").replace(/\s+/g, " ");
 
 /** A break for an issue tracker or a message: what, who moved, which commit, and where to look. */
-export function breakMarkdown(record: BreakDetail, address: string): string {
+export function breakMarkdown(record: BreakDetail, address: string, names?: EntryNames): string {
   const rows = worstFirst(record.entries)
     .slice(0, 10)
     .map(
       (e) =>
-        `| ${cell(e.model)} | ${cell(entryName(e))} | ${e.derivative} | ${e.reference ?? "none"} | ${e.error === null ? "none" : numberText(e.error)} | ${e.before?.derivative ?? "none"} |`,
+        `| ${cell(e.model)} | ${cell(entryName(e, names))} | ${e.derivative} | ${e.reference ?? "none"} | ${e.error === null ? "none" : numberText(e.error)} | ${e.before?.derivative ?? "none"} |`,
     );
   const more = record.entryCount > rows.length ? [``, `and ${record.entryCount - rows.length} more entries.`] : [];
   const suspects = record.suspects.map(

@@ -47,6 +47,22 @@ export const useBlock = (project: () => string, build: () => string, block: () =
       }),
   });
 
+export type BlockSides = Pick<BlockDetail, "output" | "input">;
+
+/** Names of the rows and columns of a few blocks, by block: asked for with a window of one entry, so that it stays small. */
+export const useBlockSides = (project: () => string, build: () => string | null, blocks: () => readonly string[]) =>
+  useQuery({
+    key: () => keys.names(project(), build() ?? "", blocks().join()),
+    enabled: () => build() !== null && blocks().length > 0,
+    query: async ({ signal }) => {
+      const sides = blocks().map(async (block): Promise<[string, BlockSides]> => {
+        const path = `${buildPath(project(), build() ?? "")}/blocks/${encodeURIComponent(block)}`;
+        return [block, await client.get<BlockDetail>(path, { query: { rows: "0:1", columns: "0:1" }, signal })];
+      });
+      return new Map(await Promise.all(sides));
+    },
+  });
+
 export const useGate = (project: () => string, lane: () => string | null, commit: () => string | null) =>
   useQuery({
     key: () => keys.gate(project(), lane() ?? "", commit() ?? ""),

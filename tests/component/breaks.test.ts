@@ -4,7 +4,7 @@ import BreakEntries from "../../src/components/break/BreakEntries.vue";
 import BreakSuspects from "../../src/components/break/BreakSuspects.vue";
 import EntryTrace from "../../src/components/break/EntryTrace.vue";
 import { resolutionOf, traceEntry, valueScale } from "../../src/drawing/entryTrace.ts";
-import { breakMarkdown, worstFirst } from "../../src/format/breakMarkdown.ts";
+import { breakMarkdown, entryName, worstFirst } from "../../src/format/breakMarkdown.ts";
 import { blockSentence, buildSentence } from "../../src/format/blockSentence.ts";
 import { historyFixture } from "./fixtures/blocks.ts";
 import { stripFixture } from "./fixtures/history.ts";
@@ -25,6 +25,14 @@ describe("a break as Markdown", () => {
     for (const suspect of record.suspects) expect(text).toContain(`\`${suspect.commit.slice(0, 7)}\``);
     expect(text).toContain("leaves at most 2.");
     expect(text).toContain(CAUTION);
+  });
+  it("calls entries by the names of their elements where they have some", () => {
+    const side = (name: string, elements: string[] | null) => ({ name, size: 3, unit: null, elements });
+    const names = new Map([
+      ["rotor-thrust", { output: side("thrust", ["neap", "mid", "spring"]), input: side("blade", null) }],
+    ]);
+    expect(entryName(record.entries[2]!, names)).toBe("spring by blade[1]");
+    expect(entryName({ ...record.entries[2]!, blockId: "other" }, names)).toBe("T3[2] by pitch[1]");
   });
   it("keeps a table whole when a name has a bar in it, and counts what it leaves out", () => {
     const entries = Array.from({ length: 12 }, (_, row) => ({ ...record.entries[0]!, row, output: "a|b" }));

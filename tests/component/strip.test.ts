@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
 import type { Strip, StripColumn } from "../../shared/schemas/commit.ts";
 import { apartMarks } from "../../src/drawing/drawStrip.ts";
-import { cursorAfterKey, cursorIndex, findCommit, layoutStrip } from "../../src/drawing/stripLayout.ts";
+import { cursorAfterKey, cursorIndex, findCommit, layoutStrip, placeBrackets } from "../../src/drawing/stripLayout.ts";
 import {
   columnAt,
   columnsInView,
@@ -72,18 +72,46 @@ describe("layout of the strip", () => {
       [2, 4],
     ]);
   });
-  it("spans a bracket over suspects and onset, and puts one that would overlap on another level", () => {
+  it("spans a bracket over suspects and onset, and leaves one out whose commits are elsewhere", () => {
     const columns = Array.from({ length: 40 }, (_, k) => column(k));
     const brackets = [
-      { breakId: "a", onset: shaOf(12), suspects: [shaOf(10), shaOf(11), shaOf(12)] },
-      { breakId: "b", onset: shaOf(13), suspects: [shaOf(13)] },
       { breakId: "c", onset: shaOf(30), suspects: [shaOf(30)] },
+      { breakId: "a", onset: shaOf(12), suspects: [shaOf(11), shaOf(10)] },
       { breakId: "elsewhere", onset: "f".repeat(40), suspects: ["f".repeat(40)] },
     ];
     expect(layoutStrip(strip(columns, brackets)).brackets).toEqual([
-      { breakId: "a", first: 10, last: 12, suspects: 3, level: 0 },
-      { breakId: "b", first: 13, last: 13, suspects: 1, level: 1 },
-      { breakId: "c", first: 30, last: 30, suspects: 1, level: 0 },
+      { breakId: "a", first: 10, last: 12, suspects: 2 },
+      { breakId: "c", first: 30, last: 30, suspects: 1 },
+    ]);
+  });
+  it("puts brackets that would overlap, words included, on different levels at every zoom", () => {
+    const bracket = (first: number, last: number, suspects: number) => ({ breakId: "x", first, last, suspects });
+    const levels = (brackets: ReturnType<typeof bracket>[], pitch: number) =>
+      placeBrackets(brackets, pitch).map((placed) => placed.level);
+    const near = [bracket(10, 12, 3), bracket(13, 13, 1), bracket(20, 24, 5)];
+    expect(levels(near, 16)).toEqual([0, 0, 0]);
+    expect(levels(near, 8)).toEqual([0, 0, 1]);
+    expect(levels([bracket(5, 9, 5), bracket(6, 6, 1), bracket(7, 7, 1)], 16)).toEqual([0, 1, 1]);
+    expect(
+      levels(
+        Array.from({ length: 6 }, () => bracket(5, 9, 5)),
+        16,
+      ),
+    ).toEqual([0, 1, 2, 2, 2, 2]);
+  });
+  it("writes the words into a bracket that is wide enough, and none for a single suspect", () => {
+    const placed = placeBrackets(
+      [
+        { breakId: "a", first: 9, last: 9, suspects: 1 },
+        { breakId: "b", first: 10, last: 20, suspects: 11 },
+        { breakId: "c", first: 40, last: 41, suspects: 2 },
+      ],
+      16,
+    );
+    expect(placed.map(({ words, level }) => [words, level])).toEqual([
+      ["none", 0],
+      ["inside", 0],
+      ["before", 0],
     ]);
   });
   it("lays out 5,000 commits with as many marks and gaps together", () => {
