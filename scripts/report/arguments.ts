@@ -1,4 +1,5 @@
 import { wrongUse } from "./exit.ts";
+import { httpUrl } from "./httpUrl.ts";
 
 export const DEFAULT_HISTORY = 200;
 export const DEFAULT_WAIT_SECONDS = 600;
@@ -87,8 +88,7 @@ export function parseArguments(argv: readonly string[], environment: Environment
   if (files.length === 0 && !close) throw wrongUse("Which document? Name a file, or - for standard input.");
   if (files.length === 0 && given.has("dry-run")) throw wrongUse("--dry-run needs a document.");
   if (close && given.has("dry-run")) throw wrongUse("A dry run keeps nothing that --close could complete.");
-  const token = environment.CLINOGRAPH_TOKEN;
-  if (!token) throw wrongUse("CLINOGRAPH_TOKEN is not set; a lead of the project makes a token with the scope post.");
+  const token = tokenFrom(environment.CLINOGRAPH_TOKEN);
   return {
     server: serverUrl(given.get("server") ?? environment.CLINOGRAPH_URL),
     project: projectSlug(given.get("project") ?? environment.CLINOGRAPH_PROJECT),
@@ -114,12 +114,22 @@ function whole(name: string, text: string | undefined, fallback: number, most: n
   return Number(text);
 }
 
+/** A secret that came with a line break would end, spelled out, in an error message of fetch. */
+function tokenFrom(text: string | undefined): string {
+  const token = text?.trim();
+  if (!token) throw wrongUse("CLINOGRAPH_TOKEN is not set; a lead of the project makes a token with the scope post.");
+  if (!/^[\x21-\x7e]+$/.test(token)) throw wrongUse("CLINOGRAPH_TOKEN holds characters that no token has.");
+  return token;
+}
+
 function serverUrl(text: string | undefined): string {
   if (!text) throw wrongUse("Where is the server? Give --server or set CLINOGRAPH_URL.");
-  if (!URL.canParse(text) || !/^https?:$/.test(new URL(text).protocol)) {
-    throw wrongUse(`The server's address must begin with http:// or https://, not ${text}.`);
+  const url = httpUrl(text);
+  if (url === null) throw wrongUse(`The server's address must begin with http:// or https://, not ${text}.`);
+  if (url.username || url.password || url.search || url.hash) {
+    throw wrongUse("The server's address is host and path alone, without a name, password, ? or #.");
   }
-  return text.replace(/\/+$/, "");
+  return url.href.replace(/\/+$/, "");
 }
 
 function projectSlug(text: string | undefined): string {

@@ -1,4 +1,5 @@
 import type { Environment, Shard } from "./arguments.ts";
+import { httpUrl } from "./httpUrl.ts";
 
 /** What a CI system tells of itself; null where it does not. */
 export interface CiFacts {
@@ -39,6 +40,8 @@ const SYSTEMS: readonly CiSystem[] = [
     mark: "GITLAB_CI",
     read: (get) => ({
       runId: prefixed("gitlab", get("CI_PIPELINE_ID")),
+      // A job that is repeated has another id in the same pipeline.
+      attempt: get("CI_JOB_ID"),
       runUrl: get("CI_PIPELINE_URL"),
       branch: get("CI_MERGE_REQUEST_SOURCE_BRANCH_NAME") ?? get("CI_COMMIT_BRANCH"),
       sha: get("CI_COMMIT_SHA"),
@@ -121,7 +124,7 @@ export function ciFacts(environment: Environment): CiFacts {
   return {
     ...facts,
     sha: facts.sha !== null && /^([0-9a-f]{40}|[0-9a-f]{64})$/.test(facts.sha) ? facts.sha : null,
-    runUrl: facts.runUrl !== null && /^https?:/.test(facts.runUrl) && URL.canParse(facts.runUrl) ? facts.runUrl : null,
+    runUrl: facts.runUrl !== null && httpUrl(facts.runUrl) !== null ? facts.runUrl : null,
   };
 }
 

@@ -7,7 +7,7 @@ export interface GitFacts {
   readonly commit: CommitDocument;
   /** Earlier commits, newest first, merges and side branches included. */
   readonly history: readonly CommitDocument[];
-  /** Branch that is checked out; null with a detached head, as most CI systems have it. */
+  /** Branch that is checked out, for its tip; null for another commit and with a detached head, as in most CI systems. */
   readonly branch: string | null;
   /** True where the clone ends before the history does. */
   readonly shallow: boolean;
@@ -42,7 +42,8 @@ export function gitFacts(folder: string, revision: string, history: number): Git
     .slice(1)
     .map((record) => readCommit(folder, record, cut));
   if (!commit) return null;
-  const branch = gitLine(folder, ["symbolic-ref", "--short", "--quiet", "HEAD"]);
+  const isTip = gitLine(folder, ["rev-parse", "--verify", "--quiet", "HEAD"]) === sha;
+  const branch = isTip ? gitLine(folder, ["symbolic-ref", "--short", "--quiet", "HEAD"]) : null;
   return { commit, history: earlier, branch, shallow: cut.size > 0 };
 }
 

@@ -31,7 +31,7 @@ const REQUEST_TIMEOUT_MS = 10 * 60 * 1000;
 
 /**
  * Sends a request, the same bytes each time, until it is answered with something lasting. Pauses double, with jitter so
- * that the jobs of one outage do not come back all at once; Retry-After is kept where the server gives it.
+ * that the jobs of one outage do not come back all at once; where the server gives Retry-After, the first pause follows it.
  * @throws ReportError (not posted) when patience is over.
  */
 export async function send(request: HttpRequest, { patienceMs, onRetry }: Retrying): Promise<HttpAnswer> {
@@ -40,7 +40,7 @@ export async function send(request: HttpRequest, { patienceMs, onRetry }: Retryi
     const { answer, reason } = await once(request);
     if (answer && !PASSING.has(answer.status)) return answer;
     const asked = answer ? retryAfterMs(answer.headers.get("retry-after"), Date.now()) : null;
-    const delay = asked ?? backOffMs(attempt, Math.random());
+    const delay = asked === null ? backOffMs(attempt, Math.random()) : asked + backOffMs(0, Math.random());
     if (Date.now() + delay > until) throw notPosted(`Gave up after ${attempt + 1} attempts: ${reason}.`);
     onRetry(reason, delay);
     await sleep(delay);

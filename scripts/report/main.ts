@@ -52,9 +52,10 @@ export async function main(argv: readonly string[], around: Surroundings): Promi
     around.output.write(`${lines.join("\n")}\n`);
     return exitOf(posted);
   } catch (error) {
-    if (!(error instanceof ReportError)) throw error;
-    around.errors.write(`${error.message}\n`);
-    return error.exitCode;
+    // Node would end with 1, which says that the gate fails.
+    const known = error instanceof ReportError;
+    around.errors.write(`${known ? error.message : `The reporter itself failed: ${String(error)}`}\n`);
+    return known ? error.exitCode : EXIT.notPosted;
   }
 }
 
@@ -77,7 +78,8 @@ async function answer(options: Options, around: Surroundings, retrying: Retrying
       errors.write(`The clone is shallow: only ${git.history.length} earlier commits can be told.\n`);
     }
     const document = completeDocument(given, options, { git, ci: ciFacts(environment) });
-    const known = [document.commit, ...(document.history ?? [])];
+    // What the document says has not been checked yet.
+    const known = [document.commit, ...(Array.isArray(document.history) ? document.history : [])];
     const first = await postDocument(options, document, { dryRun }, retrying);
     const closes = close && first.build.state === "receiving";
     return { posted: closes ? await closeBuild(options, first.build.id, retrying) : first, known };

@@ -1,10 +1,12 @@
 import { gzipSync } from "node:zlib";
+import type { BreakDetail } from "../../shared/schemas/break.ts";
 import type { BuildRow, PostedBuild } from "../../shared/schemas/build.ts";
 import type { Gate } from "../../shared/schemas/gate.ts";
 import type { ReadyDocument } from "./document.ts";
+import { notPosted } from "./exit.ts";
 import { refusal } from "./explain.ts";
 import { send } from "./http.ts";
-import type { Retrying } from "./http.ts";
+import type { HttpAnswer, Retrying } from "./http.ts";
 import { VERSION } from "./version.ts";
 
 /** Where and as whom to post. */
@@ -49,6 +51,15 @@ export async function postDocument(
     retrying,
   );
   if (answer.status < 200 || answer.status > 299) throw refusal(answer);
+  return postedIn(answer);
+}
+
+/** A page of a proxy or of another server also answers 200: that must not pass for a verdict. */
+function postedIn(answer: HttpAnswer): PostedBuild {
+  const body = answer.body as Partial<PostedBuild> | null;
+  if (!body?.build?.id || !body.summary || !body.gate?.decision || !Array.isArray(body.breaks)) {
+    throw notPosted(`What answered ${answer.status} is not Clinograph: check --server.`);
+  }
   return answer.body as PostedBuild;
 }
 
@@ -57,7 +68,7 @@ export async function closeBuild(target: Target, buildId: string, retrying: Retr
   const url = address(target, `builds/${encodeURIComponent(buildId)}/close`);
   const answer = await send({ method: "POST", url, headers: headers(target) }, retrying);
   if (answer.status !== 200) throw refusal(answer);
-  return answer.body as PostedBuild;
+  return postedIn(answer);
 }
 
 async function get<T>(target: Target, path: string, retrying: Retrying): Promise<T> {
@@ -72,6 +83,16 @@ export function readGate(target: Target, commit: string, lane: string, retrying:
 
 export function readBuild(target: Target, buildId: string, retrying: Retrying): Promise<BuildRow> {
   return get<BuildRow>(target, `builds/${encodeURIComponent(buildId)}`, retrying);
+}
+
+/** The break as a posting's answer tells it. */
+export async function readBreak(
+  target: Target,
+  id: string,
+  retrying: Retrying,
+): Promise<PostedBuild["breaks"][number]> {
+  const { url, state, onset } = await get<BreakDetail>(target, `breaks/${encodeURIComponent(id)}`, retrying);
+  return { id, url, state, onset: onset.commit };
 }
 
 /** The build of a commit, lane and run that is still receiving; null where there is none. */

@@ -1,8 +1,9 @@
 import { setTimeout as sleep } from "node:timers/promises";
 import type { PostedBuild } from "../../shared/schemas/build.ts";
+import type { Gate } from "../../shared/schemas/gate.ts";
 import { notPosted } from "./exit.ts";
 import type { Retrying } from "./http.ts";
-import { readBuild, readGate } from "./post.ts";
+import { readBreak, readBuild, readGate } from "./post.ts";
 import type { Target } from "./post.ts";
 
 const FIRST_PAUSE_MS = 500;
@@ -29,7 +30,8 @@ export async function waitForGate(
     if (build.state === "complete") {
       const gate = await readGate(target, commit, lane, retrying);
       if (gate.decision !== "wait") {
-        return { ...posted, build: { ...posted.build, state: "complete" }, summary: build.summary, gate };
+        const breaks = await breaksOf(target, gate, retrying);
+        return { build: { ...posted.build, state: "complete" }, summary: build.summary, gate, breaks };
       }
     }
     if (Date.now() + pause > until) {
@@ -39,4 +41,10 @@ export async function waitForGate(
     }
     await sleep(pause);
   }
+}
+
+/** A shard's own answer came before there was a verdict: the breaks are those that the gate speaks of. */
+async function breaksOf(target: Target, gate: Gate, retrying: Retrying): Promise<PostedBuild["breaks"]> {
+  const ids = new Set(gate.reasons.map(({ breakId }) => breakId).filter((id) => id !== undefined));
+  return Promise.all([...ids].map((id) => readBreak(target, id, retrying)));
 }

@@ -55,6 +55,11 @@ describe("what CI systems tell", () => {
     expect(ciFacts(environment).shard).toEqual(shard);
   });
 
+  it("tells a repeated job from its first attempt", () => {
+    const environment = { GITLAB_CI: "true", CI_PIPELINE_ID: "5", CI_JOB_ID: "51" };
+    expect(ciFacts(environment)).toMatchObject({ runId: "gitlab-5", attempt: "51" });
+  });
+
   it("reads the others", () => {
     expect(ciFacts({ TF_BUILD: "True", BUILD_BUILDID: "9", BUILD_SOURCEBRANCH: "refs/heads/wake" })).toMatchObject({
       runId: "azure-9",

@@ -71,9 +71,11 @@ describe("what git tells", { timeout: 60_000 }, () => {
     expect(gitFacts(repo.folder, "HEAD", 0)!.history).toEqual([]);
   });
 
-  it("knows no branch with a detached head", () => {
+  it("knows no branch with a detached head, nor for another commit than the tip", () => {
     const repo = repository();
     const first = repo.commit("First", "a.f90");
+    repo.commit("Second", "a.f90");
+    expect(gitFacts(repo.folder, first, 10)).toMatchObject({ branch: null, commit: { sha: first }, history: [] });
     repo.git("checkout", "-q", "--detach", first);
     expect(gitFacts(repo.folder, "HEAD", 10)).toMatchObject({ branch: null, commit: { sha: first } });
   });

@@ -11,9 +11,14 @@ afterEach(() => server?.close());
 async function postTo(replies: readonly Reply[], patienceMs = 60_000) {
   server = await fakeServer((_, at) => replies[Math.min(at, replies.length - 1)]!);
   const told: string[] = [];
+  const pauses: number[] = [];
   const request = { method: "POST", url: server.url, headers: {}, body: Buffer.from('{"a":1}') } as const;
-  const answer = await send(request, { patienceMs, onRetry: (reason) => told.push(reason) });
-  return { answer, told, received: server.received };
+  const onRetry = (reason: string, delayMs: number) => {
+    told.push(reason);
+    pauses.push(delayMs);
+  };
+  const answer = await send(request, { patienceMs, onRetry });
+  return { answer, told, pauses, received: server.received };
 }
 
 const AT_ONCE = { "Retry-After": "0" };
@@ -22,8 +27,10 @@ const GOOD: Reply = { status: 201, body: { fine: true } };
 describe("sending", () => {
   it.each([429, 502, 503, 504])("tries again after %i, with the same bytes", async (status) => {
     const busy = { status, headers: AT_ONCE, body: { detail: "too busy" } };
-    const { answer, told, received } = await postTo([busy, busy, GOOD]);
+    const { answer, told, pauses, received } = await postTo([busy, busy, GOOD]);
     expect(answer).toMatchObject({ status: 201, body: { fine: true } });
+    // "At once" is still not all at the same time.
+    for (const pause of pauses) expect(pause).toBeGreaterThanOrEqual(250);
     expect(told).toEqual(Array(2).fill(`the server answers ${status} (too busy)`));
     expect(received.map(({ bytes }) => bytes.toString())).toEqual(Array(3).fill('{"a":1}'));
   });

@@ -150,20 +150,32 @@ describe("the reporter as a process", { timeout: 60_000 }, () => {
     expect(gone).toMatchObject({ code: 3, received: [] });
   });
 
-  it("waits for the other shards, and then for the gate", async () => {
+  it("ends with 3 where what answers is no Clinograph", async () => {
+    const { code, errors } = await report(["build.json"], () => ({ status: 200, body: "<html>Welcome</html>" }));
+    expect(code).toBe(3);
+    expect(errors).toContain("check --server");
+  });
+
+  it("waits for the other shards, and then for the gate and its breaks", async () => {
     const receiving = posted({ build: { state: "receiving" }, gate: { decision: "wait" } });
+    const reason = { code: "new-break", severity: "fail", message: "3 entries disagree", breakId: "5" } as const;
+    const { gate } = posted({ gate: { decision: "fail", reasons: [reason, { ...reason, row: 1 }] } });
+    const broken = { id: "5", url: "http://clinograph.example/breaks/5", state: "open", onset: { commit: first } };
     const row = (state: string) => ({ state, summary: receiving.summary, shards: { missing: [1] } });
     const { code, output, received } = await report(
       ["build.json", "--shard", "1/2", "--run-id", "r", "--wait"],
       (request, at) => {
         if (request.method === "POST") return { status: 201, body: receiving };
-        if (request.url.includes("/gate?")) return { status: 200, body: failing.gate };
+        if (request.url.includes("/gate?")) return { status: 200, body: gate };
+        if (request.url.includes("/breaks/")) return { status: 200, body: broken };
         return { status: 200, body: row(at < 2 ? "receiving" : "complete") };
       },
     );
     expect(code).toBe(1);
     expect(output).toContain("gate FAILS");
-    expect(received.map(({ url }) => url.replace(/\?.*/, "").split("/").pop())).toEqual(["builds", "12", "12", "gate"]);
+    expect(output).toContain(`break begun by ${first.slice(0, 12)} "Lay the keel"`);
+    const asked = received.map(({ url }) => url.replace(/\?.*/, "").split("/").pop());
+    expect(asked).toEqual(["builds", "12", "12", "gate", "5"]);
     expect(received[0]!.document).toMatchObject({ shard: { index: 0, count: 2 }, run: { id: "r" } });
   });
 
