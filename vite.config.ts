@@ -71,6 +71,7 @@ export default defineConfig(({ mode }) => {
           test: {
             name: "e2e",
             include: ["tests/e2e/**/*.test.ts"],
+            globalSetup: path("./tests/e2e/support/serve.ts"),
             environment: "node",
             fileParallelism: false,
             testTimeout: 120_000,

@@ -18,7 +18,8 @@ export function overviewSentence(facts: OverviewFacts): string {
   const { commit, judged, counts, newBreaks, repairedBreaks, openBreaks, vanished } = facts;
   if (commit === null) return "Nothing was posted to this lane yet.";
   if (!judged || counts === null) return "This commit was not built in this lane.";
-  if (newBreaks.length > 0) return `${partialsOf(newBreaks)} stopped agreeing here.`;
+  if (newBreaks.length === 1) return newBreaks[0].brief.sentence;
+  if (newBreaks.length > 1) return `${partialsOf(newBreaks)} stopped agreeing here.`;
   if (vanished > 0) return `${capital(countInWords(vanished))} ${vanished === 1 ? "block" : "blocks"} vanished here.`;
   if (repairedBreaks.length > 0) return `${partialsOf(repairedBreaks)} ${agreeAgain(repairedBreaks)} here.`;
   if (openBreaks.length > 0) {

@@ -18,11 +18,26 @@ type Item = Wanted["items"][number];
  * breaks, then the newest commit of lanes that fell silent without it.
  */
 export async function loadWanted(reader: Reader, project: Project, lane: string | null, now: number): Promise<Item[]> {
-  return [
+  return merged([
     ...(await loadRequested(reader, project.id, lane)),
     ...(await loadNextTests(reader, project.id, lane)),
     ...(await loadSilent(reader, project.id, lane, now)),
-  ];
+  ]);
+}
+
+/** One build answers all reasons for it: the first reason is told, with the breaks of all. */
+function merged(items: readonly Item[]): Item[] {
+  const byBuild = new Map<string, Item>();
+  for (const item of items) {
+    const key = `${item.commit} ${item.lane}`;
+    const known = byBuild.get(key);
+    byBuild.set(key, {
+      ...(known ?? item),
+      breakIds: [...(known?.breakIds ?? []), ...item.breakIds],
+      remainingAfter: known?.remainingAfter ?? item.remainingAfter,
+    });
+  }
+  return [...byBuild.values()];
 }
 
 /** A request is answered by any complete build of its commit and lane. */
