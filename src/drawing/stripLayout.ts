@@ -67,7 +67,7 @@ export function placeBrackets(
   const ends: number[] = [];
   return brackets.map((bracket) => {
     const { first, last, suspects } = bracket;
-    const fits = (last - first + 1) * pitch >= labelWidth + 12;
+    const fits = (last - first + 1) * pitch >= labelWidth + 4;
     const words = suspects === 1 ? "none" : fits ? "inside" : "before";
     const start = first * pitch - (words === "before" ? labelWidth : 0);
     const free = ends.findIndex((end) => end <= start);
