@@ -6,6 +6,8 @@ const STILL = 1e-12;
 const { together, apart } = MOTION_CODE;
 const DERIVATIVE_ONLY = MOTION_CODE["derivative-only"];
 const MODEL_ONLY = MOTION_CODE["model-only"];
+/** Motion by whether a moved (4), r moved (2) and the entry agrees now (1): a look-up where a branch would guess. */
+const MOTION_OF = Uint8Array.of(0, 0, MODEL_ONLY, MODEL_ONLY, DERIVATIVE_ONLY, DERIVATIVE_ONLY, apart, together);
 
 /**
  * Motion of every entry of a block since the previous judged build of its lane (section 3 of the judging rules).
@@ -33,7 +35,7 @@ export function blockMotion(
   checkSide("before", before, rows, columns);
   expectLength("now.verdict", now.verdict.length, rows * columns);
   const motion = new Uint8Array(rows * columns);
-  const counts = new Float64Array(MOTIONS.length);
+  const counts = new Uint32Array(MOTIONS.length);
   for (let row = 0; row < rows; row += 1) {
     const valueMoved = outputMoved(now.outputValues, before.outputValues, row);
     moveRow(now, before, row * columns, (row + 1) * columns, valueMoved, motion, counts);
@@ -58,7 +60,7 @@ function moveRow(
   end: number,
   valueMoved: boolean,
   motion: Uint8Array,
-  counts: Float64Array,
+  counts: Uint32Array,
 ): void {
   const { derivative, reference, resolution, floor, verdict } = now;
   const { derivative: derivativeBefore, reference: referenceBefore, resolution: resolutionBefore } = before;
@@ -75,9 +77,7 @@ function moveRow(
     let modelMoved = Math.abs(r - s) > coarse;
     if (valueMoved && !modelMoved) modelMoved = changed ? !(change > coarse) : cannotTell(coarse, verdict[k]);
     if (!changed && !modelMoved) continue;
-    let code: number = MODEL_ONLY;
-    if (changed && !modelMoved) code = DERIVATIVE_ONLY;
-    else if (changed) code = verdict[k] === VERDICT_CODE.agrees ? together : apart;
+    const code = MOTION_OF[4 * Number(changed) + 2 * Number(modelMoved) + Number(verdict[k] === VERDICT_CODE.agrees)];
     motion[k] = code;
     counts[code] += 1;
   }

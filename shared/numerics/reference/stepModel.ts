@@ -22,7 +22,7 @@ const NOISE_SAFETY = 3;
 const COMPLEX_PRECISIONS = 8;
 const COMPLEX_SAFETY = 2;
 /** An entry this small beside its row tells nothing of its own curvature. */
-const NEGLIGIBLE = 1e-3;
+export const NEGLIGIBLE = 1e-3;
 
 /** Dimensionless; h and L in the unit of the input, both > 0. */
 export function truncationFactor(scheme: Scheme, h: number, precision: number, length: number): number {

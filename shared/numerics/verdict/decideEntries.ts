@@ -9,7 +9,6 @@ RANK[agrees] = 1;
 RANK[unresolved] = 2;
 RANK[disagrees] = 3;
 RANK[invalid] = 4;
-const AGREES_RANK = RANK[agrees];
 
 /** What the entries of one block are decided with and where it is written. */
 export interface Decision {
@@ -19,13 +18,15 @@ export interface Decision {
   readonly floor: number;
   /** Guard factor g on U before an entry is accused, by source byte. */
   readonly guards: Float64Array;
+  /** The one guard factor of a block with one reference, 0 where they differ; spares a look at each source byte. */
+  readonly soleGuard: number;
   readonly verdict: Uint8Array;
   readonly tally: Tally;
 }
 
 /** Entries per verdict code, and the worst entry by verdict, then by relative error, then the first. */
 export interface Tally {
-  readonly counts: Float64Array;
+  readonly counts: Uint32Array;
   /** Index, -1 before any. */
   worst: number;
   worstRank: number;
@@ -33,18 +34,19 @@ export interface Tally {
 }
 
 export function newTally(): Tally {
-  return { counts: new Float64Array(VERDICTS.length), worst: -1, worstRank: -1, worstError: 0 };
+  return { counts: new Uint32Array(VERDICTS.length), worst: -1, worstRank: -1, worstError: 0 };
 }
 
 /**
  * The kernel of `judgeBlock`: verdict of the entries start <= k < end, whose U stand at the start of `uncertainty`.
- * One pass, nothing is allocated per entry; agreement, the commonest case, is told first.
+ * One pass, nothing is allocated per entry. Verdicts and the test for the worst entry are worked out as numbers: in a
+ * block of mixed verdicts a branch on them would be guessed wrong every other time, which costs more than all the rest.
  */
 export function decideEntries(decision: Decision, uncertainty: Float64Array, start: number, end: number): void {
-  const { derivative, rtol, floor, guards, verdict, tally } = decision;
+  const { derivative, rtol, floor, guards, soleGuard, verdict, tally } = decision;
   const { value, source, sawNoChange } = decision.best;
+  const { counts } = tally;
   let { worst, worstRank, worstError } = tally;
-  let agreeing = 0;
   for (let k = start, j = 0; k < end; k += 1, j += 1) {
     const a = derivative[k];
     const r = value[k];
@@ -52,26 +54,22 @@ export function decideEntries(decision: Decision, uncertainty: Float64Array, sta
     const size = Math.max(Math.abs(r), floor);
     const tolerance = rtol * size;
     const distance = Math.abs(a - r);
-    let code: number = agrees;
-    if (!(distance + u <= tolerance)) {
-      if (!(distance < Infinity)) code = decideFar(a, r, u, guards[source[k]], rtol * (size / 2));
-      else if (a !== 0 || sawNoChange[k] === 0) {
-        code = distance - guards[source[k]] * u > tolerance ? disagrees : unresolved;
-      }
-    }
+    const guard = soleGuard > 0 ? soleGuard : guards[source[k]];
+    const within = Number(distance + u <= tolerance);
+    const beyond = Number(distance - guard * u > tolerance);
+    // unresolved 2, disagrees 2 - 1, agrees 0.
+    let code = (1 - within) * (unresolved - beyond);
+    if (!(distance < Infinity)) code = decideFar(a, r, u, guards[source[k]], rtol * (size / 2));
+    else if (a === 0 && code !== agrees && sawNoChange[k] === 1) code = agrees;
     verdict[k] = code;
-    if (code === agrees) {
-      agreeing += 1;
-      if (worstRank > AGREES_RANK || (worstRank === AGREES_RANK && !(distance > worstError * size))) continue;
-    } else {
-      tally.counts[code] += 1;
-      if (worstRank > RANK[code] || (worstRank === RANK[code] && !(distance > worstError * size))) continue;
-    }
+    counts[code] += 1;
+    const rank = RANK[code];
+    const farther = Number(rank === worstRank) & Number(distance > worstError * size);
+    if ((Number(rank > worstRank) | farther) === 0) continue;
     worst = k;
-    worstRank = RANK[code];
+    worstRank = rank;
     worstError = distance === 0 ? 0 : distance / size;
   }
-  tally.counts[agrees] += agreeing;
   tally.worst = worst;
   tally.worstRank = worstRank;
   tally.worstError = worstError;

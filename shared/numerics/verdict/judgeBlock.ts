@@ -40,12 +40,14 @@ export function judgeBlock(block: BlockNumbers, tolerances: Tolerances): JudgedB
   const selection = selectReferences(block, tolerances);
   const { best, bandRows } = selection;
   const floor = blockFloor(best, tolerances);
+  const guards = guardsOf(block, best);
   const decision: Decision = {
     derivative: block.derivative,
     best,
     rtol: tolerances.rtol,
     floor,
-    guards: guardsOf(block, best),
+    guards,
+    soleGuard: block.references.length === 1 ? guards[0] : 0,
     verdict: new Uint8Array(rows * columns),
     tally: newTally(),
   };
