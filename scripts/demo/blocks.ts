@@ -4,6 +4,7 @@ import { byCentralDifferences, byComplexSteps, byDualNumbers, byForwardDifferenc
 import type { Rows } from "./jacobians.ts";
 import { MODELS } from "./models/index.ts";
 import type { DemoModel } from "./models/model.ts";
+import { remember } from "./remember.ts";
 
 export const LANES = ["gcc-release", "clang-arm"] as const;
 export type LaneName = (typeof LANES)[number];
@@ -68,13 +69,20 @@ function reference(model: DemoModel, code: Code, plan: Plan): WireReference {
   return one ? { method, ...one, cost: { evaluations } } : { method, sweep: taken, cost: { evaluations } };
 }
 
-/** Every block that a lane's check job makes of a code base, evaluated for real. */
+/**
+ * Every block that a lane's check job makes of a code base, evaluated for real. Most commits leave most models alone:
+ * a block is worked out again only where something that it reads has changed.
+ */
 export function blocksOf(code: Code, lane: LaneName): WireBlock[] {
-  return MODELS.flatMap((model: DemoModel) => {
-    const plans = PLANS[`${model.model} ${model.output.name}`]!.lanes[lane];
-    return plans === undefined ? [] : [blockOf(model, code, plans)];
-  });
+  return JOBS[lane].map((job) => job(code));
 }
+
+const jobsOf = (lane: LaneName) =>
+  MODELS.flatMap((model: DemoModel) => {
+    const plans = PLANS[`${model.model} ${model.output.name}`]!.lanes[lane];
+    return plans === undefined ? [] : [remember((code: Code) => blockOf(model, code, plans))];
+  });
+const JOBS = { "gcc-release": jobsOf("gcc-release"), "clang-arm": jobsOf("clang-arm") };
 
 function blockOf(model: DemoModel, code: Code, plans: readonly Plan[]): WireBlock {
   const { output, input } = model;
