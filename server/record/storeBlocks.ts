@@ -36,21 +36,32 @@ export async function storeBlocks(
 }
 
 async function ensureBlocks(w: Writer, projectId: number, blocks: readonly JudgedPostedBlock[]): Promise<number[]> {
+  const known = await loadBlockIds(w, projectId, blocks);
+  const fresh = blocks.filter((block) => !known.has(nameKey(block)));
   await w.insertOrIgnore(
     "blocks",
     ["projectId", "model", "point", "output", "input"],
-    blocks.map((block): Bindable[] => [projectId, block.model, block.point, block.output, block.input]),
+    fresh.map((block): Bindable[] => [projectId, block.model, block.point, block.output, block.input]),
     500,
   );
-  const rows = await w.select<{ id: number; model: string; point: string; output: string; input: string }>(
+  const added = fresh.length === 0 ? known : await loadBlockIds(w, projectId, fresh);
+  return blocks.map((block) => (known.get(nameKey(block)) ?? added.get(nameKey(block))) as number);
+}
+
+type BlockNames = Pick<JudgedPostedBlock, "model" | "point" | "output" | "input">;
+
+function nameKey({ model, point, output, input }: BlockNames): string {
+  return JSON.stringify([model, point, output, input]);
+}
+
+/** Ids by name of all blocks of the models that the given ones are of. */
+async function loadBlockIds(w: Writer, projectId: number, blocks: readonly BlockNames[]): Promise<Map<string, number>> {
+  const rows = await w.select<BlockNames & { id: number }>(
     `SELECT id, model, point, output, input FROM blocks
      WHERE projectId = $1 AND model IN (SELECT value FROM json_each($2))`,
     [projectId, JSON.stringify([...new Set(blocks.map((block) => block.model))])],
   );
-  const key = (b: { model: string; point: string; output: string; input: string }) =>
-    JSON.stringify([b.model, b.point, b.output, b.input]);
-  const ids = new Map(rows.map((row) => [key(row), row.id]));
-  return blocks.map((block) => ids.get(key(block)) as number);
+  return new Map(rows.map((row) => [nameKey(row), row.id]));
 }
 
 async function refuseTwins(

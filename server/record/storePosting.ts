@@ -2,6 +2,7 @@ import type { Writer } from "../db/write.ts";
 import type { JudgedPosting } from "../ingest/judgePosting.ts";
 import { storeSummary } from "./buildSummary.ts";
 import { RecordConflict } from "./conflict.ts";
+import { findLane } from "./laneBuilds.ts";
 import { storeBlocks } from "./storeBlocks.ts";
 import { storeCommits } from "./storeCommits.ts";
 
@@ -72,13 +73,12 @@ export async function completeBuild(
   await storeSummary(w, buildId);
 }
 
+/** Looked for first: an insert that is passed over takes a number of the sequence all the same. */
 async function ensureLane(w: Writer, projectId: number, name: string): Promise<number> {
-  await w.insertOrIgnore("lanes", ["projectId", "name"], [[projectId, name]]);
-  const [lane] = await w.select<{ id: number }>("SELECT id FROM lanes WHERE projectId = $1 AND name = $2", [
-    projectId,
-    name,
-  ]);
-  return lane.id;
+  const known = await findLane(w, projectId, name);
+  if (known !== null) return known;
+  await w.run("INSERT INTO lanes (projectId, name) VALUES ($1, $2)", [projectId, name]);
+  return (await findLane(w, projectId, name)) as number;
 }
 
 async function findBuild(
