@@ -52,6 +52,9 @@ export async function open(
   const page = await context.newPage();
   const errors: string[] = [];
   page.on("pageerror", (error) => errors.push(error.message));
+  page.on("console", (message) => {
+    if (/Content Security Policy/.test(message.text())) errors.push(message.text());
+  });
   return { context, page, errors };
 }
 
