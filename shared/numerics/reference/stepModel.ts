@@ -22,7 +22,7 @@ const NOISE_SAFETY = 3;
 const COMPLEX_PRECISIONS = 8;
 const COMPLEX_SAFETY = 2;
 /** An entry this small beside its row tells nothing of its own curvature. */
-export const NEGLIGIBLE = 1e-3;
+const NEGLIGIBLE = 1e-3;
 
 /** Dimensionless; h and L in the unit of the input, both > 0. */
 export function truncationFactor(scheme: Scheme, h: number, precision: number, length: number): number {
@@ -43,12 +43,20 @@ export function roundingFactor(scheme: Scheme, h: number, x: number): number {
   return scheme.noisyValues === 0 ? 0 : finite(NOISE_SAFETY * UNIT_ROUNDOFF * (x / h + 4));
 }
 
+const CHOICES = new Float64Array(4);
+
 /**
  * S of an entry of magnitude m, in the unit of the entry: max(|F|/L, m), or P/L where m is negligible beside it (an
- * entry at a stationary point is small, the curvature there is not).
+ * entry at a stationary point is small, the curvature there is not). NaN where m is NaN.
  */
 export function entrySize(m: number, ofValue: number, ofRow: number): number {
-  return m < NEGLIGIBLE * ofRow ? ofRow : Math.max(ofValue, m);
+  // A table and no condition: which of the three it is changes from entry to entry, and a branch that is taken
+  // every other time costs more than all the rest.
+  CHOICES[0] = m;
+  CHOICES[1] = ofValue;
+  CHOICES[2] = ofRow;
+  CHOICES[3] = ofRow;
+  return CHOICES[Number(m < ofValue) + 2 * Number(m < NEGLIGIBLE * ofRow)];
 }
 
 /** Keeps a factor within the binary64 range, so that 0 times it stays 0. */

@@ -1,4 +1,5 @@
 import { VERDICT_CODE, VERDICTS } from "../../domain/vocabulary.ts";
+import { floored } from "../floored.ts";
 import type { BestReference } from "../types.ts";
 
 const { agrees, disagrees, unresolved, unreferenced, invalid } = VERDICT_CODE;
@@ -10,6 +11,10 @@ RANK[unresolved] = 2;
 RANK[disagrees] = 3;
 RANK[invalid] = 4;
 
+/** One binary32 number and its bits. */
+const NEAREST = new Float32Array(1);
+const NEAREST_BITS = new Int32Array(NEAREST.buffer);
+
 /** What the entries of one block are decided with and where it is written. */
 export interface Decision {
   readonly derivative: Float64Array;
@@ -18,15 +23,15 @@ export interface Decision {
   readonly floor: number;
   /** Guard factor g on U before an entry is accused, by source byte. */
   readonly guards: Float64Array;
-  /** The one guard factor of a block with one reference, 0 where they differ; spares a look at each source byte. */
-  readonly soleGuard: number;
   readonly verdict: Uint8Array;
+  /** U / max(|r|, floor), rounded up to the next binary32 number; 0/0 is 0, U/0 +Infinity, NaN without a reference. */
+  readonly resolution: Float32Array;
   readonly tally: Tally;
 }
 
 /** Entries per verdict code, and the worst entry by verdict, then by relative error, then the first. */
 export interface Tally {
-  readonly counts: Uint32Array;
+  readonly counts: Float64Array;
   /** Index, -1 before any. */
   worst: number;
   worstRank: number;
@@ -34,35 +39,48 @@ export interface Tally {
 }
 
 export function newTally(): Tally {
-  return { counts: new Uint32Array(VERDICTS.length), worst: -1, worstRank: -1, worstError: 0 };
+  return { counts: new Float64Array(VERDICTS.length), worst: -1, worstRank: -1, worstError: 0 };
 }
 
 /**
- * The kernel of `judgeBlock`: verdict of the entries start <= k < end, whose U stand at the start of `uncertainty`.
- * One pass, nothing is allocated per entry. Verdicts and the test for the worst entry are worked out as numbers: in a
- * block of mixed verdicts a branch on them would be guessed wrong every other time, which costs more than all the rest.
+ * The kernel of `judgeBlock`: verdict and resolution of the entries start <= k < end, whose U stand at the start of
+ * `uncertainty`. One pass, nothing is allocated per entry. Verdicts are worked out as numbers: in a block of mixed
+ * verdicts a branch on them would be guessed wrong every other time, which costs more than all the rest.
+ * Source of the rounding: IEEE Std 754-2019 (the next number up has the next bit pattern).
  */
 export function decideEntries(decision: Decision, uncertainty: Float64Array, start: number, end: number): void {
-  const { derivative, rtol, floor, guards, soleGuard, verdict, tally } = decision;
+  const { derivative, rtol, floor, guards, verdict, resolution, tally } = decision;
   const { value, source, sawNoChange } = decision.best;
-  const { counts } = tally;
+  const bits = new Int32Array(resolution.buffer, resolution.byteOffset, resolution.length);
   let { worst, worstRank, worstError } = tally;
+  let agreeing = 0;
+  let accused = 0;
+  let rare = 0;
   for (let k = start, j = 0; k < end; k += 1, j += 1) {
     const a = derivative[k];
     const r = value[k];
     const u = uncertainty[j];
-    const size = Math.max(Math.abs(r), floor);
+    const size = floored(Math.abs(r), floor);
+    const relative = u === 0 ? 0 : u / size;
+    NEAREST[0] = relative;
+    bits[k] = NEAREST_BITS[0] + Number(NEAREST[0] < relative);
     const tolerance = rtol * size;
     const distance = Math.abs(a - r);
-    const guard = soleGuard > 0 ? soleGuard : guards[source[k]];
+    const guard = guards[source[k]];
     const within = Number(distance + u <= tolerance);
     const beyond = Number(distance - guard * u > tolerance);
     // unresolved 2, disagrees 2 - 1, agrees 0.
     let code = (1 - within) * (unresolved - beyond);
-    if (!(distance < Infinity)) code = decideFar(a, r, u, guards[source[k]], rtol * (size / 2));
-    else if (a === 0 && code !== agrees && sawNoChange[k] === 1) code = agrees;
+    agreeing += within;
+    accused += beyond;
+    if (!(distance < Infinity) || (a === 0 && sawNoChange[k] === 1)) {
+      code = distance < Infinity ? agrees : decideFar(a, r, u, guard, rtol * (size / 2));
+      agreeing -= within;
+      accused -= beyond;
+      rare += 1;
+      tally.counts[code] += 1;
+    }
     verdict[k] = code;
-    counts[code] += 1;
     const rank = RANK[code];
     const farther = Number(rank === worstRank) & Number(distance > worstError * size);
     if ((Number(rank > worstRank) | farther) === 0) continue;
@@ -70,6 +88,9 @@ export function decideEntries(decision: Decision, uncertainty: Float64Array, sta
     worstRank = rank;
     worstError = distance === 0 ? 0 : distance / size;
   }
+  tally.counts[agrees] += agreeing;
+  tally.counts[disagrees] += accused;
+  tally.counts[unresolved] += end - start - agreeing - accused - rare;
   tally.worst = worst;
   tally.worstRank = worstRank;
   tally.worstError = worstError;

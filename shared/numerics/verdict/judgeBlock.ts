@@ -9,7 +9,6 @@ import { blockFloor } from "./blockFloor.ts";
 import type { Decision, Tally } from "./decideEntries.ts";
 import { decideEntries, newTally } from "./decideEntries.ts";
 import { relativeError } from "./relativeError.ts";
-import { writeResolutions } from "./writeResolutions.ts";
 
 /** A modelled difference rests on assumed curvature, so it accuses only beyond so many times its U. */
 const MODEL_GUARD = 10;
@@ -31,7 +30,7 @@ const MODEL_GUARD = 10;
  * |a - r| beyond the binary64 range is compared at half scale, max(|r|, floor) = 0 is compared exactly.
  * Accuracy: verdicts use the binary64 U, not the rounded resolution. On the published set no right entry was called
  * wrong at rtol 1e-6 by any reference, and no entry wrong by more than ten tolerances `agrees`.
- * Cost: two passes after the references', five bytes written an entry, nothing allocated per entry.
+ * Cost: one pass after the references', five bytes written an entry, nothing allocated per entry.
  * Source: JCGM 106:2012, Evaluation of measurement data - The role of measurement uncertainty in conformity
  * assessment; ISO 14253-1:2017 (the three-way rule with U as guard band on both sides).
  */
@@ -40,25 +39,21 @@ export function judgeBlock(block: BlockNumbers, tolerances: Tolerances): JudgedB
   const selection = selectReferences(block, tolerances);
   const { best, bandRows } = selection;
   const floor = blockFloor(best, tolerances);
-  const guards = guardsOf(block, best);
   const decision: Decision = {
     derivative: block.derivative,
     best,
     rtol: tolerances.rtol,
     floor,
-    guards,
-    soleGuard: block.references.length === 1 ? guards[0] : 0,
+    guards: guardsOf(block, best),
     verdict: new Uint8Array(rows * columns),
+    resolution: new Float32Array(rows * columns),
     tally: newTally(),
   };
-  const resolution = new Float32Array(rows * columns);
   for (let first = 0; first < rows; first += bandRows) {
     const last = Math.min(rows, first + bandRows);
-    const uncertainty = selection.uncertaintyOf(first, last);
-    decideEntries(decision, uncertainty, first * columns, last * columns);
-    writeResolutions(best.value, uncertainty, floor, first * columns, last * columns, resolution);
+    decideEntries(decision, selection.uncertaintyOf(first, last), first * columns, last * columns);
   }
-  const { verdict, tally } = decision;
+  const { verdict, resolution, tally } = decision;
   return {
     best,
     verdict,
