@@ -3,11 +3,21 @@ import type { MotionCounts, MotionSide } from "../types.ts";
 
 /** Relative movement that binary64 arithmetic may make by itself. */
 const STILL = 1e-12;
-const { together, apart } = MOTION_CODE;
+const { agrees, unresolved } = VERDICT_CODE;
+const { still, together, apart } = MOTION_CODE;
 const DERIVATIVE_ONLY = MOTION_CODE["derivative-only"];
 const MODEL_ONLY = MOTION_CODE["model-only"];
 /** Motion by whether a moved (4), r moved (2) and the entry agrees now (1): a look-up where a branch would guess. */
-const MOTION_OF = Uint8Array.of(0, 0, MODEL_ONLY, MODEL_ONLY, DERIVATIVE_ONLY, DERIVATIVE_ONLY, apart, together);
+const MOTION_OF = Uint8Array.of(
+  still,
+  still,
+  MODEL_ONLY,
+  MODEL_ONLY,
+  DERIVATIVE_ONLY,
+  DERIVATIVE_ONLY,
+  apart,
+  together,
+);
 
 /**
  * Motion of every entry of a block since the previous judged build of its lane (section 3 of the judging rules).
@@ -64,6 +74,7 @@ function moveRow(
 ): void {
   const { derivative, reference, resolution, floor, verdict } = now;
   const { derivative: derivativeBefore, reference: referenceBefore, resolution: resolutionBefore } = before;
+  const floorBefore = before.floor;
   const first = valueMoved ? start : firstChange(now, before, start, end);
   for (let k = first; k < end; k += 1) {
     const a = derivative[k];
@@ -71,13 +82,15 @@ function moveRow(
     const r = reference[k];
     const s = referenceBefore[k];
     const change = Math.abs(a - b);
-    const changed = moved(a, b, change, floor);
+    // A change well above the limit is the common one; what is not is looked at closely.
+    let changed = Number(change > STILL * (Math.abs(a) + Math.abs(b) + floor));
+    if (changed === 0 && change !== 0) changed = Number(moved(a, b, change, floor));
     const coarse =
-      resolution[k] * Math.max(Math.abs(r), floor) + resolutionBefore[k] * Math.max(Math.abs(s), before.floor);
-    let modelMoved = Math.abs(r - s) > coarse;
-    if (valueMoved && !modelMoved) modelMoved = changed ? !(change > coarse) : cannotTell(coarse, verdict[k]);
-    if (!changed && !modelMoved) continue;
-    const code = MOTION_OF[4 * Number(changed) + 2 * Number(modelMoved) + Number(verdict[k] === VERDICT_CODE.agrees)];
+      resolution[k] * Math.max(Math.abs(r), floor) + resolutionBefore[k] * Math.max(Math.abs(s), floorBefore);
+    let modelMoved = Number(Math.abs(r - s) > coarse);
+    if (valueMoved) modelMoved |= changed === 1 ? 1 - Number(change > coarse) : cannotTell(coarse, verdict[k]);
+    const code = MOTION_OF[4 * changed + 2 * modelMoved + Number(verdict[k] === agrees)];
+    if (code === still) continue;
     motion[k] = code;
     counts[code] += 1;
   }
@@ -92,14 +105,13 @@ function firstChange(now: MotionSide, before: MotionSide, start: number, end: nu
   return k;
 }
 
-/** True where the reference could not say whether the model moved under a derivative that did not. */
-function cannotTell(coarse: number, verdict: number): boolean {
-  return Number.isNaN(coarse) || verdict === VERDICT_CODE.unresolved;
+/** 1 where the reference could not say whether the model moved under a derivative that did not, else 0. */
+function cannotTell(coarse: number, verdict: number): number {
+  return Number(Number.isNaN(coarse) || verdict === unresolved);
 }
 
-/** True where b is not a but for rounding. A change well above the limit, the common one, is told without branches. */
+/** True where b is not a but for rounding. */
 function moved(a: number, b: number, change: number, floor: number): boolean {
-  if (change > STILL * (Math.abs(a) + Math.abs(b) + floor)) return true;
   if (!(change < Infinity)) return a !== b && (a === a || b === b);
   return change > STILL * Math.max(Math.abs(a), Math.abs(b), floor);
 }
