@@ -23,12 +23,13 @@ interface BlockCounts {
   readonly worst: string | null;
 }
 
-/** Adds up the blocks that a build has so far. */
+/** Adds up the blocks that a build has so far; of equally bad entries the first by its block's names is the worst. */
 export async function sumUpBuild(reader: Reader, buildId: number): Promise<BuildSummary> {
   const blocks = await reader.select<BlockCounts>(
     `SELECT bb.blockId, s.rowCount * s.columnCount AS entries,
        s.agrees, s.disagrees, s.unresolved, s.unreferenced, s.invalid, s.worst
-     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId WHERE bb.buildId = $1 ORDER BY bb.blockId`,
+     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId
+     WHERE bb.buildId = $1 ORDER BY b.model, b.output, b.input, b.point`,
     [buildId],
   );
   const sum = (name: "entries" | Verdict) => blocks.reduce((total, block) => total + block[name], 0);

@@ -16,10 +16,11 @@ export interface EverBad {
   readonly entries: Uint32Array;
 }
 
+/** In the order of the blocks' names, not of their ids: those tell only which block was posted first. */
 export async function loadEverBad(reader: Reader, laneId: number): Promise<EverBad[]> {
   const rows = await reader.select<{ blockId: number; columns: number; everBad: Buffer }>(
-    `SELECT blockId, columnCount AS columns, everBad FROM drift_states WHERE laneId = $1
-     ORDER BY blockId, columnCount`,
+    `SELECT d.blockId, d.columnCount AS columns, d.everBad FROM drift_states d JOIN blocks b ON b.id = d.blockId
+     WHERE d.laneId = $1 ORDER BY b.model, b.output, b.input, b.point, d.columnCount`,
     [laneId],
   );
   return rows.map(({ blockId, columns, everBad }) => ({ blockId, columns, entries: unpackEntries(everBad) }));

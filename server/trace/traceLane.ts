@@ -33,10 +33,11 @@ interface Told {
  * on; where no branch was told, for whatever follows it.
  */
 export function traceLane(project: ProjectGraph, classes: readonly TestedEntries[]): LaneBreak[] {
+  const ranked: RankedBlock[] = [];
   const told = new Map<string, Told[]>();
   const items: TracedEntries[] = [];
   for (const { blockId, columns, entries, tests } of classes) {
-    const key = `${blockId} ${columns}`;
+    const key = rankOf(ranked, { blockId, columns });
     for (const found of traceEntries(project.graph, tests)) {
       const line = stateOf(project, found, tests);
       items.push({ blockId: key, entries, traced: line.traced });
@@ -53,12 +54,18 @@ export function traceLane(project: ProjectGraph, classes: readonly TestedEntries
       state: open ? "open" : "repaired",
       repairedBy: open ? null : group.repairedBy,
       tests: members.reduce((a, b) => (b.size > a.size ? b : a)).tests,
-      parts: blocks.map((block) => {
-        const [blockId, columns] = block.blockId.split(" ").map(Number);
-        return { blockId, columns, entries: block.entries };
-      }),
+      parts: blocks.map(({ blockId: rank, entries }) => ({ ...ranked[Number(rank)], entries })),
     };
   });
+}
+
+type RankedBlock = Omit<BreakPart, "entries">;
+
+/** Name of a block that sorts as the classes were given (by block): ids would tell which one was posted first. */
+function rankOf(ranked: RankedBlock[], block: RankedBlock): string {
+  const last = ranked.at(-1);
+  if (last?.blockId !== block.blockId || last.columns !== block.columns) ranked.push(block);
+  return String(ranked.length - 1).padStart(9, "0");
 }
 
 /** The break followed to the tip that its state speaks for. */

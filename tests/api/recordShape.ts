@@ -16,9 +16,10 @@ interface BreakRow {
  */
 export async function recordOf(reader: Reader, projectId: number) {
   const builds = await reader.select(
-    `SELECT l.name AS lane, c.sha, b.runId, b.state, b.missingShards, p.runId AS baselineRun, pc.sha AS baseline
+    `SELECT l.name AS lane, c.sha, b.runId, b.state, b.missingShards, json_remove(b.summary, '$.worst.blockId') AS summary,
+       w.model AS worstModel, p.runId AS baselineRun, pc.sha AS baseline
      FROM builds b JOIN lanes l ON l.id = b.laneId JOIN commits c ON c.id = b.commitId
-     LEFT JOIN builds p ON p.id = b.baselineBuildId LEFT JOIN commits pc ON pc.id = p.commitId
+     LEFT JOIN blocks w ON w.id = b.summary ->> '$.worst.blockId' LEFT JOIN builds p ON p.id = b.baselineBuildId LEFT JOIN commits pc ON pc.id = p.commitId
      WHERE b.projectId = $1 ORDER BY lane, c.sha, b.runId`,
     [projectId],
   );
