@@ -33,10 +33,15 @@ export async function statements(query: QueryInterface, sql: string): Promise<vo
 
 /**
  * Brings the database up to date. An existing file is copied beside itself before pending migrations run; when one
- * fails, the copy is put back and the error is thrown on: the record is never left half migrated.
+ * fails, or the process ends in their midst, the copy is put back: the record is never left half migrated. After
+ * success the copy stays as `<file>.before-migration`.
  * Returns the names of the migrations that ran.
+ * @throws what the failing migration threw.
  */
 export async function migrate(open: () => Promise<Sequelize>, file: string): Promise<string[]> {
+  // While this copy is there a migration is under way, or was when the process ended.
+  const copy = `${file}.migrating`;
+  if (existsSync(copy)) await putBack(copy, file);
   const fresh = !existsSync(file);
   const sequelize = await open();
   const pending = await migrator(sequelize).pending();
@@ -47,18 +52,30 @@ export async function migrate(open: () => Promise<Sequelize>, file: string): Pro
   // After a checkpoint the one file is the whole database.
   await sequelize.query("PRAGMA wal_checkpoint(TRUNCATE)");
   await sequelize.close();
-  const copy = `${file}.before-migration`;
-  if (!fresh) await copyFile(file, copy);
+  if (!fresh) {
+    // Under its name only once it is whole.
+    await copyFile(file, `${copy}.part`);
+    await rename(`${copy}.part`, copy);
+  }
   const migrating = await open();
   try {
     const ran = await migrator(migrating).up();
     await migrating.close();
+    if (!fresh) await rename(copy, `${file}.before-migration`);
     return ran.map((migration) => migration.name);
   } catch (error) {
     await migrating.close();
-    for (const suffix of ["-wal", "-shm"]) await rm(`${file}${suffix}`, { force: true });
-    if (fresh) await rm(file, { force: true });
-    else await rename(copy, file);
+    if (fresh) await removeDatabase(file);
+    else await putBack(copy, file);
     throw error;
   }
+}
+
+async function putBack(copy: string, file: string): Promise<void> {
+  await removeDatabase(file);
+  await rename(copy, file);
+}
+
+async function removeDatabase(file: string): Promise<void> {
+  for (const suffix of ["-wal", "-shm", ""]) await rm(`${file}${suffix}`, { force: true });
 }

@@ -30,8 +30,14 @@ async function tablesOf(sequelize: Sequelize): Promise<Record<string, Column[]>>
   return shapes;
 }
 
-const brokenReferences = (sequelize: Sequelize) =>
-  sequelize.query("PRAGMA foreign_key_check", { type: QueryTypes.SELECT });
+/** What SQLite finds wrong with the file and with references between its rows. */
+async function faultsOf(sequelize: Sequelize): Promise<object[]> {
+  const references = await sequelize.query<object>("PRAGMA foreign_key_check", { type: QueryTypes.SELECT });
+  const file = await sequelize.query<{ integrity_check: string }>("PRAGMA integrity_check", {
+    type: QueryTypes.SELECT,
+  });
+  return [...references, ...file.filter((row) => row.integrity_check !== "ok")];
+}
 
 /** A file with people, projects, tokens, a build and a waiver in it. */
 async function filledFile(): Promise<string> {
@@ -71,7 +77,8 @@ async function filledFile(): Promise<string> {
 }
 
 async function removeFile(file: string): Promise<void> {
-  for (const suffix of ["", "-wal", "-shm", ".before-migration"]) await rm(`${file}${suffix}`, { force: true });
+  for (const suffix of ["", "-wal", "-shm", ".before-migration", ".migrating"])
+    await rm(`${file}${suffix}`, { force: true });
 }
 
 it("every migration goes down and up again on a filled database, and leaves the same tables", async () => {
@@ -81,13 +88,13 @@ it("every migration goes down and up again on a filled database, and leaves the 
   expect(Object.keys(before)).toContain("users");
   for (const { name } of MIGRATIONS.toReversed()) {
     await migrator(sequelize).down({ to: name });
-    expect(await brokenReferences(sequelize), name).toEqual([]);
+    expect(await faultsOf(sequelize), name).toEqual([]);
   }
   expect(await tablesOf(sequelize)).toEqual({});
   const ran = await migrator(sequelize).up();
   expect(ran.map((migration) => migration.name)).toEqual(MIGRATIONS.map((migration) => migration.name));
   expect(await tablesOf(sequelize)).toEqual(before);
-  expect(await brokenReferences(sequelize)).toEqual([]);
+  expect(await faultsOf(sequelize)).toEqual([]);
   await sequelize.close();
   await removeFile(file);
 });
@@ -120,5 +127,41 @@ it("a file is put back as it was when a migration fails", async () => {
   await expect(migrate(() => connect(file), file)).rejects.toThrow(/lanes/);
   expect((await readFile(file)).equals(before)).toBe(true);
   expect(existsSync(`${file}-wal`)).toBe(false);
+  await removeFile(file);
+});
+
+it("tells which migrations ran, keeps a copy of what was before, and has nothing to do the second time", async () => {
+  const file = await filledFile();
+  const names = MIGRATIONS.map((migration) => migration.name);
+  const preparing = await connect(file);
+  await migrator(preparing).down();
+  await preparing.query("PRAGMA wal_checkpoint(TRUNCATE)");
+  await preparing.close();
+  const before = await readFile(file);
+  expect(await migrate(() => connect(file), file)).toEqual(names.slice(-1));
+  expect((await readFile(`${file}.before-migration`)).equals(before)).toBe(true);
+  expect(await migrate(() => connect(file), file)).toEqual([]);
+  await removeFile(file);
+  expect(await migrate(() => connect(file), file)).toEqual(names);
+  expect(existsSync(`${file}.before-migration`)).toBe(false);
+  await removeFile(file);
+});
+
+it("a migration in whose midst the process ended is begun again from what was before", async () => {
+  const file = await filledFile();
+  const preparing = await connect(file);
+  await migrator(preparing).down();
+  await preparing.query("PRAGMA wal_checkpoint(TRUNCATE)");
+  await preparing.close();
+  // As it is left: the whole copy, and beside it a file with the first of the new tables.
+  await copyFile(file, `${file}.migrating`);
+  const killed = await connect(file);
+  await killed.query("CREATE TABLE lanes (id INTEGER)");
+  await killed.close();
+  expect(await migrate(() => connect(file), file)).toEqual([MIGRATIONS.at(-1)?.name]);
+  const after = await connect(file);
+  expect(await faultsOf(after)).toEqual([]);
+  expect(await after.query("SELECT count(*) AS users FROM users", { type: QueryTypes.SELECT })).toEqual([{ users: 1 }]);
+  await after.close();
   await removeFile(file);
 });
