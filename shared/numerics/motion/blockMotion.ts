@@ -1,4 +1,5 @@
 import { MOTION_CODE, MOTIONS, VERDICT_CODE } from "../../domain/vocabulary.ts";
+import { floored } from "../floored.ts";
 import type { MotionCounts, MotionSide } from "../types.ts";
 
 /** Relative movement that binary64 arithmetic may make by itself. */
@@ -62,7 +63,7 @@ export function blockMotion(
   };
 }
 
-/** One row, start <= k < end; `motion` is all `still` before, and only what moved is written and counted. */
+/** One row, start <= k < end; `motion` is all `still` before, and so is left alone up to the first change. */
 function moveRow(
   now: MotionSide & { readonly verdict: Uint8Array },
   before: MotionSide,
@@ -75,6 +76,11 @@ function moveRow(
   const { derivative, reference, resolution, floor, verdict } = now;
   const { derivative: derivativeBefore, reference: referenceBefore, resolution: resolutionBefore } = before;
   const floorBefore = before.floor;
+  // Counted in variables: a number in memory that every entry adds to makes each entry wait for the one before.
+  let derivatives = 0;
+  let models = 0;
+  let boths = 0;
+  let followed = 0;
   const first = valueMoved ? start : firstChange(now, before, start, end);
   for (let k = first; k < end; k += 1) {
     const a = derivative[k];
@@ -86,14 +92,21 @@ function moveRow(
     let changed = Number(change > STILL * (Math.abs(a) + Math.abs(b) + floor));
     if (changed === 0 && change !== 0) changed = Number(moved(a, b, change, floor));
     const coarse =
-      resolution[k] * Math.max(Math.abs(r), floor) + resolutionBefore[k] * Math.max(Math.abs(s), floorBefore);
+      resolution[k] * floored(Math.abs(r), floor) + resolutionBefore[k] * floored(Math.abs(s), floorBefore);
     let modelMoved = Number(Math.abs(r - s) > coarse);
     if (valueMoved) modelMoved |= changed === 1 ? 1 - Number(change > coarse) : cannotTell(coarse, verdict[k]);
-    const code = MOTION_OF[4 * changed + 2 * modelMoved + Number(verdict[k] === agrees)];
-    if (code === still) continue;
-    motion[k] = code;
-    counts[code] += 1;
+    const agreed = Number(verdict[k] === agrees);
+    const both = changed & modelMoved;
+    motion[k] = MOTION_OF[4 * changed + 2 * modelMoved + agreed];
+    derivatives += changed;
+    models += modelMoved;
+    boths += both;
+    followed += both & agreed;
   }
+  counts[DERIVATIVE_ONLY] += derivatives - boths;
+  counts[MODEL_ONLY] += models - boths;
+  counts[together] += followed;
+  counts[apart] += boths - followed;
 }
 
 /** First entry of a row that is not the same number on both sides: most rows of most builds have none. */
