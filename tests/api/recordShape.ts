@@ -4,6 +4,7 @@ import { unpackEntries } from "../../server/record/entryList.ts";
 interface BreakRow {
   readonly id: number;
   readonly lane: string;
+  readonly onset: string;
   readonly trace: string;
   readonly models: string;
   readonly worst: string;
@@ -49,22 +50,23 @@ async function breaksOf(reader: Reader, projectId: number) {
      WHERE b.projectId = $1 AND b.withdrawnAt IS NULL`,
     [projectId],
   );
-  const breaks = [];
-  for (const { id, trace, models, worst, ...row } of rows) {
-    const parts = await reader.select<{ model: string; columns: number; entries: Buffer }>(
-      `SELECT k.model, e.columnCount AS columns, e.entries FROM break_entries e JOIN blocks k ON k.id = e.blockId
-       WHERE e.breakId = $1 ORDER BY k.model, k.point, columns`,
-      [id],
-    );
-    const { blockId: _, ...worstEntry } = JSON.parse(worst) as { blockId: number };
-    breaks.push({
-      ...row,
-      trace: JSON.parse(trace) as unknown,
-      models: JSON.parse(models) as unknown,
-      worst: worstEntry,
-      parts: parts.map(({ model, columns, entries }) => ({ model, columns, entries: [...unpackEntries(entries)] })),
-    });
-  }
+  const breaks = await Promise.all(
+    rows.map(async ({ id, trace, models, worst, ...row }) => {
+      const parts = await reader.select<{ model: string; columns: number; entries: Buffer }>(
+        `SELECT k.model, e.columnCount AS columns, e.entries FROM break_entries e JOIN blocks k ON k.id = e.blockId
+         WHERE e.breakId = $1 ORDER BY k.model, k.point, columns`,
+        [id],
+      );
+      const { blockId: _, ...worstEntry } = JSON.parse(worst) as { blockId: number };
+      return {
+        ...row,
+        trace: JSON.parse(trace) as unknown,
+        models: JSON.parse(models) as unknown,
+        worst: worstEntry,
+        parts: parts.map(({ model, columns, entries }) => ({ model, columns, entries: [...unpackEntries(entries)] })),
+      };
+    }),
+  );
   const key = (one: (typeof breaks)[number]) => JSON.stringify([one.lane, one.onset, one.trace, one.parts]);
   return breaks.sort((a, b) => (key(a) < key(b) ? -1 : 1));
 }

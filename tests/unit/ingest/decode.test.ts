@@ -279,11 +279,11 @@ describe("a mistake of shape", () => {
   });
 
   it("in a probe is told at the shorter list", () => {
-    const probes = [
+    const probes: Json = [
       { kind: "taylor", steps: [1, 2, 3], remainders: [1, 2] },
       { kind: "directional", method: "complex-step", derivative: [1], reference: [] },
     ];
-    expect(mistakes(build([block({ probes: probes as Json })]))).toEqual([
+    expect(mistakes(build([block({ probes })]))).toEqual([
       "#/blocks/0/probes/0/remainders: has 2 numbers, expected 3",
       "#/blocks/0/probes/1/reference: has 0 numbers, expected 1",
     ]);
