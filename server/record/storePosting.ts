@@ -13,7 +13,7 @@ export interface StoredPosting {
   /** True where all shards are here and the build is still to be completed. */
   readonly allHere: boolean;
   /** The answer given before, where this body came before; null where that posting was never answered. */
-  readonly repeated: { readonly answer: string | null } | null;
+  readonly repeated: { readonly answer: Buffer | null } | null;
 }
 
 interface BuildRow {
@@ -101,8 +101,8 @@ async function findShard(
   buildId: number,
   position: number,
   posting: JudgedPosting,
-): Promise<{ id: number; answer: string | null } | null> {
-  const [shard] = await w.select<{ id: number; bodyHash: Buffer; answer: string | null }>(
+): Promise<{ id: number; answer: Buffer | null } | null> {
+  const [shard] = await w.select<{ id: number; bodyHash: Buffer; answer: Buffer | null }>(
     "SELECT id, bodyHash, answer FROM shards WHERE buildId = $1 AND position = $2",
     [buildId, position],
   );

@@ -149,7 +149,10 @@ describe("people and tokens", () => {
     await page.reload();
     await settled(page);
     expect(await page.getByText(text).count()).toBe(0);
-    page.once("dialog", (dialog) => void dialog.accept());
+    await page
+      .getByRole("row", { name: /nightly/ })
+      .getByRole("button", { name: /^Revoke/ })
+      .click();
     await page.getByRole("button", { name: "Revoke nightly" }).click();
     await expect.poll(read).toBe(401);
     await job.close();

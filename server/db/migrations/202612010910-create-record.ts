@@ -62,7 +62,7 @@ CREATE TABLE shards (
   bodyHash BLOB NOT NULL,
   bytes INTEGER NOT NULL,
   receivedAt INTEGER NOT NULL,
-  answer TEXT,
+  answer BLOB,
   UNIQUE (buildId, position)
 );
 CREATE TABLE blocks (

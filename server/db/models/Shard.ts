@@ -10,8 +10,8 @@ export class Shard extends Model<InferAttributes<Shard>, InferCreationAttributes
   declare bodyHash: Buffer;
   declare bytes: number;
   declare receivedAt: number;
-  /** JSON of the answer, for retries; null until it was given. */
-  declare answer: CreationOptional<string | null>;
+  /** JSON of the answer, deflated, for retries; null until it was given. */
+  declare answer: CreationOptional<Buffer | null>;
 
   static initialise(sequelize: Sequelize): void {
     Shard.init(
@@ -22,7 +22,7 @@ export class Shard extends Model<InferAttributes<Shard>, InferCreationAttributes
         bodyHash: { type: DataTypes.BLOB, allowNull: false },
         bytes: { type: DataTypes.INTEGER, allowNull: false },
         receivedAt: { type: DataTypes.INTEGER, allowNull: false },
-        answer: { type: DataTypes.TEXT, allowNull: true },
+        answer: { type: DataTypes.BLOB, allowNull: true },
       },
       { sequelize, tableName: "shards", timestamps: false },
     );

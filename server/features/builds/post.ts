@@ -1,3 +1,4 @@
+import { deflateRawSync, inflateRawSync } from "node:zlib";
 import type { PostedBuild } from "../../../shared/schemas/build.ts";
 import type { Context } from "../../context.ts";
 import type { Project } from "../../db/models/Project.ts";
@@ -60,15 +61,24 @@ async function record(
   const now = Date.now();
   const stored = await storePosting(w, project.id, judged, context.config.limits, now);
   const answered = stored.repeated?.answer;
-  if (answered) return { answer: JSON.parse(answered) as PostedBuild, repeated: true };
+  if (answered) return { answer: unpackAnswer(answered), repeated: true };
   if (stored.allHere && mode !== "respond-async") {
     await completeBuild(w, stored.buildId, [], now);
     await settleProject(w, context.judge, project.id, stored, now);
   }
   const answer = await composeAnswer(w, project, stored.buildId, context.config.publicUrl, now);
-  await w.run("UPDATE shards SET answer = $2 WHERE id = $1", [stored.shardId, JSON.stringify(answer)]);
+  await w.run("UPDATE shards SET answer = $2 WHERE id = $1", [stored.shardId, packAnswer(answer)]);
   if (mode === "dry-run") throw new RolledBack({ answer, repeated: false });
   return { answer, repeated: stored.repeated !== null };
+}
+
+/** Deflated: half of what a build that changes nothing adds to the record would be its answer. */
+function packAnswer(answer: PostedBuild): Buffer {
+  return deflateRawSync(JSON.stringify(answer));
+}
+
+function unpackAnswer(packed: Buffer): PostedBuild {
+  return JSON.parse(inflateRawSync(packed).toString()) as PostedBuild;
 }
 
 /** What the record refuses, in the words of HTTP. */
