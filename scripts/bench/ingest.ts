@@ -1,57 +1,13 @@
-import { spawn } from "node:child_process";
-import type { ChildProcess } from "node:child_process";
-import { readFile } from "node:fs/promises";
 import { once } from "node:events";
+import { Worker } from "node:worker_threads";
+import { serve } from "./ingestServer.ts";
+import type { Served } from "./ingestServer.ts";
 import { line, makeBuild, median } from "./scenario.ts";
 
 const TIMES_OF_PARSE = 3;
 const TIMES_OF_BODY = 8;
 const PAGE_MS = 100;
 const RUNS = 5;
-
-interface Served {
-  readonly url: string;
-  readonly token: string;
-}
-
-async function serve(): Promise<{ served: Served; child: ChildProcess }> {
-  const child = spawn(process.execPath, ["--import", "tsx", new URL("./ingestServer.ts", import.meta.url).pathname], {
-    stdio: ["pipe", "pipe", "inherit"],
-  });
-  if (!child.stdout) throw new Error("the server's output cannot be read");
-  const [first] = (await once(child.stdout, "data")) as [Buffer];
-  return { served: JSON.parse(first.toString()) as Served, child };
-}
-
-async function peakBytes(pid: number): Promise<number> {
-  const status = await readFile(`/proc/${pid}/status`, "utf8");
-  return Number(/VmHWM:\s+(\d+) kB/.exec(status)?.[1]) * 1024;
-}
-
-/** Asks for a page's data over and over until told to stop; answers with how long each answer took. */
-function watchPage({ url, token }: Served): { stop(): Promise<number[]> } {
-  const times: number[] = [];
-  let going = true;
-  const watching = (async () => {
-    while (going) {
-      const start = performance.now();
-      const answer = await fetch(`${url}/api/v1/projects/bench`, {
-        headers: { Authorization: `Bearer ${token}` },
-      });
-      await answer.arrayBuffer();
-      if (!answer.ok) throw new Error(`the page's data was answered with ${answer.status}`);
-      times.push(performance.now() - start);
-      await new Promise((resolve) => setTimeout(resolve, 5));
-    }
-  })();
-  return {
-    stop: async () => {
-      going = false;
-      await watching;
-      return times;
-    },
-  };
-}
 
 async function post({ url, token }: Served, bytes: Uint8Array<ArrayBuffer>): Promise<number> {
   const start = performance.now();
@@ -66,44 +22,66 @@ async function post({ url, token }: Served, bytes: Uint8Array<ArrayBuffer>): Pro
   return time;
 }
 
-/**
- * A build of 1,000,000 entries from first byte to answer, as a multiple of parsing the same bytes as JSON; the
- * server's peak memory as a multiple of the body; how long another page's data took meanwhile. Each posting is of new
- * numbers in a lane of its own, so that all of it is judged and stored.
- */
-export async function run(): Promise<void> {
-  const { served, child } = await serve();
+function bodyOf(run: number): Uint8Array<ArrayBuffer> {
+  const document = makeBuild(1, { blocks: 1, rows: 1000, columns: 1000 }, 1 + run, `lane ${run}`);
+  return new Uint8Array(new TextEncoder().encode(JSON.stringify(document)));
+}
+
+function parseTime(bytes: Uint8Array): number {
+  const start = performance.now();
+  JSON.parse(new TextDecoder().decode(bytes));
+  return performance.now() - start;
+}
+
+/** Median time from first byte to answer as a multiple of parsing, and the server's peak memory meanwhile. */
+async function measurePostings(served: Served): Promise<void> {
   const parses: number[] = [];
   const posts: number[] = [];
-  const pages: number[] = [];
   let bodyBytes = 0;
-  let peak = 0;
-  for (let k = 0; k < RUNS; k += 1) {
-    const document = makeBuild(1, { blocks: 1, rows: 1000, columns: 1000 }, 1 + k, `lane ${k}`);
-    const bytes = new TextEncoder().encode(JSON.stringify(document));
+  let firstPeak = 0;
+  for (let run = 0; run < RUNS; run += 1) {
+    const bytes = bodyOf(run);
     bodyBytes = bytes.length;
-    const start = performance.now();
-    JSON.parse(new TextDecoder().decode(bytes));
-    parses.push(performance.now() - start);
-    const page = watchPage(served);
+    parses.push(parseTime(bytes));
     posts.push(await post(served, bytes));
-    pages.push(...(await page.stop()));
-    if (k === 0) peak = await peakBytes(child.pid as number);
+    if (run === 0) firstPeak = await served.peakBytes();
   }
-  const peakOfAll = await peakBytes(child.pid as number);
-  child.kill("SIGTERM");
-  await once(child, "exit");
   console.log(`a build of 1,000,000 entries, ${(bodyBytes / 1e6).toFixed(1)} MB of JSON, medians of ${RUNS}`);
   console.log(
-    `  decoding and JSON.parse ${median(parses).toFixed(0)} ms, first byte to answer ${median(posts).toFixed(0)} ms`,
+    `  decoding and JSON.parse of the bytes ${median(parses).toFixed(0)} ms, first byte to answer ${median(posts).toFixed(0)} ms`,
   );
-  line(
-    "first byte to answer, in times of decoding and JSON.parse",
-    median(posts) / median(parses),
-    "times",
-    TIMES_OF_PARSE,
-  );
-  line("the server's peak memory after the first, in times of the body", peak / bodyBytes, "times", TIMES_OF_BODY);
-  line(`the same after ${RUNS}`, peakOfAll / bodyBytes, "times", TIMES_OF_BODY);
-  line(`slowest of ${pages.length} answers to another page meanwhile`, Math.max(...pages), "ms", PAGE_MS);
+  line("first byte to answer", median(posts) / median(parses), "times decoding and parsing", TIMES_OF_PARSE);
+  line("the server's peak memory after the first", firstPeak / bodyBytes, "times the body", TIMES_OF_BODY);
+  line(`the same after ${RUNS}`, (await served.peakBytes()) / bodyBytes, "times the body", TIMES_OF_BODY);
+}
+
+/** How long another page's data takes while builds are posted, asked for from a thread of its own. */
+async function measurePages(served: Served): Promise<void> {
+  const watcher = new Worker(new URL("./pageWatcher.mjs", import.meta.url), {
+    workerData: { url: `${served.url}/api/v1/projects/bench/builds`, token: served.token },
+  });
+  const pages: number[] = [];
+  for (let run = RUNS; run < 2 * RUNS; run += 1) {
+    const bytes = bodyOf(run);
+    watcher.postMessage("begin");
+    await once(watcher, "message");
+    await post(served, bytes);
+    watcher.postMessage("end");
+    const [times] = (await once(watcher, "message")) as [number[]];
+    pages.push(...times);
+  }
+  await watcher.terminate();
+  console.log(`  another page's data meanwhile: ${pages.length} answers, median ${median(pages).toFixed(1)} ms`);
+  line("the slowest", Math.max(...pages), "ms", PAGE_MS);
+}
+
+/** Each posting is of new numbers in a lane of its own, so that all of it is judged and stored. */
+export async function run(): Promise<void> {
+  const served = await serve();
+  try {
+    await measurePostings(served);
+    await measurePages(served);
+  } finally {
+    await served.stop();
+  }
 }
