@@ -9,7 +9,7 @@ const PRAGMAS = `
   PRAGMA synchronous = FULL;
   PRAGMA foreign_keys = ON;
   PRAGMA trusted_schema = OFF;
-  PRAGMA cache_size = -32000;
+  PRAGMA cache_size = -8000;
 `;
 
 interface ConnectionManager {

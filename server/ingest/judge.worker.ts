@@ -1,4 +1,5 @@
 import { move, transferableSymbol, valueSymbol } from "piscina";
+import { collectGarbage } from "./collectGarbage.ts";
 import { judgeMotion } from "./judgeMotion.ts";
 import type { JudgedMotion, MotionTask } from "./judgeMotion.ts";
 import { judgePosting } from "./judgePosting.ts";
@@ -14,6 +15,8 @@ export type PostingOutcome = { readonly rejected: Rejection } | { readonly judge
 export function posting(task: Posting): PostingOutcome {
   try {
     const judged = judgePosting(task);
+    // When the answer is on its way: what was made on the way to it.
+    setImmediate(collectGarbage, judged.bytes);
     return handOver({ judged }, judged.tiles);
   } catch (error) {
     if (error instanceof RejectedPosting) return { rejected: error.rejection };

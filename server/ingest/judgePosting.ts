@@ -8,10 +8,11 @@ import type { WireNumber } from "../../shared/schemas/common.ts";
 import type { BlockNumbers, JudgedBlock, VerdictCounts } from "../../shared/numerics/types.ts";
 import { judgeBlock } from "../../shared/numerics/verdict/judgeBlock.ts";
 import { costsOf, detailsOf } from "./blockDetails.ts";
+import { collectGarbage } from "./collectGarbage.ts";
 import { Complaints } from "./complaints.ts";
 import { decodeBlock } from "./decodeBlock.ts";
 import { inflateBody } from "./inflateBody.ts";
-import { parseJson } from "./parseJson.ts";
+import { decodeText, parseText } from "./parseJson.ts";
 import { PLANE_KIND } from "./planes.ts";
 import type { PlaneTiles } from "./planes.ts";
 import { resolutionBins } from "./resolutionBins.ts";
@@ -103,11 +104,24 @@ export function judgePosting(posting: Posting): JudgedPosting {
   return { header, bodyHash, bytes, blocks: judged, tiles: tiles.pack() };
 }
 
+/** Body, text and document follow one another, each in a frame of its own, so that none is held by the next. */
 function takeDocument(posting: Posting): { document: SkeletonDocument; bodyHash: Uint8Array; bytes: number } {
+  const { parsed, bodyHash, bytes } = parseBody(posting);
+  collectGarbage(bytes);
+  return { document: readSkeleton(parsed, posting.limits), bodyHash, bytes };
+}
+
+function parseBody(posting: Posting): { parsed: unknown; bodyHash: Uint8Array; bytes: number } {
+  const { text, bodyHash, bytes } = takeText(posting);
+  collectGarbage(bytes);
+  return { parsed: parseText(text), bodyHash, bytes };
+}
+
+function takeText(posting: Posting): { text: string; bodyHash: Uint8Array; bytes: number } {
   const inflated = inflateBody(posting.body, posting.encoding, posting.limits.decodedBytes);
   posting.body = NOTHING;
   const bodyHash = createHash("sha256").update(inflated).digest();
-  return { document: readSkeleton(parseJson(inflated), posting.limits), bodyHash, bytes: inflated.byteLength };
+  return { text: decodeText(inflated), bodyHash, bytes: inflated.byteLength };
 }
 
 const NOTHING = new Uint8Array(0);

@@ -7,7 +7,11 @@ import { RejectedPosting } from "./rejection.ts";
  * @throws RejectedPosting with line and column, and a hint where NaN or Infinity was written bare.
  */
 export function parseJson(bytes: Uint8Array): unknown {
-  const text = decodeText(bytes);
+  return parseText(decodeText(bytes));
+}
+
+/** Parses JSON. @throws RejectedPosting as `parseJson`. */
+export function parseText(text: string): unknown {
   try {
     return JSON.parse(text) as unknown;
   } catch {
@@ -15,8 +19,12 @@ export function parseJson(bytes: Uint8Array): unknown {
   }
 }
 
-/** Documents are nearly always ASCII, which is read several times faster. A byte order mark is passed over. */
-function decodeText(bytes: Uint8Array): string {
+/**
+ * Text of UTF-8 bytes. Documents are nearly always ASCII, which is read several times faster. A byte order mark is
+ * passed over.
+ * @throws RejectedPosting
+ */
+export function decodeText(bytes: Uint8Array): string {
   const buffer = Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength);
   if (isAscii(buffer)) return buffer.toString("latin1");
   if (!isUtf8(buffer)) throw malformed("The body is not UTF-8.");

@@ -5,6 +5,7 @@ import type { Project } from "../../db/models/Project.ts";
 import type { Writer } from "../../db/write.ts";
 import { Conflict, Invalid, PayloadTooLarge } from "../../http/problem.ts";
 import type { RawContent } from "../../http/rawBody.ts";
+import { collectGarbage } from "../../ingest/collectGarbage.ts";
 import type { JudgedPosting } from "../../ingest/judgePosting.ts";
 import { RecordConflict } from "../../record/conflict.ts";
 import { completeBuild, storePosting } from "../../record/storePosting.ts";
@@ -48,6 +49,9 @@ export async function postBuild(
   } catch (error) {
     if (error instanceof RolledBack) return error.posted;
     throw error instanceof RecordConflict ? problemOf(error) : error;
+  } finally {
+    // When the answer is on its way: the tiles that came from the worker.
+    setImmediate(collectGarbage, judged.bytes);
   }
 }
 
