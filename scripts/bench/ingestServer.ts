@@ -1,10 +1,8 @@
-import { spawn, spawnSync } from "node:child_process";
-import { once } from "node:events";
+import { spawnSync } from "node:child_process";
 import { mkdtemp, readFile, rm } from "node:fs/promises";
-import { createServer } from "node:net";
-import type { AddressInfo } from "node:net";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
+import { startBuiltServer } from "../../tests/support/builtServer.ts";
 
 const root = new URL("../../", import.meta.url).pathname;
 const ADMINISTRATOR = { email: "bench@example.org", password: "only for this measurement" };
@@ -23,48 +21,24 @@ export async function serve(): Promise<Served> {
   const built = spawnSync(process.execPath, [join(root, "scripts", "build.mjs"), "--if-needed"], { stdio: "inherit" });
   if (built.status !== 0) throw new Error("the server could not be built");
   const folder = await mkdtemp(join(tmpdir(), "clinograph-bench-"));
-  const port = await freePort();
-  const url = `http://127.0.0.1:${port}`;
-  const child = spawn(process.execPath, [join(root, "dist", "server", "index.js")], {
-    cwd: folder,
-    stdio: ["ignore", "ignore", "inherit"],
-    env: {
-      ...process.env,
-      NODE_ENV: "production",
-      PORT: String(port),
-      CLINOGRAPH_DATA: folder,
+  const server = await startBuiltServer(folder, {
+    environment: {
       CLINOGRAPH_ADMIN_EMAIL: ADMINISTRATOR.email,
       CLINOGRAPH_ADMIN_PASSWORD: ADMINISTRATOR.password,
-      CLINOGRAPH_REQUESTS_PER_MINUTE: "0",
-      LOG_LEVEL: "error",
     },
   });
-  while (!(await fetch(`${url}/readyz`).catch(() => null))?.ok) {
-    if (child.exitCode !== null) throw new Error(`the server ended with ${child.exitCode}`);
-    await new Promise((resolve) => setTimeout(resolve, 50));
-  }
   return {
-    url,
-    token: await makeToken(url),
+    url: server.url,
+    token: await makeToken(server.url),
     peakBytes: async () => {
-      const status = await readFile(`/proc/${child.pid}/status`, "utf8");
+      const status = await readFile(`/proc/${server.process.pid}/status`, "utf8");
       return Number(/VmHWM:\s+(\d+) kB/.exec(status)?.[1]) * 1024;
     },
     stop: async () => {
-      child.kill("SIGTERM");
-      await once(child, "exit");
+      await server.stop();
       await rm(folder, { recursive: true, force: true });
     },
   };
-}
-
-async function freePort(): Promise<number> {
-  const server = createServer().listen(0, "127.0.0.1");
-  await once(server, "listening");
-  const { port } = server.address() as AddressInfo;
-  server.close();
-  await once(server, "close");
-  return port;
 }
 
 async function makeToken(url: string): Promise<string> {
