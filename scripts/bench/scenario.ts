@@ -26,7 +26,9 @@ export function makeBuild(commit: number, shape: Shape, seed: number, lane = "de
 
 function makeBlock(at: number, { rows, columns }: Shape, seed: number): BuildDocument["blocks"][number] {
   const random = mulberry32(seed);
-  const derivative = Array.from({ length: rows }, () => Array.from({ length: columns }, () => 2 * random() - 1));
+  // Full mantissas, as computed numbers have: 32 random bits alone would compress.
+  const full = () => 2 * (random() + random() * 2 ** -32) - 1;
+  const derivative = Array.from({ length: rows }, () => Array.from({ length: columns }, full));
   const values = derivative.map((row) => row.map((value) => value * (1 + 1e-9 * random())));
   return {
     model: `bench.model${at}`,
