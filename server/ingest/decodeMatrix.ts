@@ -1,4 +1,5 @@
 import type { Complaints, Path } from "./complaints.ts";
+import { ExtractedMatrix } from "./extractMatrices.ts";
 import { decodeBase64Numbers } from "./decodeVector.ts";
 import { readNumber } from "./readNumber.ts";
 import type { NumberRule } from "./readNumber.ts";
@@ -27,6 +28,7 @@ export function decodeMatrix(
   path: Path,
   complaints: Complaints,
 ): DecodedMatrix {
+  if (posted instanceof ExtractedMatrix) return extracted(posted, shape, path, complaints);
   if (Array.isArray(posted)) return denseRows(posted, shape, rule, path, complaints);
   if (typeof posted === "object" && posted !== null) {
     const keys = Object.keys(posted).sort().join(" ");
@@ -46,6 +48,22 @@ export function decodeMatrix(
 function empty(shape: Shape): DecodedMatrix {
   return { values: new Float64Array(shape.rows * shape.columns), notFinite: 0 };
 }
+
+/** Rows that were read from the bytes already: only their number and length are left to be checked. */
+function extracted(posted: ExtractedMatrix, shape: Shape, path: Path, complaints: Complaints): DecodedMatrix {
+  if (posted.rows !== shape.rows) {
+    const fits = posted.rows === shape.columns && posted.columns === shape.rows;
+    complaints.add(path, `has ${posted.rows} rows, expected ${shape.rows}${fits ? TRANSPOSED : ""}`);
+    return empty(shape);
+  }
+  if (posted.columns !== shape.columns) {
+    complaints.add(path, `row 0 has ${posted.columns} numbers, expected ${shape.columns}`);
+    return empty(shape);
+  }
+  return { values: posted.values, notFinite: 0 };
+}
+
+const TRANSPOSED = " (its transpose would fit: rows are output elements, columns are input elements)";
 
 function denseRows(
   posted: readonly unknown[],
@@ -94,7 +112,7 @@ function denseRows(
 function swapped(posted: readonly unknown[], shape: Shape): string {
   const first = posted[0];
   const fits = posted.length === shape.columns && Array.isArray(first) && first.length === shape.rows;
-  return fits ? " (its transpose would fit: rows are output elements, columns are input elements)" : "";
+  return fits ? TRANSPOSED : "";
 }
 
 function checkBinary(values: Float64Array, rule: NumberRule, path: Path, complaints: Complaints): number {

@@ -7,11 +7,7 @@ import { RejectedPosting } from "./rejection.ts";
  * @throws RejectedPosting with line and column, and a hint where NaN or Infinity was written bare.
  */
 export function parseJson(bytes: Uint8Array): unknown {
-  return parseText(decodeText(bytes));
-}
-
-/** Parses JSON. @throws RejectedPosting as `parseJson`. */
-export function parseText(text: string): unknown {
+  const text = decodeText(bytes);
   try {
     return JSON.parse(text) as unknown;
   } catch {
@@ -24,7 +20,7 @@ export function parseText(text: string): unknown {
  * passed over.
  * @throws RejectedPosting
  */
-export function decodeText(bytes: Uint8Array): string {
+function decodeText(bytes: Uint8Array): string {
   const buffer = Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength);
   if (isAscii(buffer)) return buffer.toString("latin1");
   if (!isUtf8(buffer)) throw malformed("The body is not UTF-8.");
