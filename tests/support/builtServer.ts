@@ -11,6 +11,8 @@ const root = new URL("../../", import.meta.url).pathname;
 export interface BuiltServer {
   readonly url: string;
   readonly process: ChildProcess;
+  /** What it printed so far. */
+  output(): string;
   stop(): Promise<void>;
 }
 
@@ -25,7 +27,7 @@ export async function startBuiltServer(
   const url = `http://127.0.0.1:${port}`;
   const child = spawn(process.execPath, [built], {
     cwd: folder,
-    stdio: ["ignore", "ignore", "inherit"],
+    stdio: ["ignore", "pipe", "inherit"],
     env: {
       ...process.env,
       NODE_ENV: "production",
@@ -36,6 +38,10 @@ export async function startBuiltServer(
       ...options.environment,
     },
   });
+  let output = "";
+  child.stdout.on("data", (chunk: Buffer) => {
+    output += chunk.toString();
+  });
   while (!(await fetch(`${url}/readyz`).catch(() => null))?.ok) {
     if (child.exitCode !== null) throw new Error(`the server ended with ${child.exitCode}`);
     await new Promise((resolve) => setTimeout(resolve, 50));
@@ -43,6 +49,7 @@ export async function startBuiltServer(
   return {
     url,
     process: child,
+    output: () => output,
     stop: async () => {
       child.kill("SIGTERM");
       if (child.exitCode === null) await once(child, "exit");
