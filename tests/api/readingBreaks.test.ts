@@ -1,7 +1,9 @@
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { breakDetail, breakRow, comment } from "../../shared/schemas/break.ts";
 import type { BreakDetail } from "../../shared/schemas/break.ts";
+import { strip } from "../../shared/schemas/commit.ts";
 import { page } from "../../shared/schemas/common.ts";
+import { overview } from "../../shared/schemas/project.ts";
 import { wanted, wantedItem } from "../../shared/schemas/wanted.ts";
 import { AuditEntry } from "../../server/db/models/AuditEntry.ts";
 import { Waiver } from "../../server/db/models/Waiver.ts";
@@ -229,6 +231,20 @@ describe("a break that is waived", () => {
     expect((await detail(row?.id ?? "")).waiver).toMatchObject({ id: String(last.id), maxError: 10 });
     await server.context.db.write((w) => w.run("DELETE FROM waivers"));
     expect(await states()).toEqual(["open", "repaired"]);
+  });
+
+  it("is open nowhere: not in the overview, on the strip, in the list of projects or in what is wanted", async () => {
+    const open = async () => {
+      const overviewed = overview.parse((await read("/summary")).body).openBreaks.length;
+      const bracketed = strip.parse((await read("/strip")).body).brackets.length;
+      const halving = wanted.parse((await read("/wanted")).body).items.filter((one) => one.breakIds.length > 0).length;
+      const projects = (await developer.get("/api/v1/projects")).body as { items: { openBreaks: number }[] };
+      return [overviewed, bracketed, halving, projects.items[0]?.openBreaks];
+    };
+    expect(await open()).toEqual([1, 1, 1, 1]);
+    await waive({ model: "rotor.*" }, 10, soon());
+    expect(await open()).toEqual([0, 0, 0, 0]);
+    await server.context.db.write((w) => w.run("DELETE FROM waivers"));
   });
 });
 

@@ -8,6 +8,7 @@ import { loadCommitFacts } from "../../record/commitFacts.ts";
 import type { CommitFacts } from "../../record/commitFacts.ts";
 import { commitColumns } from "../../record/commitColumns.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
+import { loadUnwaived } from "../breaks/loadUnwaived.ts";
 import type { StoredTrace } from "../../trace/storedTrace.ts";
 
 /** Columns of one strip; what is older is reached by the lists. */
@@ -33,6 +34,7 @@ export async function loadStrip(
   projectId: number,
   lane: { readonly id: number | null; readonly name: string },
   rtol: number,
+  now: number,
 ): Promise<Strip> {
   const project = await loadGraph(reader, projectId);
   const shas = commitColumns(project).slice(-MOST_COLUMNS);
@@ -45,7 +47,7 @@ export async function loadStrip(
     columns: shas.map((sha) =>
       column(facts.get(sha) as CommitFacts, project.graph.parents(sha), project.mainline.has(sha), builds, names),
     ),
-    brackets: lane.id === null ? [] : await loadBrackets(reader, lane.id),
+    brackets: await loadBrackets(reader, projectId, lane.name, now),
   };
 }
 
@@ -108,12 +110,9 @@ export function finiteOrNull(error: number | "NaN" | "Infinity" | "-Infinity" | 
   return Number.isFinite(value) ? value : null;
 }
 
-async function loadBrackets(reader: Reader, laneId: number): Promise<Strip["brackets"]> {
-  const rows = await reader.select<{ id: number; onset: string; trace: string }>(
-    "SELECT id, onset, trace FROM breaks WHERE laneId = $1 AND state = 'open' AND withdrawnAt IS NULL ORDER BY number",
-    [laneId],
-  );
-  return rows.map(({ id, onset, trace }) => ({
+async function loadBrackets(reader: Reader, projectId: number, lane: string, now: number): Promise<Strip["brackets"]> {
+  const open = await loadUnwaived(reader, projectId, lane, now);
+  return open.reverse().map(({ id, onset, trace }) => ({
     breakId: String(id),
     onset,
     suspects: (JSON.parse(trace) as StoredTrace).suspects.map((suspect) => suspect.sha),

@@ -30,7 +30,7 @@ export const routes: Route[] = [
     handler: async ({ context, project, query }) => {
       const name = query.lane ?? DEFAULT_LANE;
       const id = await findLane(context.db, project.id, name);
-      return loadStrip(context.db, project.id, { id, name }, tolerancesOf(project).rtol);
+      return loadStrip(context.db, project.id, { id, name }, tolerancesOf(project).rtol, Date.now());
     },
   }),
   defineRoute({

@@ -11,10 +11,14 @@ export interface BreakAt {
   readonly models: readonly string[];
 }
 
-/** What the breaks of a lane are, seen from one commit: begun there, ended there, or open in its history. */
+/**
+ * What the breaks of a lane are, seen from one commit: begun there, ended there, or open in its history. What waivers
+ * cover as a whole is accepted, not open.
+ */
 export function breaksAt(
   { graph }: ProjectGraph,
   breaks: readonly LoadedBreak[],
+  waived: { has(id: number): boolean },
   commit: string | null,
 ): { readonly open: BreakAt[]; readonly fresh: BreakAt[]; readonly repaired: BreakAt[] } {
   const known = commit !== null && graph.has(commit);
@@ -22,7 +26,7 @@ export function breaksAt(
   const seen = breaks.filter((found) => history.has(found.onset));
   const isOpen = (found: LoadedBreak) => found.repairedBy === null || !history.has(found.repairedBy);
   return {
-    open: seen.filter(isOpen).map(at),
+    open: seen.filter((found) => isOpen(found) && !waived.has(found.id)).map(at),
     fresh: seen.filter((found) => found.onset === commit).map(at),
     repaired: seen.filter((found) => found.repairedBy === commit).map(at),
   };

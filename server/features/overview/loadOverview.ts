@@ -13,6 +13,7 @@ import type { ProjectGraph } from "../../record/commitGraph.ts";
 import { loadLaneBuilds } from "../../record/laneBuilds.ts";
 import type { LaneBuild } from "../../record/laneBuilds.ts";
 import { loadBreaks } from "../breaks/loadBreaks.ts";
+import { loadActiveWaivers, loadWaived } from "../breaks/waived.ts";
 import { modelRows } from "./modelRows.ts";
 import { breaksAt } from "./breaksAt.ts";
 import { overviewSentence } from "./sentence.ts";
@@ -40,7 +41,9 @@ export async function loadOverview(reader: Reader, wanted: OverviewWanted, now: 
   const baselineId = build?.baselineBuildId ?? null;
   const baselineBlocks = baselineId === null ? [] : await loadBlockRows(reader, projectId, baselineId);
   const counts = build ? await loadCounts(reader, build.id) : null;
-  const breaks = breaksAt(project, await loadBreaks(reader, projectId, { lane, state: null }), commit);
+  const ofLane = await loadBreaks(reader, projectId, { lane, state: null });
+  const waived = await loadWaived(reader, ofLane, await loadActiveWaivers(reader, projectId, now));
+  const breaks = breaksAt(project, ofLane, waived, commit);
   const vanishedBlocks = vanished(blocks, baselineBlocks);
   return {
     lane,

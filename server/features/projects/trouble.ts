@@ -4,6 +4,7 @@ import type { Reader } from "../../db/reader.ts";
 import { timeOrNull } from "../../http/present.ts";
 import { worstVerdict } from "../../record/buildSummary.ts";
 import type { BuildSummary } from "../../record/buildSummary.ts";
+import { loadUnwaived } from "../breaks/loadUnwaived.ts";
 import { finiteOrNull } from "../history/loadStrip.ts";
 import { loadSilentLanes } from "../overview/silentLanes.ts";
 
@@ -18,23 +19,17 @@ export async function troubleOf(
   now = Date.now(),
 ): Promise<ReadonlyMap<number, Trouble>> {
   const ids = JSON.stringify(projectIds);
-  const open = await db.select<{ projectId: number; n: number }>(
-    `SELECT projectId, count(*) AS n FROM breaks WHERE state = 'open' AND withdrawnAt IS NULL
-     AND projectId IN (SELECT value FROM json_each($1)) GROUP BY projectId`,
-    [ids],
-  );
   const last = await db.select<{ projectId: number; at: number }>(
     `SELECT projectId, max(createdAt) AS at FROM builds
      WHERE projectId IN (SELECT value FROM json_each($1)) GROUP BY projectId`,
     [ids],
   );
   const silent = await loadSilentLanes(db, projectIds, now);
-  const openOf = new Map(open.map(({ projectId, n }) => [projectId, n]));
   const lastOf = new Map(last.map(({ projectId, at }) => [projectId, at]));
   const troubles = new Map<number, Trouble>();
   for (const id of projectIds) {
     troubles.set(id, {
-      openBreaks: openOf.get(id) ?? 0,
+      openBreaks: (await loadUnwaived(db, id, null, now)).length,
       silentLanes: silent.filter((lane) => lane.projectId === id).map(({ lane }) => lane),
       lastBuildAt: timeOrNull(lastOf.get(id) ?? null),
       trace: await loadTrace(db, id),

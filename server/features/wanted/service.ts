@@ -8,6 +8,7 @@ import { Conflict, NotFound } from "../../http/problem.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
 import { findLane } from "../../record/laneBuilds.ts";
 import type { StoredTrace } from "../../trace/storedTrace.ts";
+import { loadUnwaived } from "../breaks/loadUnwaived.ts";
 import { audit } from "../audit/audit.ts";
 import { loadSilentLanes } from "../overview/silentLanes.ts";
 
@@ -20,7 +21,7 @@ type Item = Wanted["items"][number];
 export async function loadWanted(reader: Reader, project: Project, lane: string | null, now: number): Promise<Item[]> {
   return merged([
     ...(await loadRequested(reader, project.id, lane)),
-    ...(await loadNextTests(reader, project.id, lane)),
+    ...(await loadNextTests(reader, project.id, lane, now)),
     ...(await loadSilent(reader, project.id, lane, now)),
   ]);
 }
@@ -59,13 +60,8 @@ async function loadRequested(reader: Reader, projectId: number, lane: string | n
   }));
 }
 
-async function loadNextTests(reader: Reader, projectId: number, lane: string | null): Promise<Item[]> {
-  const rows = await reader.select<{ id: number; lane: string; trace: string }>(
-    `SELECT b.id, l.name AS lane, b.trace FROM breaks b JOIN lanes l ON l.id = b.laneId
-     WHERE b.projectId = $1 AND b.state = 'open' AND b.withdrawnAt IS NULL AND ($2 IS NULL OR l.name = $2)
-     ORDER BY b.number`,
-    [projectId, lane],
-  );
+async function loadNextTests(reader: Reader, projectId: number, lane: string | null, now: number): Promise<Item[]> {
+  const rows = (await loadUnwaived(reader, projectId, lane, now)).reverse();
   const items = new Map<string, Item>();
   for (const { id, lane: name, trace } of rows) {
     const { nextTest } = JSON.parse(trace) as StoredTrace;
