@@ -1,6 +1,7 @@
 import { createHash } from "node:crypto";
 import type { Limits } from "../../shared/domain/limits.ts";
-import type { Tolerances } from "../../shared/domain/tolerances.ts";
+import { tolerancesFor } from "../../shared/domain/tolerances.ts";
+import type { ToleranceRule, Tolerances } from "../../shared/domain/tolerances.ts";
 import { VERDICTS } from "../../shared/domain/vocabulary.ts";
 import type { Verdict } from "../../shared/domain/vocabulary.ts";
 import { toWire } from "../../shared/schemas/common.ts";
@@ -28,6 +29,8 @@ export interface Posting {
   readonly encoding: "identity" | "gzip";
   readonly limits: Limits;
   readonly tolerances: Tolerances;
+  /** Other tolerances for some blocks. */
+  readonly rules?: readonly ToleranceRule[];
 }
 
 /** A posting, decoded, checked and judged, ready to be stored. */
@@ -95,7 +98,8 @@ export function judgePosting(posting: Posting): JudgedPosting {
     names.set(nameKey(block), at);
     const numbers = decodeBlock(block, path, complaints);
     block.derivative.values = null;
-    if (!complaints.any) judged.push(judgeAndCut(block, numbers, posting.tolerances, tiles));
+    if (!complaints.any)
+      judged.push(judgeAndCut(block, numbers, tolerancesOfBlock(posting, block, document.lane), tiles));
     block.references = [];
   });
   if (complaints.any) throw invalid(complaints);
@@ -167,6 +171,11 @@ function restoreIn(owner: unknown, restore: (value: unknown) => unknown): void {
 }
 
 const NOTHING = new Uint8Array(0);
+
+function tolerancesOfBlock({ tolerances, rules }: Posting, block: SkeletonBlock, lane: string): Tolerances {
+  const { model, point, output, input } = block;
+  return tolerancesFor(tolerances, rules ?? [], { model, point, output: output.name, input: input.name }, lane);
+}
 
 function nameKey(block: SkeletonBlock): string {
   return JSON.stringify([block.model, block.point, block.output.name, block.input.name]);

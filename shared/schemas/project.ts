@@ -2,6 +2,7 @@ import { z } from "zod";
 import { GATE_CODES, GATE_SEVERITIES, VERDICTS } from "../domain/vocabulary.ts";
 import { ROLES } from "../domain/roles.ts";
 import { summaryCounts } from "./build.ts";
+import { blockSelector } from "./waiver.ts";
 import { id, laneName, sha, slug, timestamp } from "./common.ts";
 
 const commitUrlTemplate = z
@@ -13,6 +14,15 @@ const tolerances = {
   floorRel: z.number().min(0).max(1),
   floorAbs: z.number().min(0),
 };
+
+const toleranceRule = z
+  .strictObject({
+    selector: blockSelector,
+    rtol: tolerances.rtol.optional(),
+    floorRel: tolerances.floorRel.optional(),
+    floorAbs: tolerances.floorAbs.optional(),
+  })
+  .meta({ id: "ToleranceRule", description: "Other tolerances for some blocks; later rules go over earlier ones." });
 
 export const createProject = z
   .strictObject({
@@ -29,6 +39,8 @@ export const patchProject = z
     commitUrl: commitUrlTemplate.nullable().optional(),
     policy: z.partialRecord(z.enum(GATE_CODES), z.enum(GATE_SEVERITIES)).optional(),
     tolerances: z.strictObject(tolerances).partial().optional(),
+    /** All rules: the list replaces the one before. They hold for builds posted from then on. */
+    toleranceRules: z.array(toleranceRule).max(500).optional(),
   })
   .meta({ id: "PatchProject" });
 
@@ -41,6 +53,7 @@ export const project = z
     commitUrl: z.string().nullable(),
     policy: z.record(z.enum(GATE_CODES), z.enum(GATE_SEVERITIES)),
     tolerances: z.object(tolerances),
+    toleranceRules: z.array(toleranceRule),
     lanes: z.array(laneName),
     /** The caller's role; null for an administrator who is no member, and for tokens. */
     role: z.enum(ROLES).nullable(),

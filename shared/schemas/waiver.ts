@@ -4,17 +4,28 @@ import { id, laneName, timestamp } from "./common.ts";
 
 const glob = z.string().trim().min(1).max(200);
 const indices = z.array(z.number().int().min(0)).min(1).max(10_000);
+const blockFields = {
+  model: glob.optional(),
+  output: glob.optional(),
+  input: glob.optional(),
+  point: glob.optional(),
+  lane: laneName.optional(),
+};
+const namesSomething = (s: object) => Object.values(s).some((v) => v !== undefined);
+
+/** Names whole blocks. */
+export const blockSelector = z
+  .strictObject(blockFields)
+  .refine(namesSomething, { message: "must name at least one field" })
+  .meta({ id: "BlockSelector", description: "Names blocks by glob (* and ?); a missing field matches all." });
+
 export const selector = z
   .strictObject({
-    model: glob.optional(),
-    output: glob.optional(),
-    input: glob.optional(),
-    point: glob.optional(),
-    lane: laneName.optional(),
+    ...blockFields,
     rows: indices.optional(),
     columns: indices.optional(),
   })
-  .refine((s) => Object.values(s).some((v) => v !== undefined), { message: "must name at least one field" })
+  .refine(namesSomething, { message: "must name at least one field" })
   .meta({ id: "Selector", description: "Names blocks by glob (* and ?); a missing field matches all." });
 
 export const createWaiver = z

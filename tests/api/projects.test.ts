@@ -33,6 +33,7 @@ describe("projects", () => {
       role: null,
       policy: DEFAULT_GATE_POLICY,
       tolerances: DEFAULT_TOLERANCES,
+      toleranceRules: [],
     });
     const again = await admin.post(api("/projects")).send({ slug: "rotor", name: "Rotor" });
     expect(again.status).toBe(409);

@@ -21,6 +21,7 @@ CREATE TABLE projects (
   commitUrl TEXT,
   policy TEXT NOT NULL DEFAULT '{}',
   tolerances TEXT NOT NULL DEFAULT '{}',
+  toleranceRules TEXT NOT NULL DEFAULT '[]',
   createdAt INTEGER NOT NULL
 );
 CREATE TABLE memberships (

@@ -14,6 +14,8 @@ export class Project extends Model<InferAttributes<Project>, InferCreationAttrib
   declare policy: CreationOptional<string>;
   /** JSON: Partial<Tolerances>, over the defaults. */
   declare tolerances: CreationOptional<string>;
+  /** JSON: ToleranceRule[], for some of the blocks. */
+  declare toleranceRules: CreationOptional<string>;
   declare createdAt: number;
 
   static initialise(sequelize: Sequelize): void {
@@ -26,6 +28,7 @@ export class Project extends Model<InferAttributes<Project>, InferCreationAttrib
         commitUrl: { type: DataTypes.STRING, allowNull: true },
         policy: { type: DataTypes.TEXT, allowNull: false, defaultValue: "{}" },
         tolerances: { type: DataTypes.TEXT, allowNull: false, defaultValue: "{}" },
+        toleranceRules: { type: DataTypes.TEXT, allowNull: false, defaultValue: "[]" },
         createdAt: { type: DataTypes.INTEGER, allowNull: false },
       },
       { sequelize, tableName: "projects", timestamps: false },

@@ -10,7 +10,7 @@ import type { JudgedPosting } from "../../ingest/judgePosting.ts";
 import { RecordConflict } from "../../record/conflict.ts";
 import { completeBuild, storePosting } from "../../record/storePosting.ts";
 import { settleProject } from "../../trace/settleProject.ts";
-import { tolerancesOf } from "../projects/settings.ts";
+import { toleranceRulesOf, tolerancesOf } from "../projects/settings.ts";
 import { composeAnswer } from "./answer.ts";
 
 /** `kept`: a dry run keeps nothing; `respond-async`: stored at once, judged against the lane afterwards (RFC 7240). */
@@ -42,8 +42,13 @@ export async function postBuild(
   mode: PostingMode,
 ): Promise<Posted> {
   const { limits } = context.config;
-  const tolerances = tolerancesOf(project);
-  const judged = await context.judge.posting({ body: body.bytes, encoding: body.encoding, limits, tolerances });
+  const judged = await context.judge.posting({
+    body: body.bytes,
+    encoding: body.encoding,
+    limits,
+    tolerances: tolerancesOf(project),
+    rules: toleranceRulesOf(project),
+  });
   try {
     return await context.db.write((w) => record(w, context, project, judged, mode));
   } catch (error) {

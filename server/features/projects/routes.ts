@@ -68,7 +68,8 @@ export const routes = [
     method: "patch",
     path: "/projects/:project",
     summary: "Change a project's settings",
-    description: "Policy and tolerances are laid over what was set before.",
+    description:
+      "Policy and tolerances are laid over what was set before; the list of tolerance rules replaces the one before.",
     tag: "Projects",
     auth: "person",
     can: "project.edit",

@@ -1,5 +1,5 @@
 import { DEFAULT_TOLERANCES } from "../../../shared/domain/tolerances.ts";
-import type { Tolerances } from "../../../shared/domain/tolerances.ts";
+import type { ToleranceRule, Tolerances } from "../../../shared/domain/tolerances.ts";
 import { DEFAULT_GATE_POLICY } from "../../../shared/domain/vocabulary.ts";
 import type { GatePolicy } from "../../../shared/domain/vocabulary.ts";
 import type { Project } from "../../db/models/Project.ts";
@@ -11,4 +11,8 @@ export function policyOf(project: Pick<Project, "policy">): GatePolicy {
 
 export function tolerancesOf(project: Pick<Project, "tolerances">): Tolerances {
   return { ...DEFAULT_TOLERANCES, ...(JSON.parse(project.tolerances) as Partial<Tolerances>) };
+}
+
+export function toleranceRulesOf(project: Pick<Project, "toleranceRules">): ToleranceRule[] {
+  return JSON.parse(project.toleranceRules) as ToleranceRule[];
 }
