@@ -51,6 +51,6 @@ it("leads from the printed link, for once, to a first project that says how to p
   await context.clearCookies();
   await page.goto(link);
   await fillIn(page);
-  await page.getByRole("alert").waitFor();
+  await page.getByText(/This link is not valid/).waitFor();
   await context.close();
 });
