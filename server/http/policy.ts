@@ -29,7 +29,6 @@ export const scope =
     actor.kind === "token" && actor.projectId === projectId && actor.scopes.includes(needed);
 
 export const administrator: Rule = (actor) => actor.kind === "person" && actor.admin;
-export const anyPerson: Rule = (actor) => actor.kind === "person";
 export const anyCaller: Rule = (actor) => actor.kind !== "anyone";
 
 export const either =

@@ -14,11 +14,7 @@ export function assemble(name: PlaneName, tiles: readonly StoredTile[], length: 
   const bytes = new Uint8Array(length * width);
   let at = 0;
   for (const tile of tiles) {
-    const part = decodeTile(
-      tile.encoding,
-      Buffer.from(tile.data.buffer, tile.data.byteOffset, tile.data.length),
-      width,
-    );
+    const part = decodeTile(tile.encoding, tile.data, width);
     bytes.set(part, at);
     at += part.length;
   }

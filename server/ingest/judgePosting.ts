@@ -1,10 +1,12 @@
 import { createHash } from "node:crypto";
 import type { Limits } from "../../shared/domain/limits.ts";
+import { blockKey } from "../../shared/domain/selector.ts";
+import type { BlockName } from "../../shared/domain/selector.ts";
 import { tolerancesFor } from "../../shared/domain/tolerances.ts";
 import type { ToleranceRule, Tolerances } from "../../shared/domain/tolerances.ts";
 import { VERDICTS } from "../../shared/domain/vocabulary.ts";
 import type { Verdict } from "../../shared/domain/vocabulary.ts";
-import { toWire } from "../../shared/schemas/common.ts";
+import { toWire, toWireOrNull } from "../../shared/schemas/common.ts";
 import type { WireNumber } from "../../shared/schemas/common.ts";
 import type { BlockNumbers, JudgedBlock, VerdictCounts } from "../../shared/numerics/types.ts";
 import { judgeBlock } from "../../shared/numerics/verdict/judgeBlock.ts";
@@ -43,11 +45,7 @@ export interface JudgedPosting {
   readonly tiles: PackedTiles;
 }
 
-export interface JudgedPostedBlock {
-  readonly model: string;
-  readonly point: string;
-  readonly output: string;
-  readonly input: string;
+export interface JudgedPostedBlock extends BlockName {
   readonly snapshot: PostedSnapshot;
   /** JSON of BlockDetails, and its SHA-256. */
   readonly details: string;
@@ -93,13 +91,16 @@ export function judgePosting(posting: Posting): JudgedPosting {
   const judged: JudgedPostedBlock[] = [];
   document.blocks.forEach((block, at) => {
     const path = ["blocks", at];
-    const twin = names.get(nameKey(block));
+    const name = nameOf(block);
+    const twin = names.get(blockKey(name));
     if (twin !== undefined) complaints.add(path, `is the same block as number ${twin} of this document`);
-    names.set(nameKey(block), at);
+    names.set(blockKey(name), at);
     const numbers = decodeBlock(block, path, complaints);
     block.derivative.values = null;
-    if (!complaints.any)
-      judged.push(judgeAndCut(block, numbers, tolerancesOfBlock(posting, block, document.lane), tiles));
+    if (!complaints.any) {
+      const tolerances = tolerancesFor(posting.tolerances, posting.rules ?? [], name, document.lane);
+      judged.push({ ...name, ...judgeAndCut(block, numbers, tolerances, tiles) });
+    }
     block.references = [];
   });
   if (complaints.any) throw invalid(complaints);
@@ -172,13 +173,8 @@ function restoreIn(owner: unknown, restore: (value: unknown) => unknown): void {
 
 const NOTHING = new Uint8Array(0);
 
-function tolerancesOfBlock({ tolerances, rules }: Posting, block: SkeletonBlock, lane: string): Tolerances {
-  const { model, point, output, input } = block;
-  return tolerancesFor(tolerances, rules ?? [], { model, point, output: output.name, input: input.name }, lane);
-}
-
-function nameKey(block: SkeletonBlock): string {
-  return JSON.stringify([block.model, block.point, block.output.name, block.input.name]);
+function nameOf({ model, point, output, input }: SkeletonBlock): BlockName {
+  return { model, point, output: output.name, input: input.name };
 }
 
 function judgeAndCut(
@@ -186,16 +182,12 @@ function judgeAndCut(
   numbers: BlockNumbers,
   tolerances: Tolerances,
   tiles: TileSet,
-): JudgedPostedBlock {
+): Omit<JudgedPostedBlock, keyof BlockName> {
   const judged = judgeBlock(numbers, tolerances);
   const planes = cutPlanes(numbers, judged, tiles);
   const details = JSON.stringify(detailsOf(block, numbers, judged));
   const costs = costsOf(block);
   return {
-    model: block.model,
-    point: block.point,
-    output: block.output.name,
-    input: block.input.name,
     snapshot: {
       hash: snapshotHash(numbers, judged, planes, tiles),
       rows: numbers.rows,
@@ -250,14 +242,13 @@ function snapshotHash(
 function storedWorst(judged: JudgedBlock, columns: number): StoredWorst | null {
   const { worst } = judged;
   if (worst === null) return null;
-  const orNull = (value: number) => (Number.isNaN(value) ? null : toWire(value));
   return {
     row: worst.row,
     column: worst.column,
     verdict: VERDICTS[judged.verdict[worst.row * columns + worst.column]],
-    error: orNull(worst.error),
+    error: toWireOrNull(worst.error),
     derivative: toWire(worst.derivative),
-    reference: orNull(worst.reference),
-    uncertainty: orNull(worst.uncertainty),
+    reference: toWireOrNull(worst.reference),
+    uncertainty: toWireOrNull(worst.uncertainty),
   };
 }

@@ -1,4 +1,4 @@
-import { encodePlane } from "./tiles.ts";
+import { encodePlane, hashKey } from "./tiles.ts";
 import type { EncodedTile } from "./tiles.ts";
 import { PLANE_WIDTH } from "./planes.ts";
 import type { PlaneName, PlaneTiles } from "./planes.ts";
@@ -24,7 +24,7 @@ export class TileSet {
    */
   addPlane(name: PlaneName, values: ArrayBufferView, reference = 0, step = 0): PlaneTiles<number> {
     const bytes = new Uint8Array(values.buffer, values.byteOffset, values.byteLength);
-    const known = (hash: Buffer) => this.indexByHash.has(keyOf(hash));
+    const known = (hash: Buffer) => this.indexByHash.has(hashKey(hash));
     const tiles = encodePlane(bytes, PLANE_WIDTH[name], known).map((tile) => this.indexOf(tile));
     return { name, reference, step, tiles };
   }
@@ -34,7 +34,7 @@ export class TileSet {
   }
 
   private indexOf(tile: EncodedTile): number {
-    const key = keyOf(tile.hash);
+    const key = hashKey(tile.hash);
     const known = this.indexByHash.get(key);
     if (known !== undefined) return known;
     const index = this.hashes.push(tile.hash) - 1;
@@ -76,10 +76,6 @@ export class TileSet {
       chunks: this.chunks,
     };
   }
-}
-
-function keyOf(hash: Buffer): string {
-  return hash.toString("latin1");
 }
 
 export interface PackedTiles {

@@ -10,6 +10,11 @@ export const RAW = 0;
 const SHUFFLED_DEFLATED = 1;
 const CONSTANT = 2;
 
+/** A hash as a key of maps. */
+export function hashKey(hash: Uint8Array): string {
+  return asBuffer(hash).toString("latin1");
+}
+
 export interface EncodedTile {
   /** SHA-256 of the width and the plain bytes, so that it does not depend on the encoding. */
   readonly hash: Buffer;
@@ -67,17 +72,17 @@ function constant(part: Uint8Array, width: Width): Buffer {
 }
 
 /** Plain bytes of a stored tile. */
-export function decodeTile(encoding: number, data: Buffer, width: Width): Uint8Array {
+export function decodeTile(encoding: number, data: Uint8Array, width: Width): Uint8Array {
   if (encoding === RAW) return data;
   if (encoding === SHUFFLED_DEFLATED) return unshuffle(inflateRawSync(data), width);
   if (encoding !== CONSTANT) throw new RangeError(`encoding: ${encoding} is not known`);
-  const bytes = new Uint8Array(data.readUInt32LE(width) * width);
+  const bytes = new Uint8Array(asBuffer(data).readUInt32LE(width) * width);
   for (let at = 0; at < bytes.length; at++) bytes[at] = data[at % width];
   return bytes;
 }
 
 /** The bytes of one number of a stored tile, without putting the whole tile in order. */
-export function oneOfTile(encoding: number, data: Buffer, width: Width, index: number): Uint8Array {
+export function oneOfTile(encoding: number, data: Uint8Array, width: Width, index: number): Uint8Array {
   if (encoding === CONSTANT) return data.subarray(0, width);
   if (encoding !== SHUFFLED_DEFLATED || width === 1) {
     return decodeTile(encoding, data, width).subarray(index * width, (index + 1) * width);

@@ -2,8 +2,7 @@ import { VERDICTS } from "../../shared/domain/vocabulary.ts";
 import type { Verdict } from "../../shared/domain/vocabulary.ts";
 import { absoluteUncertainty } from "../../shared/numerics/uncertainty/absoluteUncertainty.ts";
 import { relativeError } from "../../shared/numerics/verdict/relativeError.ts";
-import { toWire } from "../../shared/schemas/common.ts";
-import type { WireNumber } from "../../shared/schemas/common.ts";
+import { toWire, toWireOrNull } from "../../shared/schemas/common.ts";
 import type { SparsePlane } from "./readPlanes.ts";
 
 /** The planes that tell what an entry is. */
@@ -52,12 +51,11 @@ export function entryValuesAt(planes: EntryPlanes, entry: number, floor: number)
 
 /** As the API tells them: null where there is no such number. */
 export function presentEntryValues({ derivative, reference, uncertainty, error, verdict }: EntryValues) {
-  const orNull = (value: number): WireNumber | null => (Number.isNaN(value) ? null : toWire(value));
   return {
     derivative: toWire(derivative),
-    reference: orNull(reference),
-    uncertainty: orNull(uncertainty),
-    error: orNull(error),
+    reference: toWireOrNull(reference),
+    uncertainty: toWireOrNull(uncertainty),
+    error: toWireOrNull(error),
     verdict,
   };
 }

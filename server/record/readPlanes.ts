@@ -101,8 +101,7 @@ export class SparsePlane {
     if (known) return known;
     const tile = this.tiles.get(this.ids[index]);
     if (!tile) throw new RangeError(`tile ${index} of plane ${this.name} was not loaded`);
-    const data = Buffer.from(tile.data.buffer, tile.data.byteOffset, tile.data.length);
-    const bytes = decodeTile(tile.encoding, data, PLANE_WIDTH[this.name]);
+    const bytes = decodeTile(tile.encoding, tile.data, PLANE_WIDTH[this.name]);
     const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
     this.decoded.set(index, view);
     return view;

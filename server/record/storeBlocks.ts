@@ -1,9 +1,12 @@
+import { blockKey } from "../../shared/domain/selector.ts";
+import type { BlockName } from "../../shared/domain/selector.ts";
 import type { Bindable, Writer } from "../db/write.ts";
 import type { JudgedPostedBlock } from "../ingest/judgePosting.ts";
 import { packPlanes } from "../ingest/planes.ts";
+import { hashKey } from "../ingest/tiles.ts";
 import type { PackedTiles } from "../ingest/tileSet.ts";
 import { RecordConflict } from "./conflict.ts";
-import { idsByHash, keyOf, storeTiles } from "./storeTiles.ts";
+import { idsByHash, storeTiles } from "./storeTiles.ts";
 
 /**
  * Stores the judged blocks of a posting under its build: what the record holds already (tiles, snapshots, details) is
@@ -27,8 +30,8 @@ export async function storeBlocks(
     blocks.map((block, at): Bindable[] => [
       buildId,
       blockIds[at],
-      snapshotIds.get(keyOf(block.snapshot.hash)) as number,
-      detailsIds.get(keyOf(block.detailsHash)) as number,
+      snapshotIds.get(hashKey(block.snapshot.hash)) as number,
+      detailsIds.get(hashKey(block.detailsHash)) as number,
       block.costs,
     ]),
     500,
@@ -37,7 +40,7 @@ export async function storeBlocks(
 
 async function ensureBlocks(w: Writer, projectId: number, blocks: readonly JudgedPostedBlock[]): Promise<number[]> {
   const known = await loadBlockIds(w, projectId, blocks);
-  const fresh = blocks.filter((block) => !known.has(nameKey(block)));
+  const fresh = blocks.filter((block) => !known.has(blockKey(block)));
   await w.insertOrIgnore(
     "blocks",
     ["projectId", "model", "point", "output", "input"],
@@ -45,23 +48,17 @@ async function ensureBlocks(w: Writer, projectId: number, blocks: readonly Judge
     500,
   );
   const added = fresh.length === 0 ? known : await loadBlockIds(w, projectId, fresh);
-  return blocks.map((block) => (known.get(nameKey(block)) ?? added.get(nameKey(block))) as number);
-}
-
-type BlockNames = Pick<JudgedPostedBlock, "model" | "point" | "output" | "input">;
-
-function nameKey({ model, point, output, input }: BlockNames): string {
-  return JSON.stringify([model, point, output, input]);
+  return blocks.map((block) => (known.get(blockKey(block)) ?? added.get(blockKey(block))) as number);
 }
 
 /** Ids by name of all blocks of the models that the given ones are of. */
-async function loadBlockIds(w: Writer, projectId: number, blocks: readonly BlockNames[]): Promise<Map<string, number>> {
-  const rows = await w.select<BlockNames & { id: number }>(
+async function loadBlockIds(w: Writer, projectId: number, blocks: readonly BlockName[]): Promise<Map<string, number>> {
+  const rows = await w.select<BlockName & { id: number }>(
     `SELECT id, model, point, output, input FROM blocks
      WHERE projectId = $1 AND model IN (SELECT value FROM json_each($2))`,
     [projectId, JSON.stringify([...new Set(blocks.map((block) => block.model))])],
   );
-  return new Map(rows.map((row) => [nameKey(row), row.id]));
+  return new Map(rows.map((row) => [blockKey(row), row.id]));
 }
 
 async function refuseTwins(
@@ -88,7 +85,7 @@ async function storeSnapshots(
 ): Promise<Map<string, number>> {
   const hashes = blocks.map((block) => block.snapshot.hash);
   const known = await idsByHash(w, "snapshots", hashes);
-  const fresh = blocks.map((block) => block.snapshot).filter((snapshot) => !known.has(keyOf(snapshot.hash)));
+  const fresh = blocks.map((block) => block.snapshot).filter((snapshot) => !known.has(hashKey(snapshot.hash)));
   if (fresh.length === 0) return known;
   const tileIds = await storeTiles(w, packed);
   await w.insertOrIgnore(
@@ -114,7 +111,7 @@ const COUNTS = ["agrees", "disagrees", "unresolved", "unreferenced", "invalid"] 
 async function storeDetails(w: Writer, blocks: readonly JudgedPostedBlock[]): Promise<Map<string, number>> {
   const hashes = blocks.map((block) => block.detailsHash);
   const known = await idsByHash(w, "block_details", hashes);
-  const fresh = blocks.filter((block) => !known.has(keyOf(block.detailsHash)));
+  const fresh = blocks.filter((block) => !known.has(hashKey(block.detailsHash)));
   await w.insertOrIgnore(
     "block_details",
     ["hash", "details"],

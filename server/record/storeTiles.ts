@@ -1,4 +1,5 @@
 import type { Writer } from "../db/write.ts";
+import { hashKey } from "../ingest/tiles.ts";
 import { unpackTiles } from "../ingest/tileSet.ts";
 import type { PackedTiles } from "../ingest/tileSet.ts";
 
@@ -11,7 +12,7 @@ export async function storeTiles(w: Writer, packed: PackedTiles): Promise<Uint32
   const tiles = unpackTiles(packed);
   const hashes = tiles.map((tile) => tile.hash);
   const known = await idsByHash(w, "tiles", hashes);
-  const fresh = tiles.filter((tile) => !known.has(keyOf(tile.hash)));
+  const fresh = tiles.filter((tile) => !known.has(hashKey(tile.hash)));
   await w.insertOrIgnore(
     "tiles",
     ["hash", "encoding", "data"],
@@ -23,10 +24,10 @@ export async function storeTiles(w: Writer, packed: PackedTiles): Promise<Uint32
     "tiles",
     fresh.map((tile) => tile.hash),
   );
-  return Uint32Array.from(hashes, (hash) => (known.get(keyOf(hash)) ?? added.get(keyOf(hash))) as number);
+  return Uint32Array.from(hashes, (hash) => (known.get(hashKey(hash)) ?? added.get(hashKey(hash))) as number);
 }
 
-/** Ids of the rows of a content-addressed table whose hash is one of those given, by `keyOf` the hash. */
+/** Ids of the rows of a content-addressed table whose hash is one of those given, by `hashKey`. */
 export async function idsByHash(
   w: Writer,
   table: "tiles" | "snapshots" | "motions" | "block_details",
@@ -39,13 +40,9 @@ export async function idsByHash(
       `SELECT id, hash FROM ${table} WHERE hash IN (${part.map((_, at) => `$${at + 1}`).join(", ")})`,
       part.map((hash) => Buffer.from(hash)),
     );
-    for (const { id, hash } of rows) ids.set(keyOf(hash), id);
+    for (const { id, hash } of rows) ids.set(hashKey(hash), id);
   }
   return ids;
 }
 
 const HASHES_PER_QUERY = 500;
-
-export function keyOf(hash: Uint8Array): string {
-  return Buffer.from(hash.buffer, hash.byteOffset, hash.byteLength).toString("latin1");
-}

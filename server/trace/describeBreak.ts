@@ -1,11 +1,10 @@
-import { MOTIONS, VERDICTS } from "../../shared/domain/vocabulary.ts";
+import { MOTIONS } from "../../shared/domain/vocabulary.ts";
 import type { Motion } from "../../shared/domain/vocabulary.ts";
-import { absoluteUncertainty } from "../../shared/numerics/uncertainty/absoluteUncertainty.ts";
 import { relativeError } from "../../shared/numerics/verdict/relativeError.ts";
-import { toWire } from "../../shared/schemas/common.ts";
 import type { Reader } from "../db/reader.ts";
 import type { BlockDetails } from "../ingest/blockDetails.ts";
 import { unpackPlanes } from "../ingest/planes.ts";
+import { ENTRY_PLANES, entryValuesAt, presentEntryValues } from "../record/entryValues.ts";
 import {
   loadSnapshots,
   loadSparsePlanes,
@@ -74,8 +73,7 @@ function magnitude(worst: StoredBreakWorst): number {
 }
 
 async function worstOf(reader: Reader, part: BreakPart, snapshot: SnapshotPlanes): Promise<StoredBreakWorst> {
-  const names = ["derivative", "reference", "resolution", "verdict"] as const;
-  const [planes] = await loadSparsePlanes(reader, [{ snapshot, entries: part.entries }], names);
+  const [planes] = await loadSparsePlanes(reader, [{ snapshot, entries: part.entries }], ENTRY_PLANES);
   let worst = part.entries[0];
   let largest = -1;
   for (const entry of part.entries) {
@@ -86,20 +84,11 @@ async function worstOf(reader: Reader, part: BreakPart, snapshot: SnapshotPlanes
       worst = entry;
     }
   }
-  const derivative = planes.derivative.at(worst);
-  const reference = planes.reference.at(worst);
-  const uncertainty = absoluteUncertainty(planes.resolution.at(worst), reference, snapshot.floor);
-  const error = relativeError(derivative, reference, snapshot.floor);
-  const orNull = (value: number) => (Number.isNaN(value) ? null : toWire(value));
   return {
     blockId: part.blockId,
     row: Math.floor(worst / part.columns),
     column: worst % part.columns,
-    verdict: VERDICTS[planes.verdict.at(worst)],
-    derivative: toWire(derivative),
-    reference: orNull(reference),
-    uncertainty: orNull(uncertainty),
-    error: orNull(error),
+    ...presentEntryValues(entryValuesAt(planes, worst, snapshot.floor)),
   };
 }
 

@@ -1,4 +1,4 @@
-import { VERDICT_CODE } from "../../shared/domain/vocabulary.ts";
+import { isBadVerdict } from "../../shared/domain/vocabulary.ts";
 import type { Reader } from "../db/reader.ts";
 import type { Writer } from "../db/write.ts";
 import { packEntries, unionEntries, unpackEntries } from "../record/entryList.ts";
@@ -60,7 +60,7 @@ export async function loadBadEntries(reader: Reader, snapshot: SnapshotPlanes): 
   const verdicts = new Uint8Array(plane);
   const bad: number[] = [];
   verdicts.forEach((code, entry) => {
-    if (code === VERDICT_CODE.disagrees || code === VERDICT_CODE.invalid) bad.push(entry);
+    if (isBadVerdict(code)) bad.push(entry);
   });
   return Uint32Array.from(bad);
 }

@@ -4,10 +4,11 @@ import type { StoredTile } from "../ingest/assemble.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
 import type { JudgedMotion, StoredSide } from "../ingest/judgeMotion.ts";
 import { packPlanes } from "../ingest/planes.ts";
+import { hashKey } from "../ingest/tiles.ts";
 import { TileSet, unpackTiles } from "../ingest/tileSet.ts";
 import { loadSnapshots, loadTiles, tilesOf } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
-import { idsByHash, keyOf, storeTiles } from "../record/storeTiles.ts";
+import { idsByHash, storeTiles } from "../record/storeTiles.ts";
 import type { Rebased } from "./baselines.ts";
 
 interface Pair {
@@ -104,7 +105,7 @@ async function storeMotion(w: Writer, motion: JudgedMotion): Promise<number> {
   const hash = createHash("sha256");
   for (const tile of motion.plane) hash.update(tileHashes[tile]);
   const digest = hash.digest();
-  const known = (await idsByHash(w, "motions", [digest])).get(keyOf(digest));
+  const known = (await idsByHash(w, "motions", [digest])).get(hashKey(digest));
   if (known !== undefined) return known;
   const tileIds = await storeTiles(w, motion.tiles);
   const plane = { name: "motion", reference: 0, step: 0, tiles: motion.plane.map((tile) => tileIds[tile]) } as const;
@@ -113,5 +114,5 @@ async function storeMotion(w: Writer, motion: JudgedMotion): Promise<number> {
     ["hash", "planes", "counts"],
     [[digest, packPlanes([plane]), JSON.stringify(motion.counts)]],
   );
-  return (await idsByHash(w, "motions", [digest])).get(keyOf(digest)) as number;
+  return (await idsByHash(w, "motions", [digest])).get(hashKey(digest)) as number;
 }

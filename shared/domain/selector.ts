@@ -27,6 +27,16 @@ export function globToRegExp(glob: string): RegExp {
   return new RegExp(`^${body}$`, "u");
 }
 
+/** True where the selector covers the entry, in a block that it selects. */
+export function selectsEntry({ rows, columns }: Selector, row: number, column: number): boolean {
+  return (rows?.includes(row) ?? true) && (columns?.includes(column) ?? true);
+}
+
+/** The same text for the same block, another for any other. */
+export function blockKey({ model, point, output, input }: BlockName): string {
+  return JSON.stringify([model, point, output, input]);
+}
+
 /** True where the selector's name fields and lane cover the block (rows and columns are not looked at). */
 export function selects(selector: Selector, block: BlockName, lane: string): boolean {
   const covers = (glob: string | undefined, name: string) => glob === undefined || globToRegExp(glob).test(name);

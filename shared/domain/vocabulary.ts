@@ -17,6 +17,11 @@ export const VERDICT_CODE = {
   invalid: 4,
 } as const satisfies Record<Verdict, number>;
 
+/** True for the codes of verdicts that break an entry. */
+export function isBadVerdict(code: number): boolean {
+  return code === VERDICT_CODE.disagrees || code === VERDICT_CODE.invalid;
+}
+
 /** Motion of an entry since the previous build of its lane; its index here is the byte in a motion plane. */
 export const MOTIONS = ["still", "together", "derivative-only", "model-only", "apart"] as const;
 export type Motion = (typeof MOTIONS)[number];
@@ -29,7 +34,6 @@ export const MOTION_CODE = {
 } as const satisfies Record<Motion, number>;
 
 export const DERIVATIVE_METHODS = ["analytic", "ad-forward", "ad-reverse", "mixed"] as const;
-export type DerivativeMethod = (typeof DERIVATIVE_METHODS)[number];
 
 export const REFERENCE_METHODS = [
   "forward-difference",
@@ -54,7 +58,6 @@ export const BUILD_STATES = ["receiving", "complete"] as const;
 export type BuildState = (typeof BUILD_STATES)[number];
 
 export const BREAK_STATES = ["open", "repaired", "waived"] as const;
-export type BreakState = (typeof BREAK_STATES)[number];
 
 export const GATE_DECISIONS = ["pass", "fail", "wait", "unknown"] as const;
 export type GateDecision = (typeof GATE_DECISIONS)[number];
@@ -114,7 +117,6 @@ export const SIGNATURES = [
 export type SignatureCode = (typeof SIGNATURES)[number];
 
 export const WANTED_REASONS = ["halves-suspects", "silent-lane", "requested"] as const;
-export type WantedReason = (typeof WANTED_REASONS)[number];
 
 export const WAIVER_STATES = ["asked", "approved", "rejected", "ended"] as const;
 export type WaiverState = (typeof WAIVER_STATES)[number];

@@ -1,4 +1,4 @@
-import { VERDICT_CODE } from "../domain/vocabulary.ts";
+import { isBadVerdict, VERDICT_CODE } from "../domain/vocabulary.ts";
 import type { EntryClass, Test } from "./types.ts";
 
 const UNTESTED = 0;
@@ -37,7 +37,7 @@ export function partitionEntries(planes: readonly Uint8Array[]): EntryClass[] {
 
 function answer(code: number): number {
   if (code === VERDICT_CODE.agrees) return GOOD;
-  return code === VERDICT_CODE.disagrees || code === VERDICT_CODE.invalid ? BAD : UNTESTED;
+  return isBadVerdict(code) ? BAD : UNTESTED;
 }
 
 /** Splits classes by one more plane and numbers them by first entry again; answers with the new count. */

@@ -1,6 +1,5 @@
 import { z } from "zod";
 import { PAGE_LIMIT } from "../domain/limits.ts";
-import { DEFAULT_LANE } from "../domain/vocabulary.ts";
 
 /** Opaque id. */
 export const id = z.string().min(1).max(64).meta({ id: "Id", description: "Opaque identifier." });
@@ -29,6 +28,10 @@ export function toWire(value: number): WireNumber {
   if (Number.isFinite(value)) return value;
   return Number.isNaN(value) ? "NaN" : value > 0 ? "Infinity" : "-Infinity";
 }
+/** The same where NaN stands for "there is none". */
+export function toWireOrNull(value: number): WireNumber | null {
+  return Number.isNaN(value) ? null : toWire(value);
+}
 /** Reads a wire number back. */
 export function fromWire(value: WireNumber): number {
   return typeof value === "number" ? value : Number(value);
@@ -45,7 +48,6 @@ export const pageQuery = {
   limit: queryInteger(1, PAGE_LIMIT.max).optional(),
   cursor: z.string().max(200).optional(),
 };
-export const laneQuery = { lane: laneName.default(DEFAULT_LANE).optional() };
 
 /** A page of a list. */
 export const page = <T extends z.ZodType>(item: T) => z.object({ items: z.array(item), next: z.string().nullable() });

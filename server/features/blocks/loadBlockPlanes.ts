@@ -1,6 +1,6 @@
 import { TILE_ENTRIES } from "../../../shared/domain/limits.ts";
 import { absoluteUncertainty } from "../../../shared/numerics/uncertainty/absoluteUncertainty.ts";
-import { relativeError } from "../../../shared/numerics/verdict/relativeError.ts";
+import { relativeErrors } from "../../../shared/numerics/verdict/relativeErrors.ts";
 import type { Reader } from "../../db/reader.ts";
 import { PLANE_WIDTH, unpackPlanes } from "../../ingest/planes.ts";
 import type { PlaneName } from "../../ingest/planes.ts";
@@ -45,7 +45,7 @@ export async function loadBlockPlanes(reader: Reader, wanted: PlanesWanted): Pro
     derivative,
     reference,
     uncertainty: Float64Array.from(resolution, (share, at) => absoluteUncertainty(share, reference[at], floor)),
-    error: Float64Array.from(derivative, (value, at) => relativeError(value, reference[at], floor)),
+    error: relativeErrors(derivative, reference, floor, new Float64Array(derivative.length)),
     verdict: new Uint8Array(await cut("verdict")),
     source: new Uint8Array(await cut("source")),
     motion: wanted.motionPlanes && new Uint8Array(await cut("motion", unpackPlanes(wanted.motionPlanes))),
@@ -113,7 +113,7 @@ async function loadWindow(
     ids.map((id) => {
       const tile = tiles.get(id);
       if (!tile) throw new RangeError(`tile ${id} of plane ${name} is not in the record`);
-      return decodeTile(tile.encoding, Buffer.from(tile.data), width);
+      return decodeTile(tile.encoding, tile.data, width);
     }),
   );
   for (let row = firstRow; row < lastRow; row += 1) {

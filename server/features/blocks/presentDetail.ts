@@ -1,6 +1,6 @@
 import { MOTIONS, VERDICTS } from "../../../shared/domain/vocabulary.ts";
 import type { BlockDetail } from "../../../shared/schemas/block.ts";
-import { toWire } from "../../../shared/schemas/common.ts";
+import { toWire, toWireOrNull } from "../../../shared/schemas/common.ts";
 import type { BlockCosts, BlockDetails } from "../../ingest/blockDetails.ts";
 import type { BlockPlanes, Window } from "./loadBlockPlanes.ts";
 import type { LoadedBlock } from "./loadBlockRows.ts";
@@ -19,7 +19,7 @@ export function presentBlockDetail(
 ): BlockDetail {
   const details = JSON.parse(block.details) as BlockDetails;
   const costs = block.costs === null ? null : (JSON.parse(block.costs) as BlockCosts);
-  const numbers = (values: Float64Array) => (format === "f64le" ? base64(values) : Array.from(values, wireOrNull));
+  const numbers = (values: Float64Array) => (format === "f64le" ? base64(values) : Array.from(values, toWireOrNull));
   const words = (codes: Uint8Array, list: readonly string[]) =>
     format === "f64le" ? base64(codes) : Array.from(codes, (code) => list[code] ?? null);
   return {
@@ -58,11 +58,6 @@ export function presentBlockDetail(
     probes: details.probes.map((probe) => ({ ...probe })),
     sources: [...details.sources],
   };
-}
-
-/** NaN stands for "no reference" in these planes. */
-function wireOrNull(value: number) {
-  return Number.isNaN(value) ? null : toWire(value);
 }
 
 function base64(values: Float64Array | Uint8Array): string {

@@ -1,4 +1,4 @@
-import { selects } from "../../../shared/domain/selector.ts";
+import { selects, selectsEntry } from "../../../shared/domain/selector.ts";
 import type { Selector } from "../../../shared/domain/selector.ts";
 import type { Reader } from "../../db/reader.ts";
 import { loadLaneBuilds } from "../../record/laneBuilds.ts";
@@ -82,8 +82,5 @@ function boundFor(
   const error = (now(entry) ?? then(entry))?.error ?? NaN;
   const row = Math.floor(entry / block.columns);
   const column = entry % block.columns;
-  return waivers.find(
-    ({ selector: { rows, columns }, maxError }) =>
-      (rows?.includes(row) ?? true) && (columns?.includes(column) ?? true) && error <= maxError,
-  );
+  return waivers.find(({ selector, maxError }) => selectsEntry(selector, row, column) && error <= maxError);
 }

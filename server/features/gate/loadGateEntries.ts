@@ -1,6 +1,5 @@
-import { VERDICT_CODE } from "../../../shared/domain/vocabulary.ts";
-import { selects } from "../../../shared/domain/selector.ts";
-import type { Selector } from "../../../shared/domain/selector.ts";
+import { isBadVerdict, VERDICT_CODE } from "../../../shared/domain/vocabulary.ts";
+import { selects, selectsEntry } from "../../../shared/domain/selector.ts";
 import type { GateEntry } from "../../../shared/history/types.ts";
 import { relativeError } from "../../../shared/numerics/verdict/relativeError.ts";
 import type { Reader } from "../../db/reader.ts";
@@ -9,6 +8,8 @@ import { loadSnapshots, loadSparsePlanes } from "../../record/readPlanes.ts";
 import type { SnapshotPlanes, SparsePlane } from "../../record/readPlanes.ts";
 import { loadBadEntries } from "../../trace/everBad.ts";
 import type { StoredTrace } from "../../trace/storedTrace.ts";
+import { loadActiveWaivers } from "../breaks/waived.ts";
+import type { ActiveWaiver } from "../breaks/waived.ts";
 import type { GateBlockRow } from "./loadGate.ts";
 
 interface Place {
@@ -34,7 +35,7 @@ export async function loadGateEntries(
 ): Promise<GateEntry[]> {
   const suspicious = head.filter((block) => block.bad > 0);
   if (suspicious.length === 0) return [];
-  const waivers = await loadWaivers(reader, place.projectId, now);
+  const waivers = await loadActiveWaivers(reader, place.projectId, now);
   const before = new Map(baseBlocks.map((block) => [block.blockId, block]));
   const changed = suspicious.filter((block) => {
     const same = before.get(block.blockId)?.snapshotId === block.snapshotId;
@@ -57,25 +58,12 @@ export async function loadGateEntries(
   return entries;
 }
 
-interface Bound {
-  readonly selector: Selector;
-  readonly maxError: number;
-}
-
-async function loadWaivers(reader: Reader, projectId: number, now: number): Promise<Bound[]> {
-  const rows = await reader.select<{ selector: string; maxError: number }>(
-    "SELECT selector, maxError FROM waivers WHERE projectId = $1 AND state = 'approved' AND expiresAt > $2",
-    [projectId, now],
-  );
-  return rows.map(({ selector, maxError }) => ({ selector: JSON.parse(selector) as Selector, maxError }));
-}
-
 async function entriesOf(
   reader: Reader,
   block: GateBlockRow,
   snapshot: SnapshotPlanes,
   base: SnapshotPlanes | null,
-  waivers: readonly Bound[],
+  waivers: readonly ActiveWaiver[],
   breakOf: (blockId: string, columns: number, entry: number) => string | null,
 ): Promise<GateEntry[]> {
   const bad = (await loadBadEntries(reader, snapshot)).subarray(0, MOST_ENTRIES_OF_A_BLOCK);
@@ -90,7 +78,7 @@ async function entriesOf(
   return Array.from(bad, (entry): GateEntry => {
     const row = Math.floor(entry / snapshot.columns);
     const column = entry % snapshot.columns;
-    const badThen = then !== undefined && isBad(then.verdict.at(entry));
+    const badThen = then !== undefined && isBadVerdict(then.verdict.at(entry));
     return {
       blockId: block.blockId,
       row,
@@ -105,18 +93,12 @@ async function entriesOf(
   });
 }
 
-function isBad(code: number): boolean {
-  return code === VERDICT_CODE.disagrees || code === VERDICT_CODE.invalid;
-}
-
 function errorAt(planes: Record<"derivative" | "reference", SparsePlane>, entry: number, floor: number): number {
   return relativeError(planes.derivative.at(entry), planes.reference.at(entry), floor);
 }
 
-function widestBound(waivers: readonly Bound[], row: number, column: number): number | null {
-  const bounds = waivers
-    .filter(({ selector: { rows, columns } }) => (rows?.includes(row) ?? true) && (columns?.includes(column) ?? true))
-    .map(({ maxError }) => maxError);
+function widestBound(waivers: readonly ActiveWaiver[], row: number, column: number): number | null {
+  const bounds = waivers.filter(({ selector }) => selectsEntry(selector, row, column)).map(({ maxError }) => maxError);
   return bounds.length === 0 ? null : Math.max(...bounds);
 }
 
