@@ -1,4 +1,5 @@
 import type { Verdict } from "../../shared/domain/vocabulary.ts";
+import type { VerdictCounts } from "../../shared/numerics/types.ts";
 import type { SummaryCounts } from "../../shared/schemas/build.ts";
 import { fromWire } from "../../shared/schemas/common.ts";
 import type { Reader } from "../db/reader.ts";
@@ -12,45 +13,58 @@ export interface BuildSummary {
   readonly worst: (StoredWorst & { readonly blockId: number }) | null;
 }
 
-interface BlockCounts {
+/** A judged block as sums are made of it. */
+export interface SummedBlock extends VerdictCounts {
   readonly blockId: number;
-  readonly entries: number;
-  readonly agrees: number;
-  readonly disagrees: number;
-  readonly unresolved: number;
-  readonly unreferenced: number;
-  readonly invalid: number;
+  /** JSON: StoredWorst, or null. */
   readonly worst: string | null;
 }
 
 /** Adds up the blocks that a build has so far; of equally bad entries the first by its block's names is the worst. */
 export async function sumUpBuild(reader: Reader, buildId: number): Promise<BuildSummary> {
-  const blocks = await reader.select<BlockCounts>(
+  const blocks = await reader.select<SummedBlock>(
     `SELECT bb.blockId, s.rowCount * s.columnCount AS entries,
        s.agrees, s.disagrees, s.unresolved, s.unreferenced, s.invalid, s.worst
      FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId
      WHERE bb.buildId = $1 ORDER BY b.model, b.output, b.input, b.point`,
     [buildId],
   );
-  const sum = (name: "entries" | Verdict) => blocks.reduce((total, block) => total + block[name], 0);
-  let worst: BuildSummary["worst"] = null;
-  for (const { blockId, worst: stored } of blocks) {
-    if (stored === null) continue;
-    const candidate = { ...(JSON.parse(stored) as StoredWorst), blockId };
-    if (worst === null || isWorse(candidate, worst)) worst = candidate;
-  }
+  const worst = worstOf(blocks);
+  return { counts: addUp(blocks), worst: worst && { ...worst.entry, blockId: worst.block.blockId } };
+}
+
+/** The summary of the record, or what a build that is still receiving has so far. */
+export async function summaryOf(
+  reader: Reader,
+  build: { readonly id: number; readonly summary: string | null },
+): Promise<BuildSummary> {
+  return build.summary === null ? sumUpBuild(reader, build.id) : (JSON.parse(build.summary) as BuildSummary);
+}
+
+export function addUp(blocks: readonly VerdictCounts[]): SummaryCounts {
+  const sum = (name: keyof VerdictCounts) => blocks.reduce((total, block) => total + block[name], 0);
   return {
-    counts: {
-      blocks: blocks.length,
-      entries: sum("entries"),
-      agrees: sum("agrees"),
-      disagrees: sum("disagrees"),
-      unresolved: sum("unresolved"),
-      unreferenced: sum("unreferenced"),
-      invalid: sum("invalid"),
-    },
-    worst,
+    blocks: blocks.length,
+    entries: sum("entries"),
+    agrees: sum("agrees"),
+    disagrees: sum("disagrees"),
+    unresolved: sum("unresolved"),
+    unreferenced: sum("unreferenced"),
+    invalid: sum("invalid"),
   };
+}
+
+/** The worst entry of several blocks, the first of equal ones; null where none has an entry. */
+export function worstOf<B extends Pick<SummedBlock, "worst">>(
+  blocks: readonly B[],
+): { readonly block: B; readonly entry: StoredWorst } | null {
+  let worst: { readonly block: B; readonly entry: StoredWorst } | null = null;
+  for (const block of blocks) {
+    if (block.worst === null) continue;
+    const entry = JSON.parse(block.worst) as StoredWorst;
+    if (worst === null || isWorse(entry, worst.entry)) worst = { block, entry };
+  }
+  return worst;
 }
 
 export async function storeSummary(w: Writer, buildId: number): Promise<void> {

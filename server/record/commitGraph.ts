@@ -1,3 +1,4 @@
+import { groupBy } from "../../shared/domain/groupBy.ts";
 import { CommitGraph } from "../../shared/history/commitGraph.ts";
 import type { Reader } from "../db/reader.ts";
 
@@ -45,14 +46,13 @@ async function readGraph(reader: Reader, projectId: number, defaultBranch: strin
     "SELECT c.sha, b.branch FROM commit_branches b JOIN commits c ON c.id = b.commitId WHERE c.projectId = $1",
     [projectId],
   );
-  const parentsById = new Map<number, string[]>();
-  for (const { commitId, parentSha } of parents) {
-    const list = parentsById.get(commitId);
-    if (list) list.push(parentSha);
-    else parentsById.set(commitId, [parentSha]);
-  }
+  const edgesOf = groupBy(parents, (edge) => edge.commitId);
   const graph = CommitGraph.from(
-    commits.map(({ id, sha, committedAt }) => ({ sha, committedAt, parents: parentsById.get(id) ?? [] })),
+    commits.map(({ id, sha, committedAt }) => ({
+      sha,
+      committedAt,
+      parents: edgesOf.get(id)?.map((edge) => edge.parentSha) ?? [],
+    })),
   );
   return { graph, ...branchesOf(graph, branches, defaultBranch) };
 }
@@ -62,12 +62,12 @@ function branchesOf(
   rows: readonly { sha: string; branch: string }[],
   defaultBranch: string,
 ): Omit<ProjectGraph, "graph"> {
-  const places = new Map<string, number[]>();
-  for (const { sha, branch } of rows) {
-    const list = places.get(branch);
-    if (list) list.push(graph.placeOf(sha));
-    else places.set(branch, [graph.placeOf(sha)]);
-  }
+  const places = new Map(
+    [...groupBy(rows, (row) => row.branch)].map(([branch, list]) => [
+      branch,
+      list.map(({ sha }) => graph.placeOf(sha)),
+    ]),
+  );
   const tips = new Map([...places].map(([branch, list]) => [branch, graph.shaAt(newest(list))]));
   const marks = graph.ancestorMarks(places.get(defaultBranch) ?? []);
   const mainline = new Set<string>();

@@ -1,7 +1,7 @@
 import type { CommitGraph } from "../../shared/history/commitGraph.ts";
 import { nearestJudgedAncestor } from "../../shared/history/nearestJudgedAncestor.ts";
 import type { Writer } from "../db/write.ts";
-import { loadLaneBuilds } from "../record/laneBuilds.ts";
+import type { LaneBuilds } from "../record/laneBuilds.ts";
 
 /** A build whose motion has to be told anew. */
 export interface Rebased {
@@ -15,11 +15,10 @@ export interface Rebased {
  */
 export async function updateBaselines(
   w: Writer,
-  laneId: number,
+  { all, speaking }: LaneBuilds,
   graph: CommitGraph,
   arrivedBuildId: number | null,
 ): Promise<Rebased[]> {
-  const { all, speaking } = await loadLaneBuilds(w, laneId);
   const rebased: Rebased[] = [];
   for (const build of all) {
     const ancestor = nearestJudgedAncestor(graph, build.sha, (sha) => speaking.has(sha));

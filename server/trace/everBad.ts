@@ -34,7 +34,8 @@ export async function addEverBad(w: Writer, laneId: number, buildId: number): Pr
     [buildId],
   );
   if (rows.length === 0) return;
-  const before = await loadEverBad(w, laneId);
+  const key = (blockId: number, columns: number) => `${blockId} ${columns}`;
+  const before = new Map((await loadEverBad(w, laneId)).map((one) => [key(one.blockId, one.columns), one.entries]));
   const snapshots = await loadSnapshots(
     w,
     rows.map((row) => row.snapshotId),
@@ -42,7 +43,7 @@ export async function addEverBad(w: Writer, laneId: number, buildId: number): Pr
   for (const { blockId, snapshotId } of rows) {
     const snapshot = snapshots.get(snapshotId) as SnapshotPlanes;
     const { columns } = snapshot;
-    const known = before.find((state) => state.blockId === blockId && state.columns === columns)?.entries;
+    const known = before.get(key(blockId, columns));
     const union = unionEntries(known ?? new Uint32Array(0), await loadBadEntries(w, snapshot));
     if (union === known) continue;
     await w.run("INSERT OR REPLACE INTO drift_states (laneId, blockId, columnCount, everBad) VALUES ($1, $2, $3, $4)", [

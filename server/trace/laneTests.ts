@@ -1,8 +1,9 @@
 import { VERDICT_CODE } from "../../shared/domain/vocabulary.ts";
+import { groupBy } from "../../shared/domain/groupBy.ts";
 import { partitionEntries } from "../../shared/history/partitionEntries.ts";
 import type { Test } from "../../shared/history/types.ts";
 import type { Reader } from "../db/reader.ts";
-import { loadLaneBuilds } from "../record/laneBuilds.ts";
+import type { LaneBuilds } from "../record/laneBuilds.ts";
 import { loadSnapshots, loadSparsePlanes } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
 import { loadEverBad } from "./everBad.ts";
@@ -22,10 +23,13 @@ export interface TestedEntries {
  * What the builds of a lane say of every entry that was ever bad, as classes of equal history. Reads one verdict tile
  * for each *distinct* snapshot that holds such entries, however many builds share it.
  */
-export async function loadLaneTests(reader: Reader, laneId: number): Promise<TestedEntries[]> {
+export async function loadLaneTests(
+  reader: Reader,
+  laneId: number,
+  { speaking }: Pick<LaneBuilds, "speaking">,
+): Promise<TestedEntries[]> {
   const everBad = await loadEverBad(reader, laneId);
   if (everBad.length === 0) return [];
-  const { speaking } = await loadLaneBuilds(reader, laneId);
   const shaOf = new Map([...speaking.values()].map((build) => [build.id, build.sha]));
   const rows = await reader.select<{ blockId: number; buildId: number; snapshotId: number }>(
     `SELECT blockId, buildId, snapshotId FROM build_blocks
@@ -36,11 +40,11 @@ export async function loadLaneTests(reader: Reader, laneId: number): Promise<Tes
     reader,
     rows.map((row) => row.snapshotId),
   );
+  const rowsOf = groupBy(rows, (row) => row.blockId);
   const classes: TestedEntries[] = [];
   for (const state of everBad) {
-    const builds = rows.filter(
-      (row) => row.blockId === state.blockId && snapshots.get(row.snapshotId)?.columns === state.columns,
-    );
+    const ofBlock = rowsOf.get(state.blockId) ?? [];
+    const builds = ofBlock.filter((row) => snapshots.get(row.snapshotId)?.columns === state.columns);
     classes.push(...(await classesOf(reader, state, builds, snapshots, shaOf)));
   }
   return classes;

@@ -1,4 +1,5 @@
 import { createHash } from "node:crypto";
+import { groupBy } from "../../shared/domain/groupBy.ts";
 import type { Writer } from "../db/write.ts";
 import type { StoredTile } from "../ingest/assemble.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
@@ -34,7 +35,7 @@ export async function updateMotions(w: Writer, judge: JudgePool, rebased: Rebase
     w,
     pairs.flatMap((pair) => [pair.now, pair.before]),
   );
-  const byMotion = new Map<number, number[]>();
+  const told: { readonly motionId: number; readonly blockId: number }[] = [];
   const stillByShape = new Map<number, number>();
   for (const pair of pairs) {
     const now = snapshots.get(pair.now) as SnapshotPlanes;
@@ -46,13 +47,13 @@ export async function updateMotions(w: Writer, judge: JudgePool, rebased: Rebase
       (still ? stillByShape.get(entries) : undefined) ??
       (await storeMotion(w, still ? allStill(entries) : await judgeChange(w, judge, now, before)));
     if (still) stillByShape.set(entries, motionId);
-    byMotion.set(motionId, [...(byMotion.get(motionId) ?? []), pair.blockId]);
+    told.push({ motionId, blockId: pair.blockId });
   }
-  for (const [motionId, blockIds] of byMotion) {
+  for (const [motionId, blocks] of groupBy(told, (one) => one.motionId)) {
     await w.run(
       `UPDATE build_blocks SET motionId = $1
        WHERE buildId = $2 AND blockId IN (SELECT value FROM json_each($3))`,
-      [motionId, buildId, JSON.stringify(blockIds)],
+      [motionId, buildId, JSON.stringify(blocks.map((one) => one.blockId))],
     );
   }
 }

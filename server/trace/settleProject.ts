@@ -4,7 +4,7 @@ import { loadCommitFacts } from "../record/commitFacts.ts";
 import { loadGraph } from "../record/commitGraph.ts";
 import type { ProjectGraph } from "../record/commitGraph.ts";
 import { loadLaneBuilds } from "../record/laneBuilds.ts";
-import type { LaneBuild } from "../record/laneBuilds.ts";
+import type { LaneBuild, LaneBuilds } from "../record/laneBuilds.ts";
 import { updateBaselines } from "./baselines.ts";
 import { describeBreak } from "./describeBreak.ts";
 import type { BreakDescription } from "./describeBreak.ts";
@@ -46,10 +46,12 @@ export async function settleProject(
   const lanes = await w.select<{ id: number }>("SELECT id FROM lanes WHERE projectId = $1 ORDER BY id", [projectId]);
   for (const { id: laneId } of lanes) {
     const buildId = arrival?.laneId === laneId ? arrival.buildId : null;
-    const rebased = await updateBaselines(w, laneId, project.graph, buildId);
+    const builds = await loadLaneBuilds(w, laneId);
+    const rebased = await updateBaselines(w, builds, project.graph, buildId);
     for (const one of rebased) await updateMotions(w, judge, one);
     if (buildId !== null) await addEverBad(w, laneId, buildId);
-    await retrace(w, project, { projectId, laneId }, new Set(rebased.map((one) => one.buildId)), now);
+    const moved = new Set(rebased.map((one) => one.buildId));
+    await retrace(w, project, { projectId, laneId }, builds, moved, now);
   }
 }
 
@@ -58,12 +60,13 @@ async function retrace(
   w: Writer,
   project: ProjectGraph,
   lane: Lane,
+  builds: LaneBuilds,
   moved: ReadonlySet<number>,
   now: number,
 ): Promise<void> {
-  const traced = traceLane(project, await loadLaneTests(w, lane.laneId));
+  const { speaking } = builds;
+  const traced = traceLane(project, await loadLaneTests(w, lane.laneId, builds));
   const recorded = await loadRecordedBreaks(w, lane.laneId);
-  const { speaking } = await loadLaneBuilds(w, lane.laneId);
   const suspects = new Set(traced.flatMap((found) => found.suspects));
   const commits = await loadCommitFacts(w, lane.projectId, [...suspects]);
   const idOf = (sha: string | null) => (sha === null ? null : (speaking.get(sha)?.id ?? null));

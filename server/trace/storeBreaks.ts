@@ -1,4 +1,5 @@
 import type { Motion } from "../../shared/domain/vocabulary.ts";
+import type { OnsetKind } from "../../shared/history/types.ts";
 import type { Writer } from "../db/write.ts";
 import { packEntries, unpackEntries } from "../record/entryList.ts";
 import type { BreakDescription } from "./describeBreak.ts";
@@ -8,9 +9,9 @@ import type { StoredBreakWorst, StoredTrace } from "./storedTrace.ts";
 import type { BreakPart, LaneBreak } from "./traceLane.ts";
 
 /** The columns that tracing tells of a break: all but its identity and what people add to it. */
-interface ToldColumns {
-  readonly state: string;
-  readonly kind: string;
+export interface ToldColumns {
+  readonly state: "open" | "repaired";
+  readonly kind: OnsetKind;
   readonly onset: string;
   readonly onsetBuildId: number;
   readonly lastGood: string | null;

@@ -38,8 +38,9 @@ export function traceLane(project: ProjectGraph, classes: readonly TestedEntries
   const items: TracedEntries[] = [];
   for (const { blockId, columns, entries, tests } of classes) {
     const key = rankOf(ranked, { blockId, columns });
+    const followTo = followedTo(project, tests);
     for (const found of traceEntries(project.graph, tests)) {
-      const line = stateOf(project, found, tests);
+      const line = stateOf(project, found, tests, followTo);
       items.push({ blockId: key, entries, traced: line.traced });
       const list = told.get(found.onset) ?? [];
       told.set(found.onset, list);
@@ -68,15 +69,28 @@ function rankOf(ranked: RankedBlock[], block: RankedBlock): string {
   return String(ranked.length - 1).padStart(9, "0");
 }
 
+/** Breaks of one class by onset, with their repairs looked for up to a tip; each tip is followed to once. */
+function followedTo(project: ProjectGraph, tests: Tests): (tip: string) => ReadonlyMap<string, TracedBreak> {
+  const byTip = new Map<string, ReadonlyMap<string, TracedBreak>>();
+  return (tip) => {
+    const known = byTip.get(tip);
+    if (known) return known;
+    const followed = new Map(traceEntries(project.graph, tests, { tip }).map((one) => [one.onset, one]));
+    byTip.set(tip, followed);
+    return followed;
+  };
+}
+
 /** The break followed to the tip that its state speaks for. */
 function stateOf(
   project: ProjectGraph,
   found: TracedBreak,
   tests: Tests,
+  followTo: (tip: string) => ReadonlyMap<string, TracedBreak>,
 ): { readonly traced: TracedBreak; readonly open: boolean } {
   const tip = tipOf(project, found);
   if (tip === null) return { traced: found, open: found.repairedBy === null };
-  const traced = traceEntries(project.graph, tests, { tip }).find((one) => one.onset === found.onset) ?? found;
+  const traced = followTo(tip).get(found.onset) ?? found;
   return { traced, open: breakStateOn(project.graph, traced, tests, tip) === "open" };
 }
 

@@ -1,8 +1,8 @@
 import type { Reader } from "../../db/reader.ts";
+import type { SummedBlock } from "../../record/buildSummary.ts";
 
 /** A block of a build with everything but its numbers. */
-export interface LoadedBlock {
-  readonly blockId: number;
+export interface LoadedBlock extends SummedBlock {
   readonly buildId: number;
   readonly sha: string;
   readonly lane: string;
@@ -15,13 +15,6 @@ export interface LoadedBlock {
   readonly columnCount: number;
   readonly rtol: number;
   readonly floor: number;
-  readonly agrees: number;
-  readonly disagrees: number;
-  readonly unresolved: number;
-  readonly unreferenced: number;
-  readonly invalid: number;
-  /** JSON: StoredWorst, or null. */
-  readonly worst: string | null;
   /** JSON: ResolutionBins. */
   readonly resolutions: string;
   /** JSON: BlockDetails. */
@@ -35,7 +28,7 @@ export interface LoadedBlock {
 
 const SELECT = `
   SELECT bb.blockId, bb.buildId, c.sha, l.name AS lane, b.model, b.point, b.output, b.input, bb.snapshotId,
-    s.rowCount, s.columnCount, s.rtol, s.floor, s.agrees, s.disagrees, s.unresolved, s.unreferenced, s.invalid,
+    s.rowCount, s.columnCount, s.rowCount * s.columnCount AS entries, s.rtol, s.floor, s.agrees, s.disagrees, s.unresolved, s.unreferenced, s.invalid,
     s.worst, s.resolutions, d.details, bb.costs, m.counts AS motionCounts, m.planes AS motionPlanes
   FROM build_blocks bb JOIN builds u ON u.id = bb.buildId JOIN commits c ON c.id = u.commitId
   JOIN lanes l ON l.id = u.laneId JOIN blocks b ON b.id = bb.blockId JOIN snapshots s ON s.id = bb.snapshotId

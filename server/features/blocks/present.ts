@@ -7,7 +7,7 @@ import type { LoadedBlock } from "./loadBlockRows.ts";
 
 export function presentBlockRow(block: LoadedBlock): BlockRow {
   const details = JSON.parse(block.details) as BlockDetails;
-  const { agrees, disagrees, unresolved, unreferenced, invalid } = block;
+  const { entries, agrees, disagrees, unresolved, unreferenced, invalid } = block;
   return {
     blockId: String(block.blockId),
     model: block.model,
@@ -16,10 +16,10 @@ export function presentBlockRow(block: LoadedBlock): BlockRow {
     input: presentSide(block.input, block.columnCount, details.input),
     rows: block.rowCount,
     columns: block.columnCount,
-    counts: { entries: block.rowCount * block.columnCount, agrees, disagrees, unresolved, unreferenced, invalid },
+    counts: { entries, agrees, disagrees, unresolved, unreferenced, invalid },
     rtol: block.rtol,
     floor: block.floor,
-    resolution: weakestResolution(JSON.parse(block.resolutions) as ResolutionBins),
+    resolution: weakestResolution(block),
     worst: block.worst === null ? null : presentWorst(JSON.parse(block.worst) as StoredWorst),
     signatures: details.signatures.map(({ code, share, detail }) => ({ code, share, detail })),
     motion: block.motionCounts === null ? null : presentMotion(JSON.parse(block.motionCounts) as MotionCounts),
@@ -30,7 +30,7 @@ function presentSide(name: string, size: number, side: SideDetails): BlockRow["o
   return { name, size, unit: side.unit, elements: side.elements && [...side.elements] };
 }
 
-export function presentWorst(worst: StoredWorst): NonNullable<BlockRow["worst"]> {
+function presentWorst(worst: StoredWorst): NonNullable<BlockRow["worst"]> {
   const { row, column, verdict, error, derivative, reference, uncertainty } = worst;
   return { row, column, verdict, error, derivative, reference, uncertainty };
 }
@@ -47,7 +47,7 @@ export function presentMotion(counts: MotionCounts): NonNullable<BlockRow["motio
 }
 
 /** Upper end of the last octave that holds an entry: what the weakest reference could see. */
-function weakestResolution(bins: ResolutionBins): number | null {
-  const last = bins.at(-1);
+export function weakestResolution({ resolutions }: Pick<LoadedBlock, "resolutions">): number | null {
+  const last = (JSON.parse(resolutions) as ResolutionBins).at(-1);
   return last === undefined ? null : 2 ** last[0];
 }

@@ -1,33 +1,16 @@
-import type { Motion } from "../../../shared/domain/vocabulary.ts";
-import type { OnsetKind } from "../../../shared/history/types.ts";
 import type { Signature } from "../../../shared/schemas/break.ts";
 import type { Reader } from "../../db/reader.ts";
+import type { ToldColumns } from "../../trace/storeBreaks.ts";
 
 /** A break as the record has it; what is JSON there is text here. */
-export interface LoadedBreak {
+export interface LoadedBreak extends ToldColumns {
   readonly id: number;
   readonly number: number;
   readonly lane: string;
   readonly laneId: number;
-  readonly state: "open" | "repaired";
-  readonly kind: OnsetKind;
-  readonly onset: string;
-  readonly onsetBuildId: number;
   readonly onsetAt: number | null;
   readonly onsetSubject: string | null;
   readonly onsetAuthor: string | null;
-  readonly lastGood: string | null;
-  readonly lastGoodBuildId: number | null;
-  readonly repairedBy: string | null;
-  readonly repairedByBuildId: number | null;
-  /** JSON: StoredTrace. */
-  readonly trace: string;
-  /** JSON: string[]. */
-  readonly models: string;
-  readonly entryCount: number;
-  /** JSON: StoredBreakWorst. */
-  readonly worst: string;
-  readonly motion: Motion | null;
   readonly assigneeId: number | null;
   readonly assigneeName: string | null;
 }

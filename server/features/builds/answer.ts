@@ -4,7 +4,7 @@ import type { Reader } from "../../db/reader.ts";
 import { loadGate } from "../gate/loadGate.ts";
 import { presentGate } from "../gate/present.ts";
 import { policyOf } from "../projects/settings.ts";
-import { sumUpBuild } from "../../record/buildSummary.ts";
+import { summaryOf } from "../../record/buildSummary.ts";
 import type { StoredTrace } from "../../trace/storedTrace.ts";
 import { urlsOf } from "./urls.ts";
 
@@ -14,6 +14,8 @@ interface BuildRow {
   readonly lane: string;
   readonly laneId: number;
   readonly sha: string;
+  /** JSON: BuildSummary; null while receiving. */
+  readonly summary: string | null;
 }
 
 /** What a posting is answered: the build so far, its gate and the breaks that its commit has a part in. */
@@ -26,7 +28,7 @@ export async function composeAnswer(
 ): Promise<PostedBuild> {
   const urls = urlsOf(publicUrl, project.slug);
   const [build] = await reader.select<BuildRow>(
-    `SELECT b.id, b.state, l.name AS lane, l.id AS laneId, c.sha
+    `SELECT b.id, b.state, b.summary, l.name AS lane, l.id AS laneId, c.sha
      FROM builds b JOIN lanes l ON l.id = b.laneId JOIN commits c ON c.id = b.commitId WHERE b.id = $1`,
     [buildId],
   );
@@ -40,7 +42,7 @@ export async function composeAnswer(
   const id = String(build.id);
   return {
     build: { id, url: urls.build(id), state: build.state, lane: build.lane, commit: build.sha },
-    summary: (await sumUpBuild(reader, buildId)).counts,
+    summary: (await summaryOf(reader, build)).counts,
     gate: presentGate(question, gate, urls),
     breaks: await loadBreaks(reader, build, urls),
   };

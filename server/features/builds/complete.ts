@@ -2,17 +2,18 @@ import type { PostedBuild } from "../../../shared/schemas/build.ts";
 import type { Context } from "../../context.ts";
 import type { Project } from "../../db/models/Project.ts";
 import { Conflict, NotFound } from "../../http/problem.ts";
-import { completeBuild } from "../../record/storePosting.ts";
-import { settleProject } from "../../trace/settleProject.ts";
+import { finishBuild } from "../../trace/finishBuild.ts";
 import { composeAnswer } from "./answer.ts";
 
 interface Receiving {
-  readonly id: number;
+  readonly buildId: number;
   readonly projectId: number;
   readonly laneId: number;
   readonly state: "receiving" | "complete";
   readonly shardCount: number;
 }
+
+const SELECT = "SELECT id AS buildId, projectId, laneId, state, shardCount FROM builds";
 
 /**
  * Completes a build without the shards that did not come, and records which. Closing a complete build again changes
@@ -22,18 +23,14 @@ interface Receiving {
 export async function closeBuild(context: Context, project: Project, buildId: number): Promise<PostedBuild> {
   return context.db.write(async (w) => {
     const now = Date.now();
-    const [build] = await w.select<Receiving>(
-      "SELECT id, projectId, laneId, state, shardCount FROM builds WHERE id = $1 AND projectId = $2",
-      [buildId, project.id],
-    );
+    const [build] = await w.select<Receiving>(`${SELECT} WHERE id = $1 AND projectId = $2`, [buildId, project.id]);
     if (build === undefined) throw new NotFound();
     if (build.state === "receiving") {
       const shards = await w.select<{ position: number }>("SELECT position FROM shards WHERE buildId = $1", [buildId]);
       if (shards.length === 0) throw new Conflict("No shard of this build has come yet.");
       const came = new Set(shards.map((shard) => shard.position));
       const missing = Array.from({ length: build.shardCount }, (_, at) => at).filter((at) => !came.has(at));
-      await completeBuild(w, buildId, missing, now);
-      await settleProject(w, context.judge, build.projectId, { laneId: build.laneId, buildId }, now);
+      await finishBuild(w, context.judge, build, missing, now);
     }
     return composeAnswer(w, project, buildId, context.config.publicUrl, now);
   });
@@ -45,19 +42,15 @@ export async function closeBuild(context: Context, project: Project, buildId: nu
  */
 export async function completePending(context: Context): Promise<number> {
   const pending = await context.db.select<Receiving>(
-    `SELECT id, projectId, laneId, state, shardCount FROM builds b
+    `${SELECT} b
      WHERE state = 'receiving' AND shardCount = (SELECT count(*) FROM shards s WHERE s.buildId = b.id) ORDER BY id`,
   );
-  for (const { id } of pending) {
+  for (const { buildId } of pending) {
     await context.db.write(async (w) => {
       const now = Date.now();
-      const [build] = await w.select<Receiving>(
-        "SELECT id, projectId, laneId, state, shardCount FROM builds WHERE id = $1",
-        [id],
-      );
+      const [build] = await w.select<Receiving>(`${SELECT} WHERE id = $1`, [buildId]);
       if (build?.state !== "receiving") return;
-      await completeBuild(w, id, [], now);
-      await settleProject(w, context.judge, build.projectId, { laneId: build.laneId, buildId: id }, now);
+      await finishBuild(w, context.judge, build, [], now);
     });
   }
   return pending.length;

@@ -1,4 +1,5 @@
 import type { Reader } from "../../db/reader.ts";
+import { speaks } from "../../record/laneBuilds.ts";
 
 /** One row of a build with all that lists and its page show. */
 export interface LoadedBuild {
@@ -34,8 +35,7 @@ const SELECT = `
     (SELECT branch FROM commit_branches cb WHERE cb.commitId = c.id ORDER BY branch LIMIT 1) AS branch,
     (SELECT json_group_array(position ORDER BY position) FROM shards s WHERE s.buildId = b.id) AS received,
     (SELECT bc.sha FROM builds bb JOIN commits bc ON bc.id = bb.commitId WHERE bb.id = b.baselineBuildId) AS baselineSha,
-    b.id = (SELECT o.id FROM builds o WHERE o.laneId = b.laneId AND o.commitId = b.commitId AND o.state = 'complete'
-      ORDER BY COALESCE(o.finishedAt, o.startedAt, o.completedAt) DESC, o.id DESC LIMIT 1) AS current
+    ${speaks("b")} AS current
   FROM builds b JOIN lanes l ON l.id = b.laneId JOIN commits c ON c.id = b.commitId`;
 
 export interface BuildFilter {

@@ -8,8 +8,8 @@ import type { RawContent } from "../../http/rawBody.ts";
 import { collectGarbage } from "../../ingest/collectGarbage.ts";
 import type { JudgedPosting } from "../../ingest/judgePosting.ts";
 import { RecordConflict } from "../../record/conflict.ts";
-import { completeBuild, storePosting } from "../../record/storePosting.ts";
-import { settleProject } from "../../trace/settleProject.ts";
+import { storePosting } from "../../record/storePosting.ts";
+import { finishBuild } from "../../trace/finishBuild.ts";
 import { toleranceRulesOf, tolerancesOf } from "../projects/settings.ts";
 import { composeAnswer } from "./answer.ts";
 
@@ -72,8 +72,7 @@ async function record(
   const answered = stored.repeated?.answer;
   if (answered) return { answer: unpackAnswer(answered), repeated: true };
   if (stored.allHere && mode !== "respond-async") {
-    await completeBuild(w, stored.buildId, [], now);
-    await settleProject(w, context.judge, project.id, stored, now);
+    await finishBuild(w, context.judge, { ...stored, projectId: project.id }, [], now);
   }
   const answer = await composeAnswer(w, project, stored.buildId, context.config.publicUrl, now);
   await w.run("UPDATE shards SET answer = $2 WHERE id = $1", [stored.shardId, packAnswer(answer)]);

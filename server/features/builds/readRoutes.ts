@@ -1,22 +1,16 @@
 import { z } from "zod";
 import { buildDetail, buildRow } from "../../../shared/schemas/build.ts";
 import { laneName, page, pageQuery, sha } from "../../../shared/schemas/common.ts";
-import type { Reader } from "../../db/reader.ts";
 import { defineRoute } from "../../http/defineRoute.ts";
 import type { Route } from "../../http/defineRoute.ts";
 import { pageOf, pageRequest } from "../../http/paging.ts";
 import { NotFound } from "../../http/problem.ts";
-import { sumUpBuild } from "../../record/buildSummary.ts";
+import { summaryOf } from "../../record/buildSummary.ts";
 import type { BuildSummary } from "../../record/buildSummary.ts";
 import { numericId } from "../numericId.ts";
 import { loadArrivals, loadBuild, loadBuilds } from "./loadBuilds.ts";
-import type { LoadedBuild } from "./loadBuilds.ts";
 import { presentArrival, presentBuild } from "./present.ts";
 import { urlsOf } from "./urls.ts";
-
-async function summaryOf(reader: Reader, build: LoadedBuild): Promise<BuildSummary> {
-  return build.summary === null ? sumUpBuild(reader, build.id) : (JSON.parse(build.summary) as BuildSummary);
-}
 
 export const readRoutes: Route[] = [
   defineRoute({

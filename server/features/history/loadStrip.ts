@@ -8,6 +8,7 @@ import { loadCommitFacts } from "../../record/commitFacts.ts";
 import type { CommitFacts } from "../../record/commitFacts.ts";
 import { commitColumns } from "../../record/commitColumns.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
+import { madeAt } from "../../record/laneBuilds.ts";
 import { loadUnwaived } from "../breaks/loadUnwaived.ts";
 import type { StoredTrace } from "../../trace/storedTrace.ts";
 
@@ -55,7 +56,7 @@ export async function loadStrip(
 async function loadStripBuilds(reader: Reader, laneId: number): Promise<Map<string, StripBuild>> {
   const rows = await reader.select<StripBuild>(
     `SELECT b.id, c.sha, b.state, b.summary FROM builds b JOIN commits c ON c.id = b.commitId WHERE b.laneId = $1
-     ORDER BY b.state = 'complete', COALESCE(b.finishedAt, b.startedAt, b.completedAt), b.id`,
+     ORDER BY b.state = 'complete', ${madeAt("b")}, b.id`,
     [laneId],
   );
   return new Map(rows.map((row) => [row.sha, row]));

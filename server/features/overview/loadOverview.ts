@@ -1,12 +1,11 @@
+import type { BlockName } from "../../../shared/domain/selector.ts";
 import type { Overview } from "../../../shared/schemas/project.ts";
 import { loadBlockRows } from "../blocks/loadBlockRows.ts";
-import type { LoadedBlock } from "../blocks/loadBlockRows.ts";
 import type { Reader } from "../../db/reader.ts";
 import { timeOrNull } from "../../http/present.ts";
 import { resolutionCurve } from "../../ingest/resolutionBins.ts";
 import type { ResolutionBins } from "../../ingest/resolutionBins.ts";
-import { checkedShare } from "../../record/buildSummary.ts";
-import type { BuildSummary } from "../../record/buildSummary.ts";
+import { addUp, checkedShare } from "../../record/buildSummary.ts";
 import { loadCommitFacts } from "../../record/commitFacts.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
 import type { ProjectGraph } from "../../record/commitGraph.ts";
@@ -39,12 +38,11 @@ export async function loadOverview(reader: Reader, wanted: OverviewWanted, now: 
   const facts = commit === null ? undefined : (await loadCommitFacts(reader, projectId, [commit])).get(commit);
   const blocks = build ? await loadBlockRows(reader, projectId, build.id) : [];
   const baselineId = build?.baselineBuildId ?? null;
-  const baselineBlocks = baselineId === null ? [] : await loadBlockRows(reader, projectId, baselineId);
-  const counts = build ? await loadCounts(reader, build.id) : null;
+  const counts = build ? addUp(blocks) : null;
   const ofLane = await loadBreaks(reader, projectId, { lane, state: null });
   const waived = await loadWaived(reader, ofLane, await loadActiveWaivers(reader, projectId, now));
   const breaks = breaksAt(project, ofLane, waived, commit);
-  const vanishedBlocks = vanished(blocks, baselineBlocks);
+  const vanishedBlocks = build && baselineId !== null ? await loadVanished(reader, build.id, baselineId) : [];
   return {
     lane,
     commit,
@@ -95,16 +93,21 @@ function baselineOf(baselineId: number, speaking: ReadonlyMap<string, LaneBuild>
   return build ? { commit: build.sha, buildId: String(build.id) } : null;
 }
 
-async function loadCounts(reader: Reader, buildId: number): Promise<BuildSummary["counts"]> {
-  const [{ summary }] = await reader.select<{ summary: string }>("SELECT summary FROM builds WHERE id = $1", [buildId]);
-  return (JSON.parse(summary) as BuildSummary).counts;
-}
-
-function vanished(now: readonly LoadedBlock[], before: readonly LoadedBlock[]): Overview["vanishedBlocks"] {
-  const here = new Set(now.map((block) => block.blockId));
-  return before
-    .filter((block) => !here.has(block.blockId))
-    .map(({ blockId, model, output, input, point }) => ({ blockId: String(blockId), model, output, input, point }));
+/** Blocks of the baseline that the build does not have. */
+async function loadVanished(reader: Reader, buildId: number, baselineId: number): Promise<Overview["vanishedBlocks"]> {
+  const rows = await reader.select<BlockName & { blockId: number }>(
+    `SELECT b.id AS blockId, b.model, b.output, b.input, b.point FROM build_blocks bb JOIN blocks b ON b.id = bb.blockId
+     WHERE bb.buildId = $2 AND bb.blockId NOT IN (SELECT blockId FROM build_blocks WHERE buildId = $1)
+     ORDER BY bb.blockId`,
+    [buildId, baselineId],
+  );
+  return rows.map(({ blockId, model, output, input, point }) => ({
+    blockId: String(blockId),
+    model,
+    output,
+    input,
+    point,
+  }));
 }
 
 /** Commits of the default branch since a lane was last built. */

@@ -1,4 +1,5 @@
 import type { Reader } from "../../db/reader.ts";
+import { madeAt } from "../../record/laneBuilds.ts";
 
 const DAY = 24 * 60 * 60 * 1000;
 /** A lane is silent after so many times its usual gap. */
@@ -34,9 +35,8 @@ export async function loadSilentLanes(
   }>(
     `SELECT l.projectId, l.id AS laneId, l.name AS lane, json_group_array(b.at ORDER BY b.at) AS times,
        (SELECT c.sha FROM builds o JOIN commits c ON c.id = o.commitId WHERE o.laneId = l.id AND o.state = 'complete'
-        ORDER BY COALESCE(o.finishedAt, o.startedAt, o.completedAt) DESC LIMIT 1) AS lastCommit
-     FROM lanes l JOIN (SELECT laneId, COALESCE(finishedAt, startedAt, completedAt) AS at FROM builds
-       WHERE state = 'complete') b ON b.laneId = l.id
+        ORDER BY ${madeAt("o")} DESC LIMIT 1) AS lastCommit
+     FROM lanes l JOIN (SELECT laneId, ${madeAt("builds")} AS at FROM builds WHERE state = 'complete') b ON b.laneId = l.id
      WHERE l.projectId IN (SELECT value FROM json_each($1)) GROUP BY l.id ORDER BY l.name`,
     [JSON.stringify(projectIds)],
   );

@@ -4,6 +4,7 @@ import type { Reader } from "../../db/reader.ts";
 import { timeOrNull } from "../../http/present.ts";
 import { worstVerdict } from "../../record/buildSummary.ts";
 import type { BuildSummary } from "../../record/buildSummary.ts";
+import { speaks } from "../../record/laneBuilds.ts";
 import { loadUnwaived } from "../breaks/loadUnwaived.ts";
 import { finiteOrNull } from "../history/loadStrip.ts";
 import { loadSilentLanes } from "../overview/silentLanes.ts";
@@ -42,8 +43,7 @@ export async function troubleOf(
 async function loadTrace(reader: Reader, projectId: number): Promise<Trouble["trace"]> {
   const rows = await reader.select<{ sha: string; summary: string }>(
     `SELECT c.sha, b.summary FROM builds b JOIN commits c ON c.id = b.commitId
-     WHERE b.state = 'complete' AND NOT EXISTS (SELECT 1 FROM builds o
-       WHERE o.laneId = b.laneId AND o.commitId = b.commitId AND o.state = 'complete' AND o.id > b.id) AND b.laneId =
+     WHERE ${speaks("b")} AND b.laneId =
        (SELECT laneId FROM builds WHERE projectId = $1 GROUP BY laneId ORDER BY count(*) DESC, laneId LIMIT 1)
      ORDER BY COALESCE(c.committedAt, b.createdAt) DESC, b.id DESC LIMIT $2`,
     [projectId, TRACE_LENGTH],
