@@ -1,5 +1,6 @@
 import { Router } from "express";
 import type { Request, RequestHandler, Response } from "express";
+import { groupBy } from "../../shared/domain/groupBy.ts";
 import type { Context } from "../context.ts";
 import { Project } from "../db/models/Project.ts";
 import { can } from "../features/policies.ts";
@@ -24,12 +25,11 @@ type ReadBody = BodyReader<unknown>;
 export function mountRoutes(context: Context, routes: readonly Route[]): Router {
   const router = Router({ caseSensitive: true });
   const limit = requestLimiter(context.config.requestsPerMinute);
-  const methods = new Map<string, string[]>();
   for (const route of routes) {
     router[route.method](route.path, serve(context, route, limit, bodyReader(context, route)));
-    methods.set(route.path, [...(methods.get(route.path) ?? []), route.method.toUpperCase()]);
   }
-  for (const [path, allowed] of methods) {
+  for (const [path, ofPath] of groupBy(routes, (route) => route.path)) {
+    const allowed = ofPath.map((route) => route.method.toUpperCase());
     router.all(path, (request) => {
       throw new MethodNotAllowed(request.method, allowed);
     });

@@ -1,9 +1,7 @@
 import type { z } from "zod";
-import { Complaints } from "../ingest/complaints.ts";
 import type { Path } from "../ingest/complaints.ts";
+import { zodComplaints } from "../ingest/zodComplaints.ts";
 import { Invalid } from "./problem.ts";
-
-type Issue = z.core.$ZodIssue;
 
 /**
  * Parses a value with a schema.
@@ -16,16 +14,13 @@ export function parseWith<S extends z.ZodType>(schema: S, value: unknown, root: 
 }
 
 export function invalidFrom(error: z.ZodError, root: Path): Invalid {
-  const complaints = new Complaints();
-  for (const issue of error.issues) complain(complaints, issue as Issue, root);
-  return new Invalid(complaints.listed, complaints.more);
+  const { listed, more } = zodComplaints(error, root, "is not a field that this address knows");
+  return new Invalid(listed, more);
 }
 
-function complain(complaints: Complaints, issue: Issue, root: Path): void {
-  const path = [...root, ...issue.path.map((part) => (typeof part === "number" ? part : String(part)))];
-  if (issue.code === "unrecognized_keys") {
-    for (const key of issue.keys) complaints.add([...path, key], "is not a field that this address knows");
-  } else {
-    complaints.add(path, issue.message);
-  }
+/** Milliseconds of a time that must lie ahead. @throws Invalid, at `pointer` */
+export function timeToCome(text: string, pointer: string, now: number): number {
+  const at = Date.parse(text);
+  if (at <= now) throw new Invalid([{ pointer, detail: "must be in the future" }]);
+  return at;
 }

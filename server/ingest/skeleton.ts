@@ -1,9 +1,9 @@
 import { z } from "zod";
 import type { Limits } from "../../shared/domain/limits.ts";
 import { blockSchema, buildDocumentSchema } from "../../shared/schemas/build.ts";
-import { Complaints } from "./complaints.ts";
-import type { Path } from "./complaints.ts";
+import type { Complaints } from "./complaints.ts";
 import { RejectedPosting } from "./rejection.ts";
+import { zodComplaints } from "./zodComplaints.ts";
 
 /** The document with holes where its numbers are: those are read by tight loops, not element by element by zod. */
 const hole = z.unknown();
@@ -20,7 +20,7 @@ export function readSkeleton(document: unknown, limits: Limits): SkeletonDocumen
   const count = blockCount(document);
   if (count > limits.blocks) throw tooMany(count, "blocks", limits.blocks);
   const parsed = skeletonDocument.safeParse(document);
-  if (!parsed.success) throw invalid(complaintsOf(parsed.error));
+  if (!parsed.success) throw invalid(zodComplaints(parsed.error, [], "is not a property of the format"));
   const entries = parsed.data.blocks.reduce((sum, block) => sum + entriesOf(block), 0);
   if (entries > limits.entries) throw tooMany(entries, "entries", limits.entries);
   const numbers = parsed.data.blocks.reduce((sum, block) => sum + entriesOf(block) * matricesOf(block), 0);
@@ -58,20 +58,4 @@ function tooMany(count: number, what: string, limit: number): RejectedPosting {
 
 export function invalid(complaints: Complaints): RejectedPosting {
   return new RejectedPosting({ kind: "invalid", errors: complaints.listed, more: complaints.more });
-}
-
-/** One line an issue; an unknown property is pointed at itself, so that a typing mistake is found at once. */
-function complaintsOf(error: z.ZodError): Complaints {
-  const complaints = new Complaints();
-  for (const issue of error.issues) {
-    const path = issue.path as Path;
-    if (issue.code === "unrecognized_keys") {
-      for (const key of issue.keys) complaints.add([...path, key], "is not a property of the format");
-    } else {
-      // A hole takes anything, and says of nothing at all only that it is "nonoptional".
-      const missing = issue.code === "invalid_type" && issue.expected === "nonoptional";
-      complaints.add(path, missing ? "is missing" : issue.message);
-    }
-  }
-  return complaints;
 }

@@ -5,7 +5,8 @@ import type { Project } from "../../db/models/Project.ts";
 import { Token } from "../../db/models/Token.ts";
 import type { PersonActor } from "../../http/actor.ts";
 import type { PageRequest } from "../../http/paging.ts";
-import { Invalid, NotFound } from "../../http/problem.ts";
+import { NotFound } from "../../http/problem.ts";
+import { timeToCome } from "../../http/validate.ts";
 import { audit } from "../audit/audit.ts";
 import { hashSecret, newTokenText, shownPrefix } from "./tokenText.ts";
 
@@ -23,10 +24,7 @@ export async function createToken(
   wish: TokenWish,
 ): Promise<{ token: Token; text: string }> {
   const now = Date.now();
-  const expiresAt = wish.expiresAt === undefined ? null : Date.parse(wish.expiresAt);
-  if (expiresAt !== null && expiresAt <= now) {
-    throw new Invalid([{ pointer: "#/expiresAt", detail: "must be in the future" }]);
-  }
+  const expiresAt = wish.expiresAt === undefined ? null : timeToCome(wish.expiresAt, "#/expiresAt", now);
   const text = newTokenText();
   const scopes = [...new Set(wish.scopes)];
   const token = await context.db.write(async (writer) => {

@@ -7,7 +7,8 @@ import { Project } from "../../db/models/Project.ts";
 import { Waiver } from "../../db/models/Waiver.ts";
 import type { PersonActor } from "../../http/actor.ts";
 import type { PageRequest } from "../../http/paging.ts";
-import { Conflict, Invalid, NotFound } from "../../http/problem.ts";
+import { Conflict, NotFound } from "../../http/problem.ts";
+import { timeToCome } from "../../http/validate.ts";
 import { audit } from "../audit/audit.ts";
 
 /** Newest first, one more than the page holds. */
@@ -35,8 +36,7 @@ export function askForWaiver(
   wish: z.output<typeof createWaiver>,
 ): Promise<Waiver> {
   const now = Date.now();
-  const expiresAt = Date.parse(wish.expiresAt);
-  if (expiresAt <= now) throw new Invalid([{ pointer: "#/expiresAt", detail: "must be in the future" }]);
+  const expiresAt = timeToCome(wish.expiresAt, "#/expiresAt", now);
   return context.db.write(async (writer) => {
     const waiver = await writer.create(Waiver, {
       projectId: project.id,
