@@ -18,6 +18,10 @@ export const JSON_ENTRY_LIMIT = 250_000;
 /** References and steps of one block that the source planes can name. */
 export const MAX_REFERENCES = 32;
 export const MAX_SWEEP_STEPS = 64;
+/** Builds after which an entry that was not checked again counts as unreferenced; a project may set its own. */
+export const DEFAULT_CHECK_LIMIT = 20;
+/** Ages are kept in one byte, of which the last value means "never checked". */
+export const MAX_CHECK_LIMIT = 250;
 /** Problems listed in one 422 answer. */
 export const MAX_LISTED_ERRORS = 50;
 export const PAGE_LIMIT = { default: 50, max: 500 } as const;

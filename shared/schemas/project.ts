@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { MAX_CHECK_LIMIT } from "../domain/limits.ts";
 import { GATE_CODES, GATE_SEVERITIES, VERDICTS } from "../domain/vocabulary.ts";
 import { ROLES } from "../domain/roles.ts";
 import { summaryCounts } from "./build.ts";
@@ -41,6 +42,8 @@ export const patchProject = z
     tolerances: z.strictObject(tolerances).partial().optional(),
     /** All rules: the list replaces the one before. They hold for builds posted from then on. */
     toleranceRules: z.array(toleranceRule).max(500).optional(),
+    /** Builds after which an entry that was not checked again counts as unreferenced. */
+    checkLimit: z.number().int().min(1).max(MAX_CHECK_LIMIT).optional(),
   })
   .meta({ id: "PatchProject" });
 
@@ -54,6 +57,7 @@ export const project = z
     policy: z.record(z.enum(GATE_CODES), z.enum(GATE_SEVERITIES)),
     tolerances: z.object(tolerances),
     toleranceRules: z.array(toleranceRule),
+    checkLimit: z.number().int(),
     lanes: z.array(laneName),
     /** The caller's role; null for an administrator who is no member, and for tokens. */
     role: z.enum(ROLES).nullable(),

@@ -120,11 +120,11 @@ it("a file is put back as it was when a migration fails", async () => {
   const preparing = await connect(file);
   // A table in the way of the newest migration, once that is pending again.
   await migrator(preparing).down();
-  await preparing.query("CREATE TABLE lanes (id INTEGER)");
+  await preparing.query("CREATE TABLE coverages (id INTEGER)");
   await preparing.query("PRAGMA wal_checkpoint(TRUNCATE)");
   await preparing.close();
   const before = await readFile(file);
-  await expect(migrate(() => connect(file), file)).rejects.toThrow(/lanes/);
+  await expect(migrate(() => connect(file), file)).rejects.toThrow(/coverages/);
   expect((await readFile(file)).equals(before)).toBe(true);
   expect(existsSync(`${file}-wal`)).toBe(false);
   await removeFile(file);
@@ -156,7 +156,7 @@ it("a migration in whose midst the process ended is begun again from what was be
   // As it is left: the whole copy, and beside it a file with the first of the new tables.
   await copyFile(file, `${file}.migrating`);
   const killed = await connect(file);
-  await killed.query("CREATE TABLE lanes (id INTEGER)");
+  await killed.query("CREATE TABLE coverages (id INTEGER)");
   await killed.close();
   expect(await migrate(() => connect(file), file)).toEqual([MIGRATIONS.at(-1)?.name]);
   const after = await connect(file);

@@ -34,6 +34,7 @@ describe("projects", () => {
       policy: DEFAULT_GATE_POLICY,
       tolerances: DEFAULT_TOLERANCES,
       toleranceRules: [],
+      checkLimit: 20,
     });
     const again = await admin.post(api("/projects")).send({ slug: "rotor", name: "Rotor" });
     expect(again.status).toBe(409);

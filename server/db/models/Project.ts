@@ -1,5 +1,6 @@
 import { DataTypes, Model } from "sequelize";
 import type { CreationOptional, InferAttributes, InferCreationAttributes, Sequelize } from "sequelize";
+import { DEFAULT_CHECK_LIMIT } from "../../../shared/domain/limits.ts";
 
 /** A code base. */
 export class Project extends Model<InferAttributes<Project>, InferCreationAttributes<Project>> {
@@ -16,6 +17,8 @@ export class Project extends Model<InferAttributes<Project>, InferCreationAttrib
   declare tolerances: CreationOptional<string>;
   /** JSON: ToleranceRule[], for some of the blocks. */
   declare toleranceRules: CreationOptional<string>;
+  /** Builds after which an entry that was not checked again counts as unreferenced. */
+  declare checkLimit: CreationOptional<number>;
   declare createdAt: number;
 
   static initialise(sequelize: Sequelize): void {
@@ -29,6 +32,7 @@ export class Project extends Model<InferAttributes<Project>, InferCreationAttrib
         policy: { type: DataTypes.TEXT, allowNull: false, defaultValue: "{}" },
         tolerances: { type: DataTypes.TEXT, allowNull: false, defaultValue: "{}" },
         toleranceRules: { type: DataTypes.TEXT, allowNull: false, defaultValue: "[]" },
+        checkLimit: { type: DataTypes.INTEGER, allowNull: false, defaultValue: DEFAULT_CHECK_LIMIT },
         createdAt: { type: DataTypes.INTEGER, allowNull: false },
       },
       { sequelize, tableName: "projects", timestamps: false },

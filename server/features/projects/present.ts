@@ -4,7 +4,7 @@ import { roleOf } from "../../http/actor.ts";
 import type { Actor } from "../../http/actor.ts";
 import { abilities } from "../policies.ts";
 import type { Action } from "../policies.ts";
-import { policyOf, toleranceRulesOf, tolerancesOf } from "./settings.ts";
+import { checkLimitOf, policyOf, toleranceRulesOf, tolerancesOf } from "./settings.ts";
 import type { Trouble } from "./trouble.ts";
 
 const SHOWN_ACTIONS = [
@@ -29,6 +29,7 @@ export function presentProject(actor: Actor, project: Project, lanes: readonly s
     commitUrl: project.commitUrl ?? null,
     policy: policyOf(project),
     tolerances: tolerancesOf(project),
+    checkLimit: checkLimitOf(project),
     toleranceRules: toleranceRulesOf(project).map(({ selector, rtol, floorRel, floorAbs }) => ({
       selector,
       rtol,

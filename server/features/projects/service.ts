@@ -54,6 +54,7 @@ export function patchProject(
         commitUrl: wish.commitUrl === undefined ? before.commitUrl : wish.commitUrl,
         policy: laidOver(before.policy, wish.policy),
         tolerances: laidOver(before.tolerances, wish.tolerances),
+        checkLimit: wish.checkLimit ?? before.checkLimit,
         toleranceRules: wish.toleranceRules === undefined ? before.toleranceRules : JSON.stringify(wish.toleranceRules),
       },
       { id: project.id },

@@ -16,3 +16,8 @@ export function tolerancesOf(project: Pick<Project, "tolerances">): Tolerances {
 export function toleranceRulesOf(project: Pick<Project, "toleranceRules">): ToleranceRule[] {
   return JSON.parse(project.toleranceRules) as ToleranceRule[];
 }
+
+/** Builds after which an entry that was not checked again counts as unreferenced. */
+export function checkLimitOf(project: Pick<Project, "checkLimit">): number {
+  return project.checkLimit;
+}
