@@ -103,11 +103,13 @@ it("the newest migration alone leaves what older ones made as it was", async () 
   const file = await filledFile();
   const sequelize = await connect(file);
   const count = async () =>
-    sequelize.query("SELECT (SELECT count(*) FROM users) AS users, (SELECT count(*) FROM tokens) AS tokens", {
-      type: QueryTypes.SELECT,
-    });
+    sequelize.query(
+      `SELECT (SELECT count(*) FROM users) AS users, (SELECT count(*) FROM tokens) AS tokens,
+         (SELECT count(*) FROM blocks) AS blocks, (SELECT count(*) FROM build_blocks) AS ofBuilds`,
+      { type: QueryTypes.SELECT },
+    );
   const before = await count();
-  expect(before).toEqual([{ users: 1, tokens: 3 }]);
+  expect(before).toEqual([{ users: 1, tokens: 3, blocks: 1, ofBuilds: 1 }]);
   await migrator(sequelize).down();
   await migrator(sequelize).up();
   expect(await count()).toEqual(before);
