@@ -4,7 +4,7 @@ import type { Geometry } from "./geometry.ts";
 import type { Scheme } from "./scheme.ts";
 
 /** Step taken for a complex step that was posted without one, relative to L: any smaller one is as good. */
-const ASSUMED_COMPLEX_STEP = 1e-8;
+export const ASSUMED_COMPLEX_STEP = 1e-8;
 
 /**
  * Absolute step h per covered column; NaN where no usable step was posted: none, zero, not finite, or, for a

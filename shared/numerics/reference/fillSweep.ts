@@ -11,6 +11,11 @@ import type { SweepReader } from "./sweepReader.ts";
 const SAFETY_OF_MANY = 3;
 const SAFETY_OF_FEW = 10;
 
+/** Safety factor of an entry with n >= 2 steps. */
+export function sweepSafety(n: number): number {
+  return n >= NOISE_STEPS ? SAFETY_OF_MANY : SAFETY_OF_FEW;
+}
+
 /**
  * Estimates by a sweep of steps: per entry the value with the least error E (`leastSweepError`) and U = s E, s = 3
  * from four steps on, else 10, with the noise N = max(eta P, noise seen in the row) of `surveyRow`. An entry with one
@@ -58,7 +63,7 @@ export function fillSweep(
       let u: number;
       if (measured && n > 1) {
         leastSweepError(reader, n, scheme, noise, x, choice);
-        u = choice.error * (n >= NOISE_STEPS ? SAFETY_OF_MANY : SAFETY_OF_FEW);
+        u = choice.error * sweepSafety(n);
       } else {
         choice.index = n - 1;
         const h = reader.steps[n - 1];

@@ -10,6 +10,14 @@ export interface SweepChoice {
   error: number;
 }
 
+/** The parts of E by step, for those who want to see the whole sweep; the first step has none. */
+export interface SweepParts {
+  /** T_k. */
+  readonly truncation: Float64Array;
+  /** c N / h_k + |D_k| (u |x| / h_k + 4u). */
+  readonly rounding: Float64Array;
+}
+
 /**
  * The step k >= 2 of an entry with the least sum of truncation and rounding.
  *
@@ -17,7 +25,7 @@ export interface SweepChoice {
  * T_k = max(|d_k| / ((h_(k-1)/h_k)^p - 1), |d_k - e_k|), d_k = D_k - D_(k-1), and e_k what d_k would be if d_(k-1)
  * were truncation of order p alone: Richardson's estimate, not trusted further than the differences fall as it says.
  * Shapes: the first n >= 2 values of the reader. Units: those of the entry; `noise` N those of the output.
- * Writes to `choice`, allocates nothing.
+ * Writes to `choice`, and to `parts` where they are wanted; allocates nothing.
  * Source: L. F. Richardson, Phil. Trans. R. Soc. A 210:307-357, 1911, doi:10.1098/rsta.1911.0009.
  */
 export function leastSweepError(
@@ -27,6 +35,7 @@ export function leastSweepError(
   noise: number,
   x: number,
   choice: SweepChoice,
+  parts: SweepParts | null = null,
 ): void {
   const { values, steps } = reader;
   choice.index = 1;
@@ -48,7 +57,12 @@ export function leastSweepError(
       truncation = Math.max(truncation, Math.abs(change - expected));
     }
     const rounding = Math.abs(d) * UNIT_ROUNDOFF * (x / h + 4);
-    const error = truncation + (scheme.noisyValues * noise) / h + rounding;
+    const noisy = (scheme.noisyValues * noise) / h;
+    const error = truncation + noisy + rounding;
+    if (parts !== null) {
+      parts.truncation[k] = truncation;
+      parts.rounding[k] = noisy + rounding;
+    }
     if (error < choice.error) {
       choice.error = error;
       choice.index = k;

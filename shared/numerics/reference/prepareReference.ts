@@ -49,11 +49,15 @@ export function prepareReference(
   };
 }
 
+/** eta: the precision that was posted, where it is one, else the default. */
+export function precisionOf({ precision }: ReferenceNumbers): number {
+  return precision !== null && precision > 0 && precision < Infinity ? precision : DEFAULT_PRECISION;
+}
+
 function sourceOf(reference: ReferenceNumbers, scheme: Scheme | null, tolerances: Tolerances, sizes: Geometry): Source {
   const { values, step } = reference.steps[0];
   if (scheme === null) return exactSource(values, tolerances, sizes);
-  const stated = reference.precision ?? NaN;
-  const precision = stated > 0 && stated < Infinity ? stated : DEFAULT_PRECISION;
+  const precision = precisionOf(reference);
   if (reference.steps.length > 1) {
     const reader = sweepReader(reference.steps, sweepPlan(reference, scheme, sizes));
     return { posted: null, fill: (first, last, out) => fillSweep(reader, scheme, precision, sizes, first, last, out) };

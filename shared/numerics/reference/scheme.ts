@@ -8,9 +8,9 @@ export interface Scheme {
   readonly noisyValues: 0 | 1 | 2;
 }
 
-const ONE_SIDED: Scheme = { order: 1, noisyValues: 2 };
-const CENTRAL: Scheme = { order: 2, noisyValues: 1 };
-const COMPLEX: Scheme = { order: 2, noisyValues: 0 };
+export const ONE_SIDED: Scheme = { order: 1, noisyValues: 2 };
+export const CENTRAL: Scheme = { order: 2, noisyValues: 1 };
+export const COMPLEX: Scheme = { order: 2, noisyValues: 0 };
 
 /** Scheme of a method, or null where it has no step. */
 export function schemeOf(method: ReferenceMethod): Scheme | null {

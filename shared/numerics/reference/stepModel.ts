@@ -17,17 +17,22 @@ import type { Scheme } from "./scheme.ts";
  * W. Squire, G. Trapp, SIAM Review 40(1):110-112, 1998, doi:10.1137/S003614459631241X (complex step);
  * the safety factors were set on the problems of More, Garbow & Hillstrom (tests/numerics/published.test.ts).
  */
-const TRUNCATION_SAFETY = 10;
-const NOISE_SAFETY = 3;
+export const TRUNCATION_SAFETY = 10;
+export const NOISE_SAFETY = 3;
 const COMPLEX_PRECISIONS = 8;
 const COMPLEX_SAFETY = 2;
 /** An entry this small beside its row tells nothing of its own curvature. */
 const NEGLIGIBLE = 1e-3;
 
+/** What the truncation is of S: h/2L or h^2/6L^2; h and L in the unit of the input, both > 0. */
+export function truncationShare(scheme: Scheme, h: number, length: number): number {
+  const ratio = h / length;
+  return scheme.order === 1 ? ratio / 2 : (ratio * ratio) / 6;
+}
+
 /** Dimensionless; h and L in the unit of the input, both > 0. */
 export function truncationFactor(scheme: Scheme, h: number, precision: number, length: number): number {
-  const ratio = h / length;
-  const share = scheme.order === 1 ? ratio / 2 : (ratio * ratio) / 6;
+  const share = truncationShare(scheme, h, length);
   if (scheme.noisyValues === 0)
     return finite(COMPLEX_PRECISIONS * Math.max(precision, DEFAULT_PRECISION) + COMPLEX_SAFETY * share);
   return finite(TRUNCATION_SAFETY * share);
