@@ -1,5 +1,7 @@
 import { move, transferableSymbol, valueSymbol } from "piscina";
 import { collectGarbage } from "./collectGarbage.ts";
+import { judgeCoverage } from "./judgeCoverage.ts";
+import type { CoverageTask, JudgedCoverage } from "./judgeCoverage.ts";
 import { judgeMotion } from "./judgeMotion.ts";
 import type { JudgedMotion, MotionTask } from "./judgeMotion.ts";
 import { judgePosting } from "./judgePosting.ts";
@@ -27,6 +29,11 @@ export function posting(task: Posting): PostingOutcome {
 export function motion(task: MotionTask): JudgedMotion {
   const judged = judgeMotion(task);
   return handOver(judged, judged.tiles);
+}
+
+export function coverage(task: CoverageTask): JudgedCoverage | null {
+  const judged = judgeCoverage(task);
+  return judged && handOver(judged, judged.tiles);
 }
 
 /** Gives the tiles to the other thread instead of copying them: what the pool's caller receives is `value`. */

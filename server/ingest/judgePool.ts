@@ -1,4 +1,5 @@
 import { Piscina } from "piscina";
+import type { CoverageTask, JudgedCoverage } from "./judgeCoverage.ts";
 import type { JudgedMotion, MotionTask } from "./judgeMotion.ts";
 import type { Posting, JudgedPosting } from "./judgePosting.ts";
 import type { PostingOutcome } from "./judge.worker.ts";
@@ -9,6 +10,7 @@ export interface JudgePool {
   /** Takes the body's memory with it. @throws RejectedPosting */
   posting(task: Posting): Promise<JudgedPosting>;
   motion(task: MotionTask): Promise<JudgedMotion>;
+  coverage(task: CoverageTask): Promise<JudgedCoverage | null>;
   close(): Promise<void>;
 }
 
@@ -30,6 +32,7 @@ export function createJudgePool(options: { readonly threads: number }): JudgePoo
       return outcome.judged;
     },
     motion: (task) => pool.run(task, { name: "motion" }) as Promise<JudgedMotion>,
+    coverage: (task) => pool.run(task, { name: "coverage" }) as Promise<JudgedCoverage | null>,
     close: () => pool.close(),
   };
 }

@@ -16,6 +16,7 @@ export const PLANE_KIND = {
   inputValues: 8,
   posted: 9,
   motion: 10,
+  age: 11,
 } as const;
 export type PlaneName = keyof typeof PLANE_KIND;
 
@@ -30,6 +31,7 @@ export const PLANE_WIDTH: Record<PlaneName, Width> = {
   inputValues: 8,
   posted: 8,
   motion: 1,
+  age: 1,
 };
 
 const NAME_OF = new Map<number, PlaneName>(Object.entries(PLANE_KIND).map(([name, kind]) => [kind, name as PlaneName]));

@@ -5,6 +5,7 @@ import { fromWire } from "../../shared/schemas/common.ts";
 import type { Reader } from "../db/reader.ts";
 import type { Writer } from "../db/write.ts";
 import type { StoredWorst } from "../ingest/judgePosting.ts";
+import { COUNTS_SQL, JOIN_COVERAGE } from "./countsSql.ts";
 
 /** JSON of a complete build's `summary` column: what lists and the strip show of it without reading its blocks. */
 export interface BuildSummary {
@@ -16,6 +17,8 @@ export interface BuildSummary {
 /** A judged block as sums are made of it. */
 export interface SummedBlock extends VerdictCounts {
   readonly blockId: number;
+  /** Entries whose verdict is that of an earlier build. */
+  readonly carried: number;
   /** JSON: StoredWorst, or null. */
   readonly worst: string | null;
 }
@@ -23,9 +26,8 @@ export interface SummedBlock extends VerdictCounts {
 /** Adds up the blocks that a build has so far; of equally bad entries the first by its block's names is the worst. */
 export async function sumUpBuild(reader: Reader, buildId: number): Promise<BuildSummary> {
   const blocks = await reader.select<SummedBlock>(
-    `SELECT bb.blockId, s.rowCount * s.columnCount AS entries,
-       s.agrees, s.disagrees, s.unresolved, s.unreferenced, s.invalid, s.worst
-     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId
+    `SELECT bb.blockId, ${COUNTS_SQL}, s.worst
+     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId ${JOIN_COVERAGE}
      WHERE bb.buildId = $1 ORDER BY b.model, b.output, b.input, b.point`,
     [buildId],
   );
@@ -38,11 +40,17 @@ export async function summaryOf(
   reader: Reader,
   build: { readonly id: number; readonly summary: string | null },
 ): Promise<BuildSummary> {
-  return build.summary === null ? sumUpBuild(reader, build.id) : (JSON.parse(build.summary) as BuildSummary);
+  return build.summary === null ? sumUpBuild(reader, build.id) : readSummary(build.summary);
 }
 
-export function addUp(blocks: readonly VerdictCounts[]): SummaryCounts {
-  const sum = (name: keyof VerdictCounts) => blocks.reduce((total, block) => total + block[name], 0);
+/** What was stored before entries were carried has none that are. */
+export function readSummary(stored: string): BuildSummary {
+  const { counts, worst } = JSON.parse(stored) as BuildSummary;
+  return { counts: { ...counts, carried: counts.carried ?? 0 }, worst };
+}
+
+export function addUp(blocks: readonly (VerdictCounts & Pick<SummedBlock, "carried">)[]): SummaryCounts {
+  const sum = (name: keyof VerdictCounts | "carried") => blocks.reduce((total, block) => total + block[name], 0);
   return {
     blocks: blocks.length,
     entries: sum("entries"),
@@ -51,6 +59,7 @@ export function addUp(blocks: readonly VerdictCounts[]): SummaryCounts {
     unresolved: sum("unresolved"),
     unreferenced: sum("unreferenced"),
     invalid: sum("invalid"),
+    carried: sum("carried"),
   };
 }
 

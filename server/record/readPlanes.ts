@@ -36,6 +36,13 @@ export async function loadSnapshots(reader: Reader, ids: Iterable<number>): Prom
   );
 }
 
+/** The snapshot as its build tells it once earlier checks are heard; `coverage` null: as its own numbers tell it. */
+export function withCoverage(snapshot: SnapshotPlanes, coverage: Buffer | null): SnapshotPlanes {
+  if (coverage === null) return snapshot;
+  const own = snapshot.planes.filter((plane) => plane.name !== "verdict");
+  return { ...snapshot, planes: [...unpackPlanes(coverage), ...own] };
+}
+
 export async function loadTiles(reader: Reader, ids: Iterable<number>): Promise<Map<number, StoredTile>> {
   const rows = await reader.select<{ id: number; encoding: number; data: Buffer }>(
     "SELECT id, encoding, data FROM tiles WHERE id IN (SELECT value FROM json_each($1))",

@@ -30,7 +30,7 @@ export async function storeTiles(w: Writer, packed: PackedTiles): Promise<Uint32
 /** Ids of the rows of a content-addressed table whose hash is one of those given, by `hashKey`. */
 export async function idsByHash(
   w: Writer,
-  table: "tiles" | "snapshots" | "motions" | "block_details",
+  table: "tiles" | "snapshots" | "motions" | "coverages" | "block_details",
   hashes: readonly Uint8Array[],
 ): Promise<Map<string, number>> {
   const ids = new Map<string, number>();

@@ -8,6 +8,7 @@ import type { LaneBuild, LaneBuilds } from "../record/laneBuilds.ts";
 import { updateBaselines } from "./baselines.ts";
 import { describeBreak } from "./describeBreak.ts";
 import type { BreakDescription } from "./describeBreak.ts";
+import { updateCoverages } from "./coverage.ts";
 import { addEverBad } from "./everBad.ts";
 import { loadLaneTests } from "./laneTests.ts";
 import { matchBreaks, sameParts } from "./matchBreaks.ts";
@@ -43,16 +44,34 @@ export async function settleProject(
   now: number,
 ): Promise<void> {
   const project = await loadGraph(w, projectId);
-  const lanes = await w.select<{ id: number }>("SELECT id FROM lanes WHERE projectId = $1 ORDER BY id", [projectId]);
-  for (const { id: laneId } of lanes) {
+  const [{ checkLimit }] = await w.select<{ checkLimit: number }>("SELECT checkLimit FROM projects WHERE id = $1", [
+    projectId,
+  ]);
+  for (const laneId of await loadLaneIds(w, projectId)) {
     const buildId = arrival?.laneId === laneId ? arrival.buildId : null;
     const builds = await loadLaneBuilds(w, laneId);
     const rebased = await updateBaselines(w, builds, project.graph, buildId);
     for (const one of rebased) await updateMotions(w, judge, one);
+    await updateCoverages(w, judge, project.graph, builds.all, rebased, checkLimit);
     if (buildId !== null) await addEverBad(w, laneId, buildId);
     const moved = new Set(rebased.map((one) => one.buildId));
     await retrace(w, project, { projectId, laneId }, builds, moved, now);
   }
+}
+
+/** Tells anew, with another limit, what every build says of the entries that it did not check itself. */
+export async function retellCoverage(w: Writer, judge: JudgePool, projectId: number, limit: number): Promise<void> {
+  const { graph } = await loadGraph(w, projectId);
+  for (const laneId of await loadLaneIds(w, projectId)) {
+    const { all } = await loadLaneBuilds(w, laneId);
+    const every = all.map(({ id, baselineBuildId }) => ({ buildId: id, baselineBuildId }));
+    await updateCoverages(w, judge, graph, all, every, limit);
+  }
+}
+
+async function loadLaneIds(w: Writer, projectId: number): Promise<number[]> {
+  const lanes = await w.select<{ id: number }>("SELECT id FROM lanes WHERE projectId = $1 ORDER BY id", [projectId]);
+  return lanes.map(({ id }) => id);
 }
 
 /** `moved`: builds whose motions were told anew. */

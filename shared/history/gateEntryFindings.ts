@@ -25,7 +25,8 @@ function codeOf(entry: GateEntry): EntryCode | null {
   if (entry.verdict === "invalid") return entry.badAtBase ? null : "invalid-values";
   const bound = entry.waivedUpTo;
   if (bound === null) return entry.badAtBase ? null : "new-break";
-  if (entry.error <= bound) return null;
+  // What was not checked again was within its bound when it was, or found then.
+  if (entry.error <= bound || Number.isNaN(entry.error)) return null;
   const notNew = entry.badAtBase && (entry.errorAtBase ?? 0) > bound;
   return notNew ? null : "worse-than-waiver";
 }
@@ -57,19 +58,20 @@ function message(code: EntryCode, entries: readonly GateEntry[], block: GateBloc
   const what = one ? "one entry" : `${entries.length} entries`;
   const where = blockCount > 1 ? `${what} in ${blockCount} blocks, among them ${name},` : `${what} of ${name}`;
   const at = `row ${worst.row}, column ${worst.column}`;
-  const error = worst.error.toPrecision(2);
+  const error = Number.isNaN(worst.error) ? "as last checked" : `relative error ${worst.error.toPrecision(2)}`;
   const since = base === null ? "" : ` and ${one ? "was" : "were"} not so at ${base.slice(0, 12)}`;
   if (code === "invalid-values")
     return `${where} ${one ? "is no finite number" : "are no finite numbers"}${since} (${at})`;
   if (code === "new-break") {
-    return `${where} ${one ? "disagrees with its" : "disagree with their"} reference${since} (${one ? "" : "worst: "}${at}, relative error ${error})`;
+    return `${where} ${one ? "disagrees with its" : "disagree with their"} reference${since} (${one ? "" : "worst: "}${at}, ${error})`;
   }
-  const bound = `${at}, relative error ${error}, waived up to ${worst.waivedUpTo!.toPrecision(2)}`;
+  const bound = `${at}, ${error}, waived up to ${worst.waivedUpTo!.toPrecision(2)}`;
   return `${where} ${one ? "is worse than its waiver allows" : "are worse than their waivers allow"} (${one ? "" : "worst: "}${bound})`;
 }
 
-/** What is not finite is worse than any number. */
+/** What is not finite is worse than any number; what was not checked again has none. */
 function magnitude(entry: GateEntry): number {
+  if (entry.verdict === "disagrees" && Number.isNaN(entry.error)) return 0;
   return Number.isFinite(entry.error) ? entry.error : Infinity;
 }
 

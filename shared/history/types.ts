@@ -139,6 +139,7 @@ export interface GateEntry {
   readonly row: number;
   readonly column: number;
   readonly verdict: "disagrees" | "invalid";
+  /** Relative error; NaN where the entry is invalid, or keeps the verdict of an earlier build. */
   readonly error: number;
   /** True where the base commit's build has the same entry bad already. */
   readonly badAtBase: boolean;

@@ -47,6 +47,8 @@ export const blockRow = z
     rows: z.number().int(),
     columns: z.number().int(),
     counts,
+    /** Entries that this build did not check and that keep an earlier verdict, and the age of the oldest in builds. */
+    carried: z.object({ entries: z.number().int(), oldest: z.number().int() }).nullable(),
     rtol: z.number(),
     floor: z.number(),
     /** Largest finite resolution over the entries: what the weakest reference could see. */
@@ -100,6 +102,11 @@ export const blockDetail = blockRow
     motionPlane: codes.nullable(),
     /** Index into `references` of the reference an entry was judged with (255 or null = none). */
     source: z.union([z.array(z.number().nullable()), z.string()]),
+    /**
+     * Builds since an entry was checked (255 or null = too long ago or never); null where this build checked whatever
+     * has a verdict.
+     */
+    age: z.union([z.array(z.number().nullable()), z.string()]).nullable(),
     uncertaintyKind: z.enum(UNCERTAINTY_KINDS).nullable(),
     /** What the reference asked for by `posted` and `step` said; null or NaN where it said nothing. */
     posted: plane.optional(),
@@ -135,6 +142,8 @@ export const historyItem = z
     uncertainty: wireNumber.nullable(),
     error: wireNumber.nullable(),
     verdict: z.enum(VERDICTS),
+    /** Builds since the entry was checked: 0 in this one; null where its verdict is of no build. */
+    age: z.number().int().nullable(),
     motion: z.enum(MOTIONS).nullable(),
     drift: z.object({ decades: z.number(), cusum: z.number() }).nullable(),
     event: z.enum(["break", "repair", "climb", "jump"]).nullable(),

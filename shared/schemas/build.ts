@@ -151,7 +151,13 @@ export const counts = z
   })
   .meta({ id: "Counts" });
 export type Counts = z.infer<typeof counts>;
-export const summaryCounts = counts.extend({ blocks: z.number().int() }).meta({ id: "SummaryCounts" });
+export const summaryCounts = counts
+  .extend({
+    blocks: z.number().int(),
+    /** Entries that this build did not check: they count with the verdict of an earlier one. */
+    carried: z.number().int(),
+  })
+  .meta({ id: "SummaryCounts" });
 export type SummaryCounts = z.infer<typeof summaryCounts>;
 
 /** Answer to a posting. */

@@ -25,9 +25,10 @@ export async function recordOf(reader: Reader, projectId: number) {
     [projectId],
   );
   const motions = await reader.select(
-    `SELECT b.runId, k.model, hex(s.hash) AS snapshot, m.counts, hex(m.hash) AS motion
+    `SELECT b.runId, k.model, hex(s.hash) AS snapshot, m.counts, hex(m.hash) AS motion, hex(v.hash) AS coverage, v.counts AS covered
      FROM build_blocks bb JOIN builds b ON b.id = bb.buildId JOIN blocks k ON k.id = bb.blockId
      JOIN snapshots s ON s.id = bb.snapshotId LEFT JOIN motions m ON m.id = bb.motionId
+     LEFT JOIN coverages v ON v.id = bb.coverageId
      WHERE b.projectId = $1 ORDER BY b.runId, k.model, k.point`,
     [projectId],
   );

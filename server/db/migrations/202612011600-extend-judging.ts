@@ -21,8 +21,6 @@ CREATE TABLE block_drifts (
   laneId INTEGER NOT NULL REFERENCES lanes(id) ON DELETE CASCADE,
   blockId INTEGER NOT NULL REFERENCES blocks(id) ON DELETE CASCADE,
   columnCount INTEGER NOT NULL,
-  builds INTEGER NOT NULL,
-  firstRuns TEXT NOT NULL,
   lastSnapshotId INTEGER NOT NULL REFERENCES snapshots(id),
   repeats INTEGER NOT NULL,
   quiet INTEGER NOT NULL,

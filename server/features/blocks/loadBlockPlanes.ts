@@ -23,11 +23,14 @@ export interface BlockPlanes {
   readonly source: Uint8Array;
   /** Null where there is no build to compare with. */
   readonly motion: Uint8Array | null;
+  /** Builds since an entry was checked, 255 = too long ago or never; null where this build checked all that it tells. */
+  readonly age: Uint8Array | null;
 }
 
 export interface PlanesWanted {
   readonly snapshotPlanes: Buffer;
   readonly motionPlanes: Buffer | null;
+  readonly coveragePlanes: Buffer | null;
   readonly columns: number;
   readonly floor: number;
   readonly window: Window;
@@ -41,14 +44,16 @@ export async function loadBlockPlanes(reader: Reader, wanted: PlanesWanted): Pro
   const reference = new Float64Array(await cut("reference"));
   const resolution = new Float32Array(await cut("resolution"));
   const { floor } = wanted;
+  const coverage = wanted.coveragePlanes && unpackPlanes(wanted.coveragePlanes);
   return {
     derivative,
     reference,
     uncertainty: Float64Array.from(resolution, (share, at) => absoluteUncertainty(share, reference[at], floor)),
     error: relativeErrors(derivative, reference, floor, new Float64Array(derivative.length)),
-    verdict: new Uint8Array(await cut("verdict")),
+    verdict: new Uint8Array(await cut("verdict", coverage ?? planes)),
     source: new Uint8Array(await cut("source")),
     motion: wanted.motionPlanes && new Uint8Array(await cut("motion", unpackPlanes(wanted.motionPlanes))),
+    age: coverage && new Uint8Array(await cut("age", coverage)),
   };
 }
 

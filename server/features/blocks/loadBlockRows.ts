@@ -1,5 +1,6 @@
 import type { Reader } from "../../db/reader.ts";
 import type { SummedBlock } from "../../record/buildSummary.ts";
+import { COUNTS_SQL, JOIN_COVERAGE } from "../../record/countsSql.ts";
 
 /** A block of a build with everything but its numbers. */
 export interface LoadedBlock extends SummedBlock {
@@ -24,15 +25,20 @@ export interface LoadedBlock extends SummedBlock {
   /** JSON: MotionCounts, or null. */
   readonly motionCounts: string | null;
   readonly motionPlanes: Buffer | null;
+  /** Builds since the entry was checked that was left longest; null where this build checked all that ever were. */
+  readonly oldest: number | null;
+  /** Verdicts and ages with earlier checks heard, or null. */
+  readonly coveragePlanes: Buffer | null;
 }
 
 const SELECT = `
   SELECT bb.blockId, bb.buildId, c.sha, l.name AS lane, b.model, b.point, b.output, b.input, bb.snapshotId,
-    s.rowCount, s.columnCount, s.rowCount * s.columnCount AS entries, s.rtol, s.floor, s.agrees, s.disagrees, s.unresolved, s.unreferenced, s.invalid,
+    s.rowCount, s.columnCount, s.rtol, s.floor, ${COUNTS_SQL}, v.counts ->> '$.oldest' AS oldest, v.planes AS coveragePlanes,
     s.worst, s.resolutions, d.details, bb.costs, m.counts AS motionCounts, m.planes AS motionPlanes
   FROM build_blocks bb JOIN builds u ON u.id = bb.buildId JOIN commits c ON c.id = u.commitId
   JOIN lanes l ON l.id = u.laneId JOIN blocks b ON b.id = bb.blockId JOIN snapshots s ON s.id = bb.snapshotId
-  JOIN block_details d ON d.id = bb.detailsId LEFT JOIN motions m ON m.id = bb.motionId`;
+  JOIN block_details d ON d.id = bb.detailsId LEFT JOIN motions m ON m.id = bb.motionId
+  ${JOIN_COVERAGE}`;
 
 /** All blocks of a build. */
 export function loadBlockRows(reader: Reader, projectId: number, buildId: number): Promise<LoadedBlock[]> {

@@ -17,6 +17,7 @@ export function presentBlockRow(block: LoadedBlock): BlockRow {
     rows: block.rowCount,
     columns: block.columnCount,
     counts: { entries, agrees, disagrees, unresolved, unreferenced, invalid },
+    carried: block.oldest === null ? null : { entries: block.carried, oldest: block.oldest },
     rtol: block.rtol,
     floor: block.floor,
     resolution: weakestResolution(block),

@@ -20,6 +20,8 @@ export function presentBlockDetail(
   const details = JSON.parse(block.details) as BlockDetails;
   const costs = block.costs === null ? null : (JSON.parse(block.costs) as BlockCosts);
   const numbers = (values: Float64Array) => (format === "f64le" ? base64(values) : Array.from(values, toWireOrNull));
+  const indices = (codes: Uint8Array) =>
+    format === "f64le" ? base64(codes) : Array.from(codes, (code) => (code === NONE ? null : code));
   const words = (codes: Uint8Array, list: readonly string[]) =>
     format === "f64le" ? base64(codes) : Array.from(codes, (code) => list[code] ?? null);
   return {
@@ -35,10 +37,8 @@ export function presentBlockDetail(
     error: numbers(planes.error),
     verdict: words(planes.verdict, VERDICTS),
     motionPlane: planes.motion && words(planes.motion, MOTIONS),
-    source:
-      format === "f64le"
-        ? base64(planes.source)
-        : Array.from(planes.source, (index) => (index === NONE ? null : index)),
+    age: planes.age && indices(planes.age),
+    source: indices(planes.source),
     uncertaintyKind: commonKind(details, planes.source),
     ...(posted === null ? {} : { posted: numbers(posted) }),
     outputValues: sides.outputValues && Array.from(sides.outputValues, toWire),

@@ -90,8 +90,15 @@ export const routes: Route[] = [
       if (block === null) throw new NotFound();
       const window = windowOf(query, block.rowCount, block.columnCount);
       const snapshotPlanes = await loadPlanesOf(db, block);
-      const { motionPlanes, columnCount: columns, floor } = block;
-      const planes = await loadBlockPlanes(db, { snapshotPlanes, motionPlanes, columns, floor, window });
+      const { motionPlanes, coveragePlanes, columnCount: columns, floor } = block;
+      const planes = await loadBlockPlanes(db, {
+        snapshotPlanes,
+        motionPlanes,
+        coveragePlanes,
+        columns,
+        floor,
+        window,
+      });
       const sides = {
         outputValues: await loadSideValues(db, snapshotPlanes, "outputValues", block.rowCount),
         inputValues: await loadSideValues(db, snapshotPlanes, "inputValues", block.columnCount),

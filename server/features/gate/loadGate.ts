@@ -2,8 +2,10 @@ import type { GatePolicy } from "../../../shared/domain/vocabulary.ts";
 import { decideGate } from "../../../shared/history/decideGate.ts";
 import { nearestJudgedAncestor } from "../../../shared/history/nearestJudgedAncestor.ts";
 import type { GateBlock, GateOutcome } from "../../../shared/history/types.ts";
+import type { VerdictCounts } from "../../../shared/numerics/types.ts";
 import type { Reader } from "../../db/reader.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
+import { COUNTS_SQL, JOIN_COVERAGE } from "../../record/countsSql.ts";
 import { findLane, loadLaneBuilds } from "../../record/laneBuilds.ts";
 import { loadGateEntries } from "./loadGateEntries.ts";
 
@@ -25,6 +27,8 @@ export interface GateAnswer extends GateOutcome {
 export interface GateBlockRow extends GateBlock {
   readonly snapshotId: number;
   readonly bad: number;
+  /** Verdicts with earlier checks heard, or null where the build's own stand. */
+  readonly coveragePlanes: Buffer | null;
   readonly output: string;
   readonly input: string;
   readonly point: string;
@@ -64,14 +68,19 @@ async function isReceiving(reader: Reader, laneId: number, sha: string): Promise
 }
 
 async function loadBlocks(reader: Reader, buildId: number): Promise<GateBlockRow[]> {
-  const rows = await reader.select<Omit<GateBlockRow, "blockId" | "block"> & { blockId: number }>(
-    `SELECT bb.blockId, bb.snapshotId, b.model, b.output, b.input, b.point,
-       s.unreferenced, s.unresolved, s.disagrees + s.invalid AS bad, s.rowCount * s.columnCount AS entries
-     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId
+  type Row = Omit<GateBlockRow, "blockId" | "block" | "bad"> & VerdictCounts & { readonly blockId: number };
+  const rows = await reader.select<Row>(
+    `SELECT bb.blockId, bb.snapshotId, b.model, b.output, b.input, b.point, ${COUNTS_SQL}, v.planes AS coveragePlanes
+     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId ${JOIN_COVERAGE}
      WHERE bb.buildId = $1`,
     [buildId],
   );
-  return rows.map((row) => ({ ...row, blockId: String(row.blockId), block: blockName(row) }));
+  return rows.map((row) => ({
+    ...row,
+    bad: row.disagrees + row.invalid,
+    blockId: String(row.blockId),
+    block: blockName(row),
+  }));
 }
 
 /** As people read it; the point is told only where it is not the usual one. */

@@ -4,7 +4,7 @@ import type { GateEntry } from "../../../shared/history/types.ts";
 import { relativeError } from "../../../shared/numerics/verdict/relativeError.ts";
 import type { Reader } from "../../db/reader.ts";
 import { unpackEntries } from "../../record/entryList.ts";
-import { loadSnapshots, loadSparsePlanes } from "../../record/readPlanes.ts";
+import { loadSnapshots, loadSparsePlanes, withCoverage } from "../../record/readPlanes.ts";
 import type { SnapshotPlanes, SparsePlane } from "../../record/readPlanes.ts";
 import { loadBadEntries } from "../../trace/everBad.ts";
 import type { StoredTrace } from "../../trace/storedTrace.ts";
@@ -38,7 +38,7 @@ export async function loadGateEntries(
   const waivers = await loadActiveWaivers(reader, place.projectId, now);
   const before = new Map(baseBlocks.map((block) => [block.blockId, block]));
   const changed = suspicious.filter((block) => {
-    const same = before.get(block.blockId)?.snapshotId === block.snapshotId;
+    const same = before.get(block.blockId)?.snapshotId === block.snapshotId && block.coveragePlanes === null;
     return !same || waivers.some(({ selector }) => selects(selector, block, place.lane));
   });
   if (changed.length === 0) return [];
@@ -50,8 +50,10 @@ export async function loadGateEntries(
   const entries: GateEntry[] = [];
   for (const block of changed) {
     const then = before.get(block.blockId);
-    const snapshot = snapshots.get(block.snapshotId) as SnapshotPlanes;
-    const base = then ? (snapshots.get(then.snapshotId) as SnapshotPlanes) : null;
+    const told = (one: GateBlockRow) =>
+      withCoverage(snapshots.get(one.snapshotId) as SnapshotPlanes, one.coveragePlanes);
+    const snapshot = told(block);
+    const base = then ? told(then) : null;
     const covering = waivers.filter(({ selector }) => selects(selector, block, place.lane));
     entries.push(...(await entriesOf(reader, block, snapshot, base, covering, breakOf)));
   }

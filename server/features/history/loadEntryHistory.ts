@@ -1,8 +1,8 @@
-import { MOTIONS } from "../../../shared/domain/vocabulary.ts";
+import { MOTIONS, VERDICTS } from "../../../shared/domain/vocabulary.ts";
+import { NEVER_CHECKED } from "../../../shared/numerics/coverage/carryVerdicts.ts";
 import type { HistoryItem } from "../../../shared/schemas/block.ts";
 import type { Reader } from "../../db/reader.ts";
 import { timeOrNull } from "../../http/present.ts";
-import { unpackPlanes } from "../../ingest/planes.ts";
 import { loadCommitFacts } from "../../record/commitFacts.ts";
 import { commitColumns } from "../../record/commitColumns.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
@@ -12,6 +12,7 @@ import { loadLaneBuilds } from "../../record/laneBuilds.ts";
 import { loadEntryNumbers } from "../../record/readEntry.ts";
 import { loadSnapshots } from "../../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../../record/readPlanes.ts";
+import { loadEntryCodes } from "./loadEntryCodes.ts";
 
 export interface EntryWanted {
   readonly projectId: number;
@@ -29,6 +30,7 @@ interface BuildOfBlock {
   readonly buildId: number;
   readonly snapshotId: number;
   readonly motionId: number | null;
+  readonly coverageId: number | null;
 }
 
 /**
@@ -44,14 +46,22 @@ export async function loadEntryHistory(reader: Reader, wanted: EntryWanted): Pro
   );
   const holding = [...snapshots.values()].filter(({ rows, columns }) => row < rows && column < columns);
   const numbers = await loadNumbers(reader, holding, row, column);
-  const motions = await loadMotions(reader, builds, snapshots, row, column);
+  const codesOf = (name: "motion" | "verdict" | "age", idOf: (build: BuildOfBlock) => number | null) =>
+    loadEntryCodes(
+      reader,
+      name,
+      builds.map((build) => ({ id: idOf(build), entry: entryIn(snapshots, build, row, column) })),
+    );
+  const motions = await codesOf("motion", (build) => build.motionId);
+  const verdicts = await codesOf("verdict", (build) => build.coverageId);
+  const ages = await codesOf("age", (build) => build.coverageId);
   const events = await loadEvents(reader, laneId, blockId, snapshots, row, column);
   const commits = await loadCommitFacts(
     reader,
     projectId,
     builds.map((build) => build.sha),
   );
-  return builds.flatMap(({ sha, buildId, snapshotId, motionId }) => {
+  return builds.flatMap(({ sha, buildId, snapshotId }, at) => {
     const values = numbers.get(snapshotId);
     if (values === undefined) return [];
     const commit = commits.get(sha);
@@ -63,12 +73,29 @@ export async function loadEntryHistory(reader: Reader, wanted: EntryWanted): Pro
         author: commit?.author ?? null,
         committedAt: timeOrNull(commit?.committedAt ?? null),
         ...values,
-        motion: motionId === null ? null : (motions.get(`${motionId} ${snapshotId}`) ?? null),
+        verdict: VERDICTS[verdicts[at] ?? NaN] ?? values.verdict,
+        age: ageOf(ages[at], values.verdict),
+        motion: MOTIONS[motions[at] ?? NaN] ?? null,
         drift: null,
         event: events.get(sha) ?? null,
       },
     ];
   });
+}
+
+function entryIn(
+  snapshots: ReadonlyMap<number, SnapshotPlanes>,
+  { snapshotId }: BuildOfBlock,
+  row: number,
+  column: number,
+): number {
+  return row * (snapshots.get(snapshotId)?.columns ?? 0) + column;
+}
+
+/** Builds since the entry was checked: what earlier checks say, or this build itself. */
+function ageOf(carried: number | null, own: HistoryItem["verdict"]): number | null {
+  if (carried !== null) return carried === NEVER_CHECKED ? null : carried;
+  return own === "unreferenced" ? null : 0;
 }
 
 async function loadBuildsOfBlock(
@@ -78,7 +105,7 @@ async function loadBuildsOfBlock(
   const project = await loadGraph(reader, wanted.projectId);
   const { speaking } = await loadLaneBuilds(reader, wanted.laneId);
   const rows = await reader.select<BuildOfBlock>(
-    "SELECT buildId, snapshotId, motionId FROM build_blocks WHERE blockId = $1",
+    "SELECT buildId, snapshotId, motionId, coverageId FROM build_blocks WHERE blockId = $1",
     [wanted.blockId],
   );
   const ofBuild = new Map(rows.map((row) => [row.buildId, row]));
@@ -117,28 +144,6 @@ async function loadNumbers(
       return [id, presentEntryValues(entryValuesOf(stored, floor))];
     }),
   );
-}
-
-/** By motion and snapshot (which tells the shape). */
-async function loadMotions(
-  reader: Reader,
-  builds: readonly BuildOfBlock[],
-  snapshots: ReadonlyMap<number, SnapshotPlanes>,
-  row: number,
-  column: number,
-): Promise<Map<string, HistoryItem["motion"]>> {
-  const moved = builds.filter((build) => build.motionId !== null);
-  const stored = await reader.select<{ id: number; planes: Buffer }>(
-    "SELECT id, planes FROM motions WHERE id IN (SELECT value FROM json_each($1))",
-    [JSON.stringify([...new Set(moved.map((build) => build.motionId))])],
-  );
-  const planesById = new Map(stored.map(({ id, planes }) => [id, unpackPlanes(planes)]));
-  const places = moved.map(({ motionId, snapshotId }) => ({
-    planes: planesById.get(motionId as number) ?? [],
-    entry: row * (snapshots.get(snapshotId)?.columns ?? 0) + column,
-  }));
-  const codes = await loadEntryNumbers(reader, "motion", places);
-  return new Map(moved.map((build, at) => [`${build.motionId} ${build.snapshotId}`, MOTIONS[codes[at]] ?? null]));
 }
 
 async function loadEvents(

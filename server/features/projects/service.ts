@@ -7,6 +7,7 @@ import { Project } from "../../db/models/Project.ts";
 import type { Caller } from "../../http/actor.ts";
 import type { PageRequest } from "../../http/paging.ts";
 import { Conflict } from "../../http/problem.ts";
+import { retellCoverage } from "../../trace/settleProject.ts";
 import { audit } from "../audit/audit.ts";
 
 /** Projects that the actor may know of, in the order they were made; one more than the page holds. */
@@ -59,6 +60,9 @@ export function patchProject(
       },
       { id: project.id },
     );
+    if (wish.checkLimit !== undefined && wish.checkLimit !== before.checkLimit) {
+      await retellCoverage(writer, context.judge, project.id, wish.checkLimit);
+    }
     await audit(writer, actor, "project.edit", { projectId: project.id, target: project.slug, detail: wish });
     return before.reload({ transaction: writer.transaction });
   });

@@ -82,6 +82,7 @@ export function posted(parts: {
       unresolved: 1,
       unreferenced: 0,
       invalid: 0,
+      carried: 0,
       ...parts.summary,
     },
     gate: { decision: "pass", lane: "gcc", commit: SHA, base: null, reasons: [], url, ...parts.gate },
