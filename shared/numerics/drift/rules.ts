@@ -1,0 +1,35 @@
+/** Steps of g in a decade. */
+export const STEPS_PER_DECADE = 1024;
+/** Builds that make a whole baseline, and those that are enough to begin. */
+export const BASELINE_BUILDS = 20;
+export const YOUNG_BUILDS = 5;
+/** Least spread, in decades: a calmer entry is not watched more closely than this. */
+export const LEAST_SPREAD = 0.15;
+/** Spread that is assumed before there are YOUNG_BUILDS, in decades. */
+export const ASSUMED_SPREAD = 0.3;
+/** CUSUM: z within +-WINSOR, allowance k, decision interval h. */
+export const WINSOR = 3;
+export const ALLOWANCE = 0.5;
+export const DECISION_INTERVAL = 8;
+/** Where S is above this the build is suspect, and the baseline does not learn from it. */
+export const LEARNING_LIMIT = 4;
+/** A drift worth telling: so many decades, and so many spreads. */
+export const LEAST_DECADES = 1;
+export const LEAST_SPREADS = 4;
+/** The rise of a jump is the difference of two builds, and so is its deviation: sqrt 2 of that of one. */
+export const JUMP_SPREADS = LEAST_SPREADS * Math.SQRT2;
+/** A climb ends after CALM_BUILDS in a row under CALM_SPREADS spreads. */
+export const CALM_SPREADS = 3;
+export const CALM_BUILDS = 3;
+/** 1 / Phi^-1(3/4): MAD to standard deviation of normal values. */
+export const MAD_TO_SIGMA = 1.4826;
+
+/**
+ * Spread of a baseline of n builds, in decades: max(0.15, 1.4826 MAD), or 0.3 for fewer than five builds, times
+ * sqrt(1 + pi / (2n)): a new g differs from the estimated centre by its own deviation and by that of the median, whose
+ * variance is pi / (2n) times that of g (large n, normal values).
+ */
+export function spreadOf(n: number, mad: number): number {
+  const own = n < YOUNG_BUILDS ? ASSUMED_SPREAD : Math.max(LEAST_SPREAD, MAD_TO_SIGMA * mad);
+  return own * Math.sqrt(1 + Math.PI / (2 * n));
+}
