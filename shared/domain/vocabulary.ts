@@ -118,6 +118,18 @@ export type SignatureCode = (typeof SIGNATURES)[number];
 
 export const WANTED_REASONS = ["halves-suspects", "silent-lane", "requested"] as const;
 
+/** Why a column is worth checking in the next build. */
+export const PLAN_REASONS = [
+  "open-break",
+  "climb",
+  "source-changed",
+  "never-checked",
+  "near-limit",
+  "unresolved",
+  "rotation",
+] as const;
+export type PlanReason = (typeof PLAN_REASONS)[number];
+
 export const WAIVER_STATES = ["asked", "approved", "rejected", "ended"] as const;
 export type WaiverState = (typeof WAIVER_STATES)[number];
 

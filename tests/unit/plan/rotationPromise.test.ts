@@ -1,0 +1,45 @@
+import fc from "fast-check";
+import { describe, expect, it } from "vitest";
+import { rotationPromise } from "../../../shared/plan/rotationPromise.ts";
+
+/** Builds that a rotation takes through one order of the columns. */
+function buildsOf(costs: readonly number[], reserve: number): number {
+  let builds = 0;
+  for (let at = 0; at < costs.length; builds++) {
+    let spent = costs[at++];
+    while (at < costs.length && spent + costs[at] <= reserve) spent += costs[at++];
+  }
+  return builds;
+}
+
+const promise = (costs: readonly number[], budget: number, reserve = budget / 2) =>
+  rotationPromise(Float64Array.from(costs), budget, reserve);
+
+describe("rotationPromise", () => {
+  it.each([
+    ["no columns", [], 10, 0],
+    ["all at once", [3, 3, 4], 10, 1],
+    ["columns of the whole budget", [10, 10, 10], 10, 3],
+    ["five a build", Array<number>(50).fill(1), 10, 10],
+    ["two a build, with room that nothing fits in", Array<number>(10).fill(2), 10, 5],
+    ["free ones beside dear ones", [0, 0, 0, 10, 10], 10, 5],
+  ])("is right for %s", (_what, costs, budget, expected) => {
+    expect(promise(costs, budget)).toBe(expected);
+  });
+
+  it("is never fewer builds than the rotation takes, in any order", () => {
+    const sized = fc.integer({ min: 2, max: 40 }).chain((half) =>
+      fc.record({
+        reserve: fc.constant(half),
+        costs: fc.array(fc.integer({ min: 0, max: 2 * half }), { minLength: 1, maxLength: 25 }),
+      }),
+    );
+    fc.assert(
+      fc.property(sized, ({ reserve, costs }) => {
+        if (costs.reduce((a, b) => a + b, 0) <= 2 * reserve) return;
+        expect(promise(costs, 2 * reserve)).toBeGreaterThanOrEqual(buildsOf(costs, reserve));
+      }),
+      { numRuns: 5000 },
+    );
+  });
+});
