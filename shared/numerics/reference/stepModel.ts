@@ -19,8 +19,8 @@ import type { Scheme } from "./scheme.ts";
  */
 export const TRUNCATION_SAFETY = 10;
 export const NOISE_SAFETY = 3;
-const COMPLEX_PRECISIONS = 8;
-const COMPLEX_SAFETY = 2;
+export const COMPLEX_PRECISIONS = 8;
+export const COMPLEX_SAFETY = 2;
 /** An entry this small beside its row tells nothing of its own curvature. */
 const NEGLIGIBLE = 1e-3;
 
