@@ -8,7 +8,7 @@ import { VERDICTS } from "../../shared/domain/vocabulary.ts";
 import type { Verdict } from "../../shared/domain/vocabulary.ts";
 import { toWire, toWireOrNull } from "../../shared/schemas/common.ts";
 import type { WireNumber } from "../../shared/schemas/common.ts";
-import type { BlockNumbers, JudgedBlock, VerdictCounts } from "../../shared/numerics/types.ts";
+import type { BlockNumbers, JudgedBlock, ReferenceNumbers, VerdictCounts } from "../../shared/numerics/types.ts";
 import { judgeBlock } from "../../shared/numerics/verdict/judgeBlock.ts";
 import { costsOf, detailsOf } from "./blockDetails.ts";
 import { Complaints } from "./complaints.ts";
@@ -218,8 +218,17 @@ function cutPlanes(numbers: BlockNumbers, judged: JudgedBlock, tiles: TileSet): 
   if (numbers.inputValues) planes.push(tiles.addPlane("inputValues", numbers.inputValues));
   numbers.references.forEach((reference, r) => {
     reference.steps.forEach((step, s) => planes.push(tiles.addPlane("posted", step.values, r, s)));
+    reference.steps.forEach(({ step }, s) => {
+      if (step instanceof Float64Array) planes.push(tiles.addPlane("columnSteps", step, r, s));
+    });
+    if (reference.uncertainty !== null) planes.push(tiles.addPlane("stated", statedPlane(reference), r));
   });
   return planes;
+}
+
+function statedPlane({ uncertainty, steps }: ReferenceNumbers): Float64Array {
+  if (uncertainty instanceof Float64Array) return uncertainty;
+  return new Float64Array(steps[0].values.length).fill(uncertainty ?? NaN);
 }
 
 /** Follows from the numbers and tolerances alone, not from what the record holds already. */

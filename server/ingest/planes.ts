@@ -3,7 +3,8 @@ import type { Width } from "./tiles.ts";
 /**
  * Kinds of planes in a snapshot; the number is stored, so numbers are never used again for something else.
  * `posted` planes hold what a reference of the posting said, by reference and step; their length is rows x covered
- * columns. Where it equals the chosen reference the tiles are the same ones and cost nothing.
+ * columns. Where it equals the chosen reference the tiles are the same ones and cost nothing. `columnSteps` holds the
+ * steps of a posted plane where they differ by column, `stated` the uncertainty that came with a reference.
  */
 export const PLANE_KIND = {
   derivative: 1,
@@ -17,6 +18,8 @@ export const PLANE_KIND = {
   posted: 9,
   motion: 10,
   age: 11,
+  columnSteps: 12,
+  stated: 13,
 } as const;
 export type PlaneName = keyof typeof PLANE_KIND;
 
@@ -32,6 +35,8 @@ export const PLANE_WIDTH: Record<PlaneName, Width> = {
   posted: 8,
   motion: 1,
   age: 1,
+  columnSteps: 8,
+  stated: 8,
 };
 
 const NAME_OF = new Map<number, PlaneName>(Object.entries(PLANE_KIND).map(([name, kind]) => [kind, name as PlaneName]));
