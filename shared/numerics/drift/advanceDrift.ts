@@ -4,8 +4,7 @@ import type { DriftNews } from "./driftNews.ts";
 import { driftEventsOf, newDriftNews } from "./driftNews.ts";
 import { errorSteps } from "./errorSteps.ts";
 import { isQuiet } from "./isQuiet.ts";
-import { learnBaseline } from "./learnBaseline.ts";
-import { BASELINE_BUILDS, STEPS_PER_DECADE } from "./rules.ts";
+import { ALLOWANCE, BASELINE_BUILDS, STEPS_PER_DECADE } from "./rules.ts";
 import { standingOf } from "./standingOf.ts";
 import type { DriftEvents, DriftState, DriftValues } from "./types.ts";
 import { STANDING } from "./types.ts";
@@ -38,29 +37,39 @@ export function advanceDrift(state: DriftState, buildId: number, values: DriftVa
 
 function take(state: DriftState, buildId: number, values: DriftValues, news: DriftNews): void {
   const { derivative, reference, resolution, verdict, floor } = values;
-  const length = state.count.length;
+  const { standing, last, awake } = state;
   for (const [name, plane] of Object.entries({ derivative, reference, resolution, verdict })) {
-    if (plane.length !== length) throw new RangeError(`${name}: ${plane.length} numbers, expected ${length}`);
+    if (plane.length !== last.length) throw new RangeError(`${name}: ${plane.length} numbers, expected ${last.length}`);
   }
-  for (let k = 0; k < length; k += 1) {
+  for (let k = 0; k < last.length; k += 1) {
     const error = relativeError(derivative[k], reference[k], floor);
-    const standing = standingOf(verdict[k], error, resolution[k]);
-    state.standing[k] = standing;
-    if (standing === STANDING.silent) continue;
-    advanceEntry(state, k, errorSteps(error, resolution[k]), standing, buildId, news);
+    const told = standingOf(verdict[k], error, resolution[k]);
+    standing[k] = told;
+    if (told === STANDING.silent) {
+      awake[k] = 0;
+      continue;
+    }
+    const g = errorSteps(error, resolution[k]);
+    if (isCalm(state, k, g, told)) {
+      last[k] = g;
+      awake[k] = 0;
+    } else {
+      advanceEntry(state, k, g, buildId, news);
+    }
   }
 }
 
+/** The short way: the baseline is whole, S is 0 and stays so; then nothing can be told, and a repeat changes nothing. */
+function isCalm(state: DriftState, k: number, g: number, told: number): boolean {
+  if (state.count[k] !== BASELINE_BUILDS || state.cusum[k] !== 0 || state.climbing[k] !== 0) return false;
+  return told === STANDING.within || (g / STEPS_PER_DECADE - state.centre[k]) / state.spread[k] <= ALLOWANCE;
+}
+
 function repeat(state: DriftState, buildId: number, times: number, news: DriftNews): void {
-  const { standing, last, count, centre, cusum, climbing } = state;
-  for (let k = 0; k < standing.length; k += 1) {
-    if (standing[k] === STANDING.silent) continue;
-    const still = cusum[k] === 0 && climbing[k] === 0 && last[k] <= centre[k] * STEPS_PER_DECADE;
-    if (still && count[k] === BASELINE_BUILDS) continue;
-    if (times > 1) {
-      if (count[k] < BASELINE_BUILDS) learnBaseline(state, k, last[k], times);
-    } else {
-      advanceEntry(state, k, last[k], standing[k], buildId, news);
+  const { awake } = state;
+  for (let k = 0; k < awake.length; k += 1) {
+    for (let left = times; left > 0 && awake[k] !== 0; left -= 1) {
+      advanceEntry(state, k, state.last[k], buildId, news);
     }
   }
 }

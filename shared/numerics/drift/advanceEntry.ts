@@ -2,17 +2,15 @@ import type { DriftNews } from "./driftNews.ts";
 import { tell } from "./driftNews.ts";
 import { learnBaseline } from "./learnBaseline.ts";
 import {
-  ALLOWANCE,
   BASELINE_BUILDS,
   CALM_BUILDS,
   CALM_SPREADS,
   DECISION_INTERVAL,
-  JUMP_SPREADS,
+  driftLimit,
+  jumpLimit,
   LEARNING_LIMIT,
-  LEAST_DECADES,
-  LEAST_SPREADS,
+  nextCusum,
   STEPS_PER_DECADE,
-  WINSOR,
   YOUNG_BUILDS,
 } from "./rules.ts";
 import type { DriftState } from "./types.ts";
@@ -20,61 +18,84 @@ import { STANDING } from "./types.ts";
 
 /**
  * One build of entry k that told g (in steps), `state.last` still being that of the build before: the rules of
- * `driftSeries`, in place.
+ * `driftSeries`, in place. `state.standing` is that of this build.
  */
-export function advanceEntry(
-  state: DriftState,
-  k: number,
-  g: number,
-  standing: number,
-  buildId: number,
-  news: DriftNews,
-): void {
+export function advanceEntry(state: DriftState, k: number, g: number, buildId: number, news: DriftNews): void {
   const count = state.count[k];
-  if (count > 0) watch(state, k, g, standing, buildId, news);
-  const suspect = count >= YOUNG_BUILDS && state.cusum[k] > LEARNING_LIMIT;
-  if (count < BASELINE_BUILDS && !suspect) learnBaseline(state, k, g, 1);
+  if (count > 0) watch(state, k, g, buildId, news);
+  if (count < BASELINE_BUILDS && !isSuspect(state, k)) learnBaseline(state, k, g, 1);
   state.last[k] = g;
+  state.awake[k] = isFixed(state, k) ? 0 : 1;
 }
 
-function watch(state: DriftState, k: number, g: number, standing: number, buildId: number, news: DriftNews): void {
+/** True where S is too high for the baseline to learn from a build. */
+export function isSuspect(state: DriftState, k: number): boolean {
+  return state.count[k] >= YOUNG_BUILDS && state.cusum[k] > LEARNING_LIMIT;
+}
+
+/** Drift of the newest build, in decades. */
+export function driftOf(state: DriftState, k: number): number {
+  return state.last[k] / STEPS_PER_DECADE - state.centre[k];
+}
+
+/** S if the newest build's numbers came once more. */
+export function repeatedCusum(state: DriftState, k: number): number {
+  const z = driftOf(state, k) / state.spread[k];
+  return Math.fround(nextCusum(state.cusum[k], z, state.standing[k] === STANDING.beyond));
+}
+
+/** True where the newest build's numbers, repeated, would leave everything as it is. */
+function isFixed(state: DriftState, k: number): boolean {
+  if (state.count[k] < BASELINE_BUILDS && !isSuspect(state, k)) return false;
+  if (repeatedCusum(state, k) !== state.cusum[k]) return false;
+  const drift = driftOf(state, k);
+  if (state.climbing[k] !== 0) return state.calm[k] === 0 && drift >= CALM_SPREADS * state.spread[k];
+  return state.cusum[k] <= DECISION_INTERVAL || drift < driftLimit(state.spread[k]);
+}
+
+function watch(state: DriftState, k: number, g: number, buildId: number, news: DriftNews): void {
   const drift = g / STEPS_PER_DECADE - state.centre[k];
-  const spread = state.spread[k];
-  const limit = Math.max(LEAST_DECADES, LEAST_SPREADS * spread);
+  const limit = driftLimit(state.spread[k]);
   const before = state.last[k];
+  const beyond = state.standing[k] === STANDING.beyond;
   if (state.count[k] >= YOUNG_BUILDS) {
-    accumulate(state, k, drift / spread, standing, buildId);
+    accumulate(state, k, drift / state.spread[k], beyond, buildId);
     if (state.climbing[k] !== 0) {
-      settle(state, k, drift, news);
-    } else if (state.cusum[k] > DECISION_INTERVAL && climbs(state, k, g, before, limit)) {
+      if (settles(state, k, drift)) {
+        endClimb(state, k, drift, news);
+        return;
+      }
+    } else if (state.cusum[k] > DECISION_INTERVAL && meanDrift(state, k, g, before) >= limit) {
       state.climbing[k] = 1;
       tell(news.climbs, k, state.onset[k], drift);
       return;
     }
   }
   const rise = (g - before) / STEPS_PER_DECADE;
-  if (standing === STANDING.beyond && drift >= limit && rise >= Math.max(LEAST_DECADES, JUMP_SPREADS * spread))
-    tell(news.jumps, k, buildId, rise);
+  if (beyond && drift >= limit && rise >= jumpLimit(state.spread[k])) tell(news.jumps, k, buildId, rise);
 }
 
-/** The mean drift of this build and the one before is worth telling: one lucky build does not make a climb. */
-function climbs(state: DriftState, k: number, g: number, before: number, limit: number): boolean {
-  return (g + before) / 2 / STEPS_PER_DECADE - state.centre[k] >= limit;
+/** Mean drift of this build and the one before: one lucky build does not make a climb. */
+function meanDrift(state: DriftState, k: number, g: number, before: number): number {
+  return (g + before) / 2 / STEPS_PER_DECADE - state.centre[k];
 }
 
-function accumulate(state: DriftState, k: number, z: number, standing: number, buildId: number): void {
-  const bounded = Math.max(-WINSOR, Math.min(standing === STANDING.beyond ? WINSOR : 0, z));
+function accumulate(state: DriftState, k: number, z: number, beyond: boolean, buildId: number): void {
   const old = state.cusum[k];
-  state.cusum[k] = Math.max(0, old + bounded - ALLOWANCE);
+  state.cusum[k] = nextCusum(old, z, beyond);
   if (state.climbing[k] !== 0) return;
   if (state.cusum[k] === 0) state.onset[k] = 0;
   else if (old === 0) state.onset[k] = buildId;
 }
 
-/** Ends a climb that has been calm for long enough; S begins anew. */
-function settle(state: DriftState, k: number, drift: number, news: DriftNews): void {
+/** Counts the calm builds of a climb; true when there are enough of them. */
+function settles(state: DriftState, k: number, drift: number): boolean {
   state.calm[k] = drift < CALM_SPREADS * state.spread[k] ? state.calm[k] + 1 : 0;
-  if (state.calm[k] < CALM_BUILDS) return;
+  return state.calm[k] >= CALM_BUILDS;
+}
+
+/** Ends a climb; S begins anew. */
+function endClimb(state: DriftState, k: number, drift: number, news: DriftNews): void {
   tell(news.ends, k, state.onset[k], drift);
   state.climbing[k] = 0;
   state.calm[k] = 0;

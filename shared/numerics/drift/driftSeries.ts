@@ -4,18 +4,16 @@ import { VERDICT_CODE } from "../../domain/vocabulary.ts";
 import { relativeError } from "../verdict/relativeError.ts";
 import { errorSteps } from "./errorSteps.ts";
 import {
-  ALLOWANCE,
   BASELINE_BUILDS,
   CALM_BUILDS,
   CALM_SPREADS,
   DECISION_INTERVAL,
-  JUMP_SPREADS,
+  driftLimit,
+  jumpLimit,
   LEARNING_LIMIT,
-  LEAST_DECADES,
-  LEAST_SPREADS,
+  nextCusum,
   spreadOf,
   STEPS_PER_DECADE,
-  WINSOR,
   YOUNG_BUILDS,
 } from "./rules.ts";
 import { standingOf } from "./standingOf.ts";
@@ -47,7 +45,8 @@ interface Yardstick {
  * Formula, for a build whose numbers tell something (`standingOf`), with g as in `errorSteps` in decades:
  * 1. The baseline is that of the n <= 20 builds learned from since the last restart, this build not included: centre
  *    m = median of g, spread s = max(0.15, 1.4826 MAD) sqrt(1 + pi/(2n)); limit L = max(1, 4 s). Drift = g - m.
- * 2. From n = 5 on: z = drift / s within [-3, 3], not above 0 where d <= U; S = max(0, S + z - 0.5), kept in binary32.
+ * 2. From n = 5 on: z = drift / s within [-3, 3], not above 0 where d <= U; S = max(0, S + z - 0.5), at most 16, kept in
+ *    binary32.
  * 3. `climb`, from n = 5 on, when none is under way: S > 8 and the mean drift of this build and the one before >= L.
  *    `end` of a climb: drift < 3 s in three builds in a row; S is 0 then.
  * 4. `jump`, from n = 1 on (s from an assumed spread of 0.3 for n < 5): g rose by at least max(1, 4 sqrt(2) s) since
@@ -55,11 +54,11 @@ interface Yardstick {
  * 5. The baseline learns this build if n < 20 and S <= 4: a baseline that learned a climb would never tell it.
  * A build that tells nothing changes nothing; where it disagrees its decades are still given.
  *
- * Differences to the section: the root in s, for a centre that is itself estimated; the mean of two builds in 3, as one
+ * Differences to the section: the bound on S, which does nothing to what is told but lets repeats come to rest; the root in s, for a centre that is itself estimated; the mean of two builds in 3, as one
  * lucky build in thousands of entries and builds is certain; drift >= L in 4, so that the way back from a lucky
  * cancellation is no jump, and sqrt(2), as a rise is the difference of two builds; rule 5.
  *
- * Shapes: one point an item, null where there was no item or it tells nothing. `restartsBefore`: indices of the items
+ * Shapes: one point an item, null where there was no item or it is silent but for a disagreement. `restartsBefore`: indices of the items
  * before which a new baseline was accepted. Throws: never. NaN policy: see `standingOf`.
  * Source: E. S. Page, Continuous Inspection Schemes, Biometrika 41:100-115, 1954; NIST/SEMATECH e-Handbook 6.3.2.3.
  */
@@ -94,7 +93,7 @@ function pointOf(item: DriftItem, course: Course): DriftPoint | null {
 
 function yardstickOf(baseline: readonly number[]): Yardstick {
   const spread = Math.fround(spreadOf(baseline.length, medianAbsoluteDeviation(baseline)));
-  return { centre: median(baseline), spread, limit: Math.max(LEAST_DECADES, LEAST_SPREADS * spread) };
+  return { centre: median(baseline), spread, limit: driftLimit(spread) };
 }
 
 function takeBuild(course: Course, yardstick: Yardstick, g: number, beyond: boolean): DriftEventKind | null {
@@ -109,8 +108,7 @@ function takeBuild(course: Course, yardstick: Yardstick, g: number, beyond: bool
 function eventOf(course: Course, yardstick: Yardstick, g: number, beyond: boolean): DriftEventKind | null {
   const drift = g - yardstick.centre;
   if (course.baseline.length >= YOUNG_BUILDS) {
-    const z = Math.max(-WINSOR, Math.min(beyond ? WINSOR : 0, drift / yardstick.spread));
-    course.cusum = Math.fround(Math.max(0, course.cusum + z - ALLOWANCE));
+    course.cusum = Math.fround(nextCusum(course.cusum, drift / yardstick.spread, beyond));
     if (course.climbing) {
       if (ends(course, drift < CALM_SPREADS * yardstick.spread)) return "end";
     } else if (course.cusum > DECISION_INTERVAL && (g + course.last) / 2 - yardstick.centre >= yardstick.limit) {
@@ -118,8 +116,8 @@ function eventOf(course: Course, yardstick: Yardstick, g: number, beyond: boolea
       return "climb";
     }
   }
-  const jumps = g - course.last >= Math.max(LEAST_DECADES, JUMP_SPREADS * yardstick.spread);
-  return beyond && jumps && drift >= yardstick.limit ? "jump" : null;
+  const rises = g - course.last >= jumpLimit(yardstick.spread);
+  return beyond && rises && drift >= yardstick.limit ? "jump" : null;
 }
 
 function ends(course: Course, calm: boolean): boolean {

@@ -1,21 +1,31 @@
-import { STEPS_PER_DECADE } from "./rules.ts";
+import { driftOf, isSuspect, repeatedCusum } from "./advanceEntry.ts";
+import { BASELINE_BUILDS, CALM_SPREADS, driftLimit } from "./rules.ts";
 import type { DriftState } from "./types.ts";
-import { STANDING } from "./types.ts";
 
 /**
- * True when repeating the newest build's numbers for ever can never tell an event.
+ * True when repeating the newest build's numbers for ever can tell no event and begin no onset: then so many builds can
+ * be taken at once.
  *
- * Per entry: it is silent (its state stays as it is); or no climb is under way, S is 0, and g is not above the centre
- * or within U, so that z <= 0 and S stays 0. Repeats then only pull the centre towards g, never below it.
+ * Per entry: repeats change nothing (`awake` 0); or the baseline is young, S is 0 and z <= 0, which stays so, as
+ * repeats pull the centre towards g and never below it; or the baseline learns no more, S is above 0, and the drift is
+ * too small to be told, or of a climb under way too large to end it.
  *
  * Cost: one pass, nothing allocated; stops at the first entry that is not quiet.
  */
 export function isQuiet(state: DriftState): boolean {
-  const { standing, last, centre, cusum, climbing } = state;
-  for (let k = 0; k < standing.length; k += 1) {
-    if (standing[k] === STANDING.silent) continue;
-    if (climbing[k] !== 0 || cusum[k] !== 0) return false;
-    if (standing[k] === STANDING.beyond && last[k] > centre[k] * STEPS_PER_DECADE) return false;
+  const { awake } = state;
+  for (let k = 0; k < awake.length; k += 1) {
+    if (awake[k] !== 0 && !isQuietEntry(state, k)) return false;
   }
   return true;
+}
+
+function isQuietEntry(state: DriftState, k: number): boolean {
+  const drift = driftOf(state, k);
+  const next = repeatedCusum(state, k);
+  const grows = next >= state.cusum[k];
+  const learns = state.count[k] < BASELINE_BUILDS && !(isSuspect(state, k) && grows);
+  if (learns) return state.climbing[k] === 0 && state.cusum[k] === 0 && (drift <= 0 || state.count[k] === 0);
+  if (state.climbing[k] !== 0) return drift >= CALM_SPREADS * state.spread[k];
+  return state.cusum[k] > 0 && drift < driftLimit(state.spread[k]);
 }

@@ -17,6 +17,7 @@ export function newDriftState(entries: number): DriftState {
     onset: new Int32Array(entries),
     climbing: new Uint8Array(entries),
     calm: new Uint8Array(entries),
+    awake: new Uint8Array(entries),
     window: null,
   };
 }

@@ -8,7 +8,7 @@ type StateArray = Float32Array | Int32Array | Int16Array | Uint8Array;
 
 /** The arrays of a state in the order they are stored in. */
 export function stateArrays(state: DriftState): StateArray[] {
-  const { centre, spread, cusum, onset, last, count, standing, climbing, calm, window } = state;
-  const own = [centre, spread, cusum, onset, last, count, standing, climbing, calm];
+  const { centre, spread, cusum, onset, last, count, standing, climbing, calm, awake, window } = state;
+  const own = [centre, spread, cusum, onset, last, count, standing, climbing, calm, awake];
   return window === null ? own : [...own, window];
 }

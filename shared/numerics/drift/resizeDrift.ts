@@ -21,6 +21,7 @@ export function resizeDrift(state: DriftState, entries: number): DriftState {
   resized.onset.set(state.onset.subarray(0, kept));
   resized.climbing.set(state.climbing.subarray(0, kept));
   resized.calm.set(state.calm.subarray(0, kept));
+  resized.awake.set(state.awake.subarray(0, kept));
   if (state.window !== null) {
     resized.window = new Int16Array(entries * BASELINE_BUILDS);
     resized.window.set(state.window.subarray(0, kept * BASELINE_BUILDS));

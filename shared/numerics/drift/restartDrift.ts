@@ -1,4 +1,5 @@
 import type { DriftState } from "./types.ts";
+import { STANDING } from "./types.ts";
 
 /**
  * A new baseline was accepted: the entries (null = all) learn their baseline anew from the next build on, and their
@@ -23,6 +24,7 @@ export function restartDrift(state: DriftState, entries: Uint32Array | null): Ui
     state.onset[k] = 0;
     state.climbing[k] = 0;
     state.calm[k] = 0;
+    state.awake[k] = state.standing[k] === STANDING.silent ? 0 : 1;
   }
   return ended;
 }

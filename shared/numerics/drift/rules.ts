@@ -11,6 +11,8 @@ export const ASSUMED_SPREAD = 0.3;
 export const WINSOR = 3;
 export const ALLOWANCE = 0.5;
 export const DECISION_INTERVAL = 8;
+/** S goes no higher: an entry that has long been a little higher is soon forgiven, and repeats come to rest. */
+export const CUSUM_CAP = 16;
 /** Where S is above this the build is suspect, and the baseline does not learn from it. */
 export const LEARNING_LIMIT = 4;
 /** A drift worth telling: so many decades, and so many spreads. */
@@ -32,4 +34,23 @@ export const MAD_TO_SIGMA = 1.4826;
 export function spreadOf(n: number, mad: number): number {
   const own = n < YOUNG_BUILDS ? ASSUMED_SPREAD : Math.max(LEAST_SPREAD, MAD_TO_SIGMA * mad);
   return own * Math.sqrt(1 + Math.PI / (2 * n));
+}
+
+/**
+ * S after one more build: max(0, S + z - 0.5), at most 16, with z = drift / spread within [-3, 3], and not above 0 where
+ * the reference does not see an error. Not yet rounded to binary32.
+ */
+export function nextCusum(cusum: number, z: number, seen: boolean): number {
+  const bounded = Math.max(-WINSOR, Math.min(seen ? WINSOR : 0, z));
+  return Math.max(0, Math.min(CUSUM_CAP, cusum + bounded - ALLOWANCE));
+}
+
+/** Drift from which on an entry is worth telling, in decades. */
+export function driftLimit(spread: number): number {
+  return Math.max(LEAST_DECADES, LEAST_SPREADS * spread);
+}
+
+/** Rise from one build to the next from which on it is a jump, in decades. */
+export function jumpLimit(spread: number): number {
+  return Math.max(LEAST_DECADES, JUMP_SPREADS * spread);
 }

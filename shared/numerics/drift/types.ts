@@ -33,7 +33,7 @@ export interface DriftState {
   readonly centre: Float32Array;
   /** Spread of g about the centre, in decades; 0 without a baseline. */
   readonly spread: Float32Array;
-  /** CUSUM S. */
+  /** CUSUM S, 0 to CUSUM_CAP. */
   readonly cusum: Float32Array;
   /** Build id of the first build since S was last 0, of a climb under way that of its onset; 0 = none. */
   readonly onset: Int32Array;
@@ -41,6 +41,8 @@ export interface DriftState {
   readonly climbing: Uint8Array;
   /** Builds in a row back under centre + 3 spread, of a climb under way. */
   readonly calm: Uint8Array;
+  /** 0 where repeating the newest build's numbers would change nothing. */
+  readonly awake: Uint8Array;
   /**
    * g of the builds the baseline has learned from, in steps, ascending, BASELINE_BUILDS places an entry; null while
    * no entry's baseline is unfinished.
