@@ -21,7 +21,8 @@ export interface CusumDesign {
  * A two-sided chart has 1/L = 1/L+ + 1/L-, L- at the opposite shift.
  * Units: standard deviations; values until the signal, that one included. Domain: h > 0, 0 <= headStart <= h, any k
  * and shift; states a whole number >= 2. Throws: RangeError naming the argument.
- * NaN policy: NaN in k or shift throws. Accuracy: with 100 states 0.1 % at most up to h = 10 and k >= 0.
+ * NaN policy: NaN in k or shift throws. Accuracy: 0.1 % with 100 states for k = 1/2 and h up to 5; the longer the run,
+ * the more states it needs (300 for 0.1 % of 2,072 at k = 0, h = 10, shift -1/4).
  * Cost: states^3 / 3 multiplications, states^2 numbers.
  * Source: D. Brook, D. A. Evans, An approach to the probability distribution of cusum run length, Biometrika
  * 59:539-549, 1972.
