@@ -25,7 +25,7 @@ export interface Geometry {
  * Sizes of the rows and of the columns that a reference covers. Values that are not finite count as unknown.
  * Throws RangeError when `columns` names a column twice or one that the block has not.
  */
-export function geometry(block: BlockNumbers, reference: ReferenceNumbers, name: string): Geometry {
+export function geometry(block: Omit<BlockNumbers, "derivative">, reference: ReferenceNumbers, name: string): Geometry {
   const covered = reference.columns;
   const width = covered === null ? block.columns : covered.length;
   const outputs = magnitudes(block.outputValues, block.rows, ASSUMED_OUTPUT);

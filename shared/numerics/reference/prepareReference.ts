@@ -27,7 +27,7 @@ type Source = Pick<Estimator, "posted" | "fill">;
  * Throws RangeError naming the argument when a shape is wrong; `name` is the reference's name in it.
  */
 export function prepareReference(
-  block: BlockNumbers,
+  block: Omit<BlockNumbers, "derivative">,
   reference: ReferenceNumbers,
   tolerances: Tolerances,
   name: string,

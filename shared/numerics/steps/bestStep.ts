@@ -47,15 +47,20 @@ export function stepCurve(
   const { order, noisyValues } = scheme;
   if (noisyValues === 0) {
     const floor = COMPLEX_PRECISIONS * Math.max(precision, DEFAULT_PRECISION) * facts.complexCurvature;
-    return { order, truncation: COMPLEX_SAFETY * facts.complexCurvature * ofUnit, rounding: 0, floor };
+    return { order, truncation: orInfinite(COMPLEX_SAFETY * facts.complexCurvature * ofUnit), rounding: 0, floor };
   }
   const noisy = noisyValues * facts.noise + UNIT_ROUNDOFF * input * facts.magnitude;
   return {
     order,
-    truncation: guards.truncation * facts.curvature * ofUnit,
+    truncation: orInfinite(guards.truncation * facts.curvature * ofUnit),
     rounding: guards.rounding * noisy,
     floor: guards.rounding * 4 * UNIT_ROUNDOFF * facts.magnitude,
   };
+}
+
+/** Overflow on one side and underflow on the other leave NaN, which says no more than +Infinity. */
+function orInfinite(factor: number): number {
+  return factor === factor ? factor : Infinity;
 }
 
 /**

@@ -40,7 +40,7 @@ const CHOICE: SweepChoice = { index: 0, error: 0 };
  *
  * Formula: differences at two steps or more as in `leastSweepError`, times the safety factor s; the largest step, which
  * has none to be compared with, gets the next one's truncation times the ratio of the steps to the power p. All else
- * from `stepModel`. The curvature S is what the measured truncation says, T / share(h), the least over those of the chosen
+ * from `stepModel`, for a sweep of complex steps with the distance to the smallest step's value added. The curvature S is what the measured truncation says, T / share(h), the least over those of the chosen
  * step and the two before it that are still on the truncation branch: on the other one noise looks like truncation, and
  * S is that of `entrySize`, as far as the noise allows it. Modelled: S of `entrySize`.
  * NaN policy: overflow may leave NaN in a part (it stands for +Infinity). Writes to `parts`, allocates nothing.
@@ -64,6 +64,8 @@ function modelledParts({ values, steps }: SweepReader, n: number, facts: EntryFa
     parts.truncation[k] = s * truncationFactor(scheme, h, precision, length);
     parts.rounding[k] = size * noiseFactor(scheme, h, precision) + m * roundingFactor(scheme, h, input);
     parts.curvature = s;
+    // Larger complex steps than the one that is judged with: what they differ from it is truncation.
+    if (k < n - 1) parts.truncation[k] += Math.abs(values[k] - values[n - 1]);
   }
 }
 

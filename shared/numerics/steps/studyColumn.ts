@@ -1,3 +1,4 @@
+import { ASSUMED_COMPLEX_STEP } from "../reference/absoluteSteps.ts";
 import type { Estimates } from "../reference/estimator.ts";
 import { SAW_NO_CHANGE } from "../reference/estimator.ts";
 import { sweepSafety } from "../reference/fillSweep.ts";
@@ -100,7 +101,8 @@ function readEntry(studied: StudiedReference, row: number, c: number, scratch: C
     const facts = { ...setting, length, input: sizes.inputs[c], output, size: ofRow, noise };
     const measured = entryParts(reader, n, facts, parts);
     const k = gatherSteps(reader, n, size, estimates.step[at], scratch);
-    if (!resolved && parts.truncation[n - 1] > parts.rounding[n - 1]) tally.truncated += 1;
+    const large = setting.scheme.noisyValues > 0 || reader.steps[n - 1] > ASSUMED_COMPLEX_STEP * length;
+    if (!resolved && large && parts.truncation[n - 1] > parts.rounding[n - 1]) tally.truncated += 1;
     const first = measured ? 1 : 0;
     if (!resolved && k === first && parts.rounding[k] >= parts.truncation[k]) tally.cancelled += 1;
   }

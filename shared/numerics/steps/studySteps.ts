@@ -33,7 +33,7 @@ import type { ColumnStudy, JudgedWith, StepStudy } from "./types.ts";
  * the step).
  */
 export function studySteps(
-  block: BlockNumbers,
+  block: Omit<BlockNumbers, "derivative">,
   reference: number,
   judged: JudgedWith,
   columns: readonly [number, number] = [0, block.columns],
