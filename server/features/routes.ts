@@ -12,6 +12,7 @@ import { routes as invitations } from "./invitations/routes.ts";
 import { routes as members } from "./members/routes.ts";
 import { routes as overview } from "./overview/routes.ts";
 import { routes as people } from "./people/routes.ts";
+import { routes as plan } from "./plan/routes.ts";
 import { routes as projects } from "./projects/routes.ts";
 import { routes as session } from "./session/routes.ts";
 import { routes as tokens } from "./tokens/routes.ts";
@@ -41,6 +42,7 @@ export const ROUTES: readonly Route[] = [
   ...history,
   ...breaks,
   ...wanted,
+  ...plan,
   ...members,
   ...tokens,
   ...waivers,
