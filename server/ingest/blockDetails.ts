@@ -2,6 +2,7 @@ import type { Signature } from "../../shared/schemas/break.ts";
 import type { BlockNumbers, JudgedBlock, ReferenceNumbers } from "../../shared/numerics/types.ts";
 import type { ReferenceMethod, StepKind, UncertaintyKind } from "../../shared/domain/vocabulary.ts";
 import type { Cost } from "../../shared/schemas/build.ts";
+import { signaturesOf } from "./blockSignatures.ts";
 import type { SkeletonBlock } from "./skeleton.ts";
 
 /** What a block says of itself beside its numbers; stored once however often it is posted. */
@@ -52,11 +53,7 @@ export function detailsOf(block: SkeletonBlock, numbers: BlockNumbers, judged: J
       precision: reference.precision,
       columns: reference.columns && [...reference.columns],
     })),
-    signatures: judged.best.findings.map((finding) => ({
-      code: finding.code,
-      share: finding.entries / Math.max(1, judged.counts.entries),
-      detail: FINDING_SENTENCE[finding.code](finding.entries, methodOf(numbers, finding.reference)),
-    })),
+    signatures: signaturesOf(block, numbers, judged),
     probes: block.probes,
     sources: block.sources,
   };
@@ -74,23 +71,3 @@ function largestSteps(reference: ReferenceNumbers): number[] {
     return [typeof step === "number" ? step : step.reduce((a, b) => Math.max(a, b), 0)];
   });
 }
-
-function methodOf(numbers: BlockNumbers, index: number | null): string {
-  return index === null ? "the references" : `the ${numbers.references[index].method} reference`;
-}
-
-const entries = (count: number) => (count === 1 ? "one entry" : `${count} entries`);
-
-const FINDING_SENTENCE: Record<
-  JudgedBlock["best"]["findings"][number]["code"],
-  (count: number, method: string) => string
-> = {
-  "reference-dropped-imaginary": (n, m) =>
-    `${m} is exactly 0 in ${entries(n)} where a difference is not: the code under it lost the imaginary part`,
-  "reference-saw-no-change": (n, m) =>
-    `${m} saw no change at all in ${entries(n)} where another reference did: its step is too small`,
-  "reference-cancelled": (n, m) => `${m} is still on its rounding branch in ${entries(n)}: its steps are too small`,
-  "reference-truncated": (n, m) => `${m} is still on its truncation branch in ${entries(n)}: its steps are too large`,
-  "references-conflict": (n, m) => `${m} differ by more than their uncertainties in ${entries(n)}`,
-  "reference-not-finite": (n, m) => `${m} is not a finite number in ${entries(n)}`,
-};

@@ -116,6 +116,10 @@ export const SIGNATURES = [
 ] as const;
 export type SignatureCode = (typeof SIGNATURES)[number];
 
+/** How much of a block a signature speaks of. */
+export const SIGNATURE_SCOPES = ["block", "row", "column", "entry"] as const;
+export type SignatureScope = (typeof SIGNATURE_SCOPES)[number];
+
 export const WANTED_REASONS = ["halves-suspects", "silent-lane", "requested"] as const;
 
 /** Why a column is worth checking in the next build. */

@@ -1,5 +1,5 @@
 import { z } from "zod";
-import { BREAK_STATES, MOTIONS, SIGNATURES, VERDICTS } from "../domain/vocabulary.ts";
+import { BREAK_STATES, MOTIONS, SIGNATURE_SCOPES, SIGNATURES, VERDICTS } from "../domain/vocabulary.ts";
 import { id, laneName, pageQuery, sha, timestamp, wireNumber } from "./common.ts";
 
 const commitBuild = z.object({ commit: sha, buildId: id }).meta({ id: "CommitBuild" });
@@ -11,7 +11,18 @@ export const breakBrief = z
   .meta({ id: "BreakBrief" });
 
 export const signature = z
-  .object({ code: z.enum(SIGNATURES), share: z.number(), detail: z.string() })
+  .object({
+    code: z.enum(SIGNATURES),
+    /** The narrowest place that holds what it explains: `row` of a row or entry, `column` of a column or entry. */
+    scope: z.enum(SIGNATURE_SCOPES),
+    row: z.number().int().nullable(),
+    column: z.number().int().nullable(),
+    /** Part of what disagrees or is invalid in that place; of a reference's signature, part of the block's entries. */
+    share: z.number(),
+    detail: z.string(),
+    /** What explains the same numbers as well, a sentence each. */
+    alternatives: z.array(z.string()),
+  })
   .meta({ id: "Signature", description: "A recognised kind of mistake." });
 export type Signature = z.infer<typeof signature>;
 

@@ -1,7 +1,14 @@
 import type { Counts } from "../../shared/schemas/build.ts";
 import { VERDICTS } from "../../shared/domain/vocabulary.ts";
-import type { Motion, ReferenceMethod, SignatureCode, Verdict } from "../../shared/domain/vocabulary.ts";
-import { countText } from "./number.ts";
+import type {
+  Motion,
+  ReferenceMethod,
+  SignatureCode,
+  SignatureScope,
+  Verdict,
+} from "../../shared/domain/vocabulary.ts";
+import type { Signature } from "../../shared/schemas/break.ts";
+import { countText, percentText } from "./number.ts";
 
 export const shortSha = (sha: string) => sha.slice(0, 7);
 
@@ -102,6 +109,19 @@ export const SIGNATURE_WORD: Record<SignatureCode, string> = {
   "references-conflict": "the references conflict",
   "reference-not-finite": "the reference is not finite",
 };
+
+const SCOPE_WORD: Record<Exclude<SignatureScope, "entry">, string> = {
+  block: "in the block",
+  row: "in that row",
+  column: "in that column",
+};
+
+/** `explains 90 % of what disagrees in that row`. */
+export function signatureShare({ code, scope, share }: Pick<Signature, "code" | "scope" | "share">): string {
+  if (code.startsWith("reference")) return `is seen in ${percentText(share)} of the entries`;
+  if (scope === "entry") return "explains that entry";
+  return `explains ${percentText(share)} of what disagrees ${SCOPE_WORD[scope]}`;
+}
 
 /** A break's sentence away from its commit: without the `here` that the overview of that commit says. */
 export const elsewhere = (sentence: string) => sentence.replace(/ here\.$/, ".");

@@ -3,6 +3,7 @@ import type { MotionCounts } from "../../../shared/numerics/types.ts";
 import type { BlockDetails, SideDetails } from "../../ingest/blockDetails.ts";
 import type { StoredWorst } from "../../ingest/judgePosting.ts";
 import type { ResolutionBins } from "../../ingest/resolutionBins.ts";
+import { presentSignature } from "../../record/storedSignature.ts";
 import type { LoadedBlock } from "./loadBlockRows.ts";
 
 export function presentBlockRow(block: LoadedBlock): BlockRow {
@@ -22,7 +23,7 @@ export function presentBlockRow(block: LoadedBlock): BlockRow {
     floor: block.floor,
     resolution: weakestResolution(block),
     worst: block.worst === null ? null : presentWorst(JSON.parse(block.worst) as StoredWorst),
-    signatures: details.signatures.map(({ code, share, detail }) => ({ code, share, detail })),
+    signatures: details.signatures.map(presentSignature),
     motion: block.motionCounts === null ? null : presentMotion(JSON.parse(block.motionCounts) as MotionCounts),
   };
 }

@@ -1,6 +1,11 @@
 import type { Signature } from "../../../shared/schemas/break.ts";
+import { groupBy } from "../../../shared/domain/groupBy.ts";
 import type { Reader } from "../../db/reader.ts";
+import { unpackEntries } from "../../record/entryList.ts";
+import type { StoredSignature } from "../../record/storedSignature.ts";
 import type { ToldColumns } from "../../trace/storeBreaks.ts";
+import { signaturesOfBreak } from "./breakSignatures.ts";
+import type { RecognisedBlock } from "./breakSignatures.ts";
 
 /** A break as the record has it; what is JSON there is text here. */
 export interface LoadedBreak extends ToldColumns {
@@ -48,25 +53,36 @@ export async function loadBreak(reader: Reader, projectId: number, breakId: numb
   return found ?? null;
 }
 
-/** What was recognised in the blocks of each break at its onset, by break: the largest share of each kind. */
+/** What was recognised in the blocks of each break at its onset, by break. */
 export async function loadSignatures(reader: Reader, breakIds: readonly number[]): Promise<Map<number, Signature[]>> {
-  const rows = await reader.select<{ breakId: number; signatures: string }>(
-    `SELECT DISTINCT e.breakId, d.details ->> '$.signatures' AS signatures
+  const rows = await reader.select<RecognisedRow>(
+    `SELECT e.breakId, e.columnCount AS columns, e.entries, d.details ->> '$.signatures' AS signatures, m.leftBehind
      FROM break_entries e JOIN breaks b ON b.id = e.breakId
      JOIN build_blocks bb ON bb.buildId = b.onsetBuildId AND bb.blockId = e.blockId
-     JOIN block_details d ON d.id = bb.detailsId WHERE e.breakId IN (SELECT value FROM json_each($1))`,
+     JOIN snapshots s ON s.id = bb.snapshotId AND s.columnCount = e.columnCount
+     JOIN block_details d ON d.id = bb.detailsId LEFT JOIN motions m ON m.id = bb.motionId
+     WHERE e.breakId IN (SELECT value FROM json_each($1)) ORDER BY e.breakId, e.blockId`,
     [JSON.stringify(breakIds)],
   );
-  const byBreak = new Map<number, Signature[]>();
-  for (const { breakId, signatures } of rows) {
-    const kept = byBreak.get(breakId) ?? [];
-    for (const found of JSON.parse(signatures) as Signature[]) {
-      const at = kept.findIndex(({ code }) => code === found.code);
-      if (at < 0) kept.push(found);
-      else if (found.share > kept[at].share) kept[at] = found;
-    }
-    byBreak.set(breakId, kept);
-  }
-  for (const kept of byBreak.values()) kept.sort((a, b) => b.share - a.share);
-  return byBreak;
+  return new Map(
+    [...groupBy(rows, (row) => row.breakId)].map(([breakId, blocks]) => [
+      breakId,
+      signaturesOfBreak(blocks.map(recognised)),
+    ]),
+  );
+}
+
+interface RecognisedRow {
+  readonly breakId: number;
+  readonly columns: number;
+  readonly entries: Buffer;
+  /** JSON: StoredSignature[], and StoredSignature. */
+  readonly signatures: string;
+  readonly leftBehind: string | null;
+}
+
+function recognised({ columns, entries, signatures, leftBehind }: RecognisedRow): RecognisedBlock {
+  const found = JSON.parse(signatures) as StoredSignature[];
+  const old = leftBehind === null ? [] : [JSON.parse(leftBehind) as StoredSignature];
+  return { columns, entries: unpackEntries(entries), signatures: [...old, ...found] };
 }

@@ -3,6 +3,7 @@ import type { Actor } from "../../http/actor.ts";
 import { time, timeOrNull } from "../../http/present.ts";
 import type { CommitFacts } from "../../record/commitFacts.ts";
 import { presentEntryValues } from "../../record/entryValues.ts";
+import { presentSignature } from "../../record/storedSignature.ts";
 import type { StoredBreakWorst, StoredTrace } from "../../trace/storedTrace.ts";
 import type { Urls } from "../builds/urls.ts";
 import { abilities } from "../policies.ts";
@@ -49,7 +50,7 @@ export function presentBreakRow(
     models,
     worstError: worst.error,
     motion: one.motion,
-    signatures: more.signatures.map(({ code, share, detail }) => ({ code, share, detail })),
+    signatures: more.signatures.map(presentSignature),
     repairedBy: commitBuild(one.repairedBy, one.repairedByBuildId),
     assignee: one.assigneeId === null ? null : { id: String(one.assigneeId), name: one.assigneeName ?? "" },
     sentence: breakSentence({

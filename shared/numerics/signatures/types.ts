@@ -1,4 +1,4 @@
-import type { SignatureCode } from "../../domain/vocabulary.ts";
+import type { SignatureCode, SignatureScope } from "../../domain/vocabulary.ts";
 
 /** What a side of a block (its output or its input) is called. */
 export interface SideNames {
@@ -10,9 +10,6 @@ export interface BlockNames {
   readonly output: SideNames;
   readonly input: SideNames;
 }
-
-export const SIGNATURE_SCOPES = ["block", "row", "column", "entry"] as const;
-export type SignatureScope = (typeof SIGNATURE_SCOPES)[number];
 
 /** A recognised kind of mistake, and the narrowest place that holds it. */
 export interface NamedSignature {

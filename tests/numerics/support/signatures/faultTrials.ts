@@ -1,8 +1,8 @@
 import { DEFAULT_TOLERANCES } from "../../../../shared/domain/tolerances.ts";
 import { isBadVerdict } from "../../../../shared/domain/vocabulary.ts";
-import type { SignatureCode } from "../../../../shared/domain/vocabulary.ts";
+import type { SignatureCode, SignatureScope } from "../../../../shared/domain/vocabulary.ts";
 import { nameSignatures } from "../../../../shared/numerics/signatures/nameSignatures.ts";
-import type { BlockNames, NamedSignature, SignatureScope } from "../../../../shared/numerics/signatures/types.ts";
+import type { BlockNames, NamedSignature } from "../../../../shared/numerics/signatures/types.ts";
 import type { BlockNumbers, JudgedBlock, ReferenceNumbers } from "../../../../shared/numerics/types.ts";
 import { judgeBlock } from "../../../../shared/numerics/verdict/judgeBlock.ts";
 import { mulberry32 } from "../../../support/random.ts";
