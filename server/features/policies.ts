@@ -1,6 +1,7 @@
 import type { Actor } from "../http/actor.ts";
 import type { Rule, Target } from "../http/policy.ts";
 import { auditPolicy } from "./audit/policy.ts";
+import { baselinePolicy } from "./baselines/policy.ts";
 import { breakPolicy } from "./breaks/policy.ts";
 import { buildPolicy } from "./builds/policy.ts";
 import { memberPolicy } from "./members/policy.ts";
@@ -12,6 +13,7 @@ import { waiverPolicy } from "./waivers/policy.ts";
 /** Who may do what, all of it. */
 export const POLICIES = {
   ...auditPolicy,
+  ...baselinePolicy,
   ...breakPolicy,
   ...buildPolicy,
   ...memberPolicy,

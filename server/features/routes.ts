@@ -3,9 +3,12 @@ import { defineRoute } from "../http/defineRoute.ts";
 import type { Route } from "../http/defineRoute.ts";
 import { openApiDocument } from "../http/openapi.ts";
 import { routes as audit } from "./audit/routes.ts";
+import { routes as baselines } from "./baselines/routes.ts";
 import { routes as blocks } from "./blocks/routes.ts";
 import { routes as breaks } from "./breaks/routes.ts";
 import { routes as builds } from "./builds/routes.ts";
+import { routes as climbs } from "./climbs/routes.ts";
+import { routes as exports } from "./exports/routes.ts";
 import { routes as gate } from "./gate/routes.ts";
 import { routes as history } from "./history/routes.ts";
 import { routes as invitations } from "./invitations/routes.ts";
@@ -15,6 +18,7 @@ import { routes as people } from "./people/routes.ts";
 import { routes as plan } from "./plan/routes.ts";
 import { routes as projects } from "./projects/routes.ts";
 import { routes as session } from "./session/routes.ts";
+import { routes as steps } from "./steps/routes.ts";
 import { routes as tokens } from "./tokens/routes.ts";
 import { routes as waivers } from "./waivers/routes.ts";
 import { routes as wanted } from "./wanted/routes.ts";
@@ -37,12 +41,16 @@ export const ROUTES: readonly Route[] = [
   ...projects,
   ...builds,
   ...blocks,
+  ...steps,
   ...gate,
   ...overview,
   ...history,
   ...breaks,
+  ...climbs,
+  ...baselines,
   ...wanted,
   ...plan,
+  ...exports,
   ...members,
   ...tokens,
   ...waivers,

@@ -1,15 +1,19 @@
 import { move, transferableSymbol, valueSymbol } from "piscina";
+import type { StepStudy } from "../../shared/numerics/steps/types.ts";
 import { collectGarbage } from "./collectGarbage.ts";
 import { judgeCoverage } from "./judgeCoverage.ts";
 import type { CoverageTask, JudgedCoverage } from "./judgeCoverage.ts";
+import { judgeDrift } from "./judgeDrift.ts";
+import type { DriftTask, JudgedDrift } from "./judgeDrift.ts";
 import { judgeMotion } from "./judgeMotion.ts";
 import type { JudgedMotion, MotionTask } from "./judgeMotion.ts";
 import { judgePosting } from "./judgePosting.ts";
 import type { JudgedPosting, Posting } from "./judgePosting.ts";
+import { judgeSteps } from "./judgeSteps.ts";
+import type { StepsTask } from "./judgeSteps.ts";
 import { RejectedPosting } from "./rejection.ts";
 import type { Rejection } from "./rejection.ts";
 import { transferListOf } from "./tileSet.ts";
-import type { PackedTiles } from "./tileSet.ts";
 
 /** Errors lose their class between threads, so a rejection crosses as a value. */
 export type PostingOutcome = { readonly rejected: Rejection } | { readonly judged: JudgedPosting };
@@ -19,7 +23,7 @@ export function posting(task: Posting): PostingOutcome {
     const judged = judgePosting(task);
     // When the answer is on its way: what was made on the way to it.
     setImmediate(collectGarbage, judged.bytes);
-    return handOver({ judged }, judged.tiles);
+    return handOver({ judged }, transferListOf(judged.tiles));
   } catch (error) {
     if (error instanceof RejectedPosting) return { rejected: error.rejection };
     throw error;
@@ -28,16 +32,25 @@ export function posting(task: Posting): PostingOutcome {
 
 export function motion(task: MotionTask): JudgedMotion {
   const judged = judgeMotion(task);
-  return handOver(judged, judged.tiles);
+  return handOver(judged, transferListOf(judged.tiles));
 }
 
 export function coverage(task: CoverageTask): JudgedCoverage | null {
   const judged = judgeCoverage(task);
-  return judged && handOver(judged, judged.tiles);
+  return judged && handOver(judged, transferListOf(judged.tiles));
 }
 
-/** Gives the tiles to the other thread instead of copying them: what the pool's caller receives is `value`. */
-function handOver<T>(value: T, tiles: PackedTiles): T {
-  const movable = { [transferableSymbol]: transferListOf(tiles), [valueSymbol]: value };
+export function drift(task: DriftTask): JudgedDrift {
+  const judged = judgeDrift(task);
+  return handOver(judged, [judged.state.buffer as ArrayBuffer]);
+}
+
+export function steps(task: StepsTask): StepStudy {
+  return judgeSteps(task);
+}
+
+/** Gives memory to the other thread instead of copying it: what the pool's caller receives is `value`. */
+function handOver<T>(value: T, memory: readonly ArrayBuffer[]): T {
+  const movable = { [transferableSymbol]: memory, [valueSymbol]: value };
   return move(movable as never) as T;
 }

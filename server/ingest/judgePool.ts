@@ -1,7 +1,10 @@
 import { Piscina } from "piscina";
+import type { StepStudy } from "../../shared/numerics/steps/types.ts";
 import type { CoverageTask, JudgedCoverage } from "./judgeCoverage.ts";
+import type { DriftTask, JudgedDrift } from "./judgeDrift.ts";
 import type { JudgedMotion, MotionTask } from "./judgeMotion.ts";
 import type { Posting, JudgedPosting } from "./judgePosting.ts";
+import type { StepsTask } from "./judgeSteps.ts";
 import type { PostingOutcome } from "./judge.worker.ts";
 import { RejectedPosting } from "./rejection.ts";
 
@@ -11,6 +14,8 @@ export interface JudgePool {
   posting(task: Posting): Promise<JudgedPosting>;
   motion(task: MotionTask): Promise<JudgedMotion>;
   coverage(task: CoverageTask): Promise<JudgedCoverage | null>;
+  drift(task: DriftTask): Promise<JudgedDrift>;
+  steps(task: StepsTask): Promise<StepStudy>;
   close(): Promise<void>;
 }
 
@@ -33,6 +38,8 @@ export function createJudgePool(options: { readonly threads: number }): JudgePoo
     },
     motion: (task) => pool.run(task, { name: "motion" }) as Promise<JudgedMotion>,
     coverage: (task) => pool.run(task, { name: "coverage" }) as Promise<JudgedCoverage | null>,
+    drift: (task) => pool.run(task, { name: "drift" }) as Promise<JudgedDrift>,
+    steps: (task) => pool.run(task, { name: "steps" }) as Promise<StepStudy>,
     close: () => pool.close(),
   };
 }

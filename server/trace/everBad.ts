@@ -20,7 +20,7 @@ export interface EverBad {
 export async function loadEverBad(reader: Reader, laneId: number): Promise<EverBad[]> {
   const rows = await reader.select<{ blockId: number; columns: number; everBad: Buffer }>(
     `SELECT d.blockId, d.columnCount AS columns, d.everBad FROM drift_states d JOIN blocks b ON b.id = d.blockId
-     WHERE d.laneId = $1 ORDER BY b.model, b.output, b.input, b.point, d.columnCount`,
+     WHERE d.laneId = $1 ORDER BY b.model, b.output, b.input, b.point, b.probe, d.columnCount`,
     [laneId],
   );
   return rows.map(({ blockId, columns, everBad }) => ({ blockId, columns, entries: unpackEntries(everBad) }));

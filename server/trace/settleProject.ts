@@ -1,3 +1,4 @@
+import type { BlockName } from "../../shared/domain/selector.ts";
 import type { Writer } from "../db/write.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
 import { loadCommitFacts } from "../record/commitFacts.ts";
@@ -9,6 +10,7 @@ import { updateBaselines } from "./baselines.ts";
 import { describeBreak } from "./describeBreak.ts";
 import type { BreakDescription } from "./describeBreak.ts";
 import { updateCoverages } from "./coverage.ts";
+import { retellDrift, updateDrift } from "./drift.ts";
 import { addEverBad } from "./everBad.ts";
 import { loadLaneTests } from "./laneTests.ts";
 import { matchBreaks, sameParts } from "./matchBreaks.ts";
@@ -53,6 +55,7 @@ export async function settleProject(
     const rebased = await updateBaselines(w, builds, project.graph, buildId);
     for (const one of rebased) await updateMotions(w, judge, one);
     await updateCoverages(w, judge, project.graph, builds.all, rebased, checkLimit);
+    await updateDrift(w, judge, project, { projectId, laneId }, builds);
     if (buildId !== null) await addEverBad(w, laneId, buildId);
     const moved = new Set(rebased.map((one) => one.buildId));
     await retrace(w, project, { projectId, laneId }, builds, moved, now);
@@ -66,6 +69,19 @@ export async function retellCoverage(w: Writer, judge: JudgePool, projectId: num
     const { all } = await loadLaneBuilds(w, laneId);
     const every = all.map(({ id, baselineBuildId }) => ({ buildId: id, baselineBuildId }));
     await updateCoverages(w, judge, graph, all, every, limit);
+  }
+}
+
+/** Tells the drift of the blocks that `covers` names anew, in every lane. */
+export async function retellDrifts(
+  w: Writer,
+  judge: JudgePool,
+  projectId: number,
+  covers: (block: BlockName, lane: string) => boolean,
+): Promise<void> {
+  const project = await loadGraph(w, projectId);
+  for (const laneId of await loadLaneIds(w, projectId)) {
+    await retellDrift(w, judge, project, { projectId, laneId }, await loadLaneBuilds(w, laneId), covers);
   }
 }
 

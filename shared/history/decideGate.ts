@@ -1,5 +1,6 @@
 import { gateBlockFindings } from "./gateBlockFindings.ts";
 import { gateEntryFindings } from "./gateEntryFindings.ts";
+import { gateRiseFindings } from "./gateRiseFindings.ts";
 import type { GateCode, GatePolicy } from "../domain/vocabulary.ts";
 import type { GateFinding, GateInput, GateOutcome, GateReason } from "./types.ts";
 
@@ -30,7 +31,7 @@ export function decideGate(input: GateInput): GateOutcome {
     const message = `there is no build of ${input.commit.slice(0, 12)} in lane ${input.lane}`;
     return { decision: "unknown", reasons: [reason({ code: "no-build", message, weight: 0 }, input.policy)] };
   }
-  const findings = [...gateEntryFindings(input), ...gateBlockFindings(input)];
+  const findings = [...gateEntryFindings(input), ...gateBlockFindings(input), ...gateRiseFindings(input.rises)];
   const reasons = findings.sort(worstFirst(input.policy)).map((finding) => reason(finding, input.policy));
   return {
     decision: reasons.some(({ severity }) => severity === "fail") ? "fail" : "pass",

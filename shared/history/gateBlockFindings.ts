@@ -1,25 +1,27 @@
+import { gateProbeFindings } from "./gateProbeFindings.ts";
 import type { GateBlock, GateFinding, GateInput } from "./types.ts";
 
 /**
  * What blocks lost against the base: blocks that vanished, entries that lost their reference, entries that their
  * reference cannot tell any more. A block that is new is found only if it has no reference at all; without a base
- * every block is new.
+ * every block is new. Probes are told as in `gateProbeFindings`.
  */
 export function gateBlockFindings(input: Pick<GateInput, "head" | "baseBlocks" | "base">): GateFinding[] {
   const base = input.base === null ? "the base" : input.base.slice(0, 12);
+  const jacobians = (blocks: readonly GateBlock[]) => blocks.filter(({ probe }) => !probe);
   const present = new Set(input.head.map((block) => block.blockId));
   const before = new Map(input.baseBlocks.map((block) => [block.blockId, block]));
-  const missing = input.baseBlocks
+  const missing = jacobians(input.baseBlocks)
     .filter((block) => !present.has(block.blockId))
     .map((block) =>
       finding("block-missing", block, block.entries, `${named(block)} was posted at ${base} and is missing here`),
     );
-  const lost = input.head.flatMap((block) => {
+  const lost = jacobians(input.head).flatMap((block) => {
     const then = before.get(block.blockId);
     if (then === undefined) return newBlock(block);
     return [...reference(block, then, base), ...resolution(block, then, base)];
   });
-  return [...missing, ...lost];
+  return [...missing, ...lost, ...gateProbeFindings(input, base)];
 }
 
 function newBlock(block: GateBlock): GateFinding[] {

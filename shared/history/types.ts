@@ -128,6 +128,8 @@ export interface GateBlock {
   readonly blockId: string;
   readonly model: string;
   readonly block: string;
+  /** Where it is a probe of the block: what it is called, and what it came to as a clause. */
+  readonly probe?: { readonly name: string; readonly sentence: string } | null;
   readonly unreferenced: number;
   readonly unresolved: number;
   readonly entries: number;
@@ -139,8 +141,10 @@ export interface GateEntry {
   readonly row: number;
   readonly column: number;
   readonly verdict: "disagrees" | "invalid";
-  /** Relative error; NaN where the entry is invalid, or keeps the verdict of an earlier build. */
+  /** Relative error; NaN where the entry is invalid or carried. */
   readonly error: number;
+  /** True where the entry was not checked here and keeps the verdict of an earlier build. */
+  readonly carried?: boolean;
   /** True where the base commit's build has the same entry bad already. */
   readonly badAtBase: boolean;
   /** Its relative error at the base, where known: what exceeded its waiver there already is not new here. */
@@ -148,6 +152,18 @@ export interface GateEntry {
   readonly breakId: string | null;
   /** Largest error an approved, unexpired waiver allows here, or null without one. */
   readonly waivedUpTo: number | null;
+}
+
+/** A climb or jump as the gate tells it. */
+export interface GateRise {
+  readonly kind: "climb" | "jump";
+  readonly model: string;
+  readonly block: string;
+  readonly row: number;
+  readonly column: number;
+  readonly entryCount: number;
+  /** Of the worst entry, named by block, row and column. */
+  readonly decades: number;
 }
 
 export interface GateInput {
@@ -159,6 +175,8 @@ export interface GateInput {
   readonly head: readonly GateBlock[];
   readonly baseBlocks: readonly GateBlock[];
   readonly bad: readonly GateEntry[];
+  /** Climbs and jumps that were told after the base, up to the commit. */
+  readonly rises: readonly GateRise[];
   readonly policy: GatePolicy;
 }
 

@@ -1,6 +1,6 @@
 import { z } from "zod";
 import { MAX_REFERENCES, MAX_SWEEP_STEPS } from "../domain/limits.ts";
-import { MOTIONS, REFERENCE_METHODS, UNCERTAINTY_KINDS, VERDICTS } from "../domain/vocabulary.ts";
+import { MOTIONS, PROBE_KINDS, REFERENCE_METHODS, UNCERTAINTY_KINDS, VERDICTS } from "../domain/vocabulary.ts";
 import { signature } from "./break.ts";
 import { counts } from "./build.ts";
 import { id, laneName, queryInteger, sha, timestamp, wireNumber } from "./common.ts";
@@ -36,12 +36,43 @@ const side = z
   })
   .meta({ id: "BlockSide" });
 
+/** What a probe came to. */
+export const probeResult = z
+  .object({
+    blockId: id,
+    kind: z.enum(PROBE_KINDS),
+    label: z.string(),
+    /** Of a directional derivative that of its worst element, as all that follows. */
+    verdict: z.enum(VERDICTS),
+    /** Relative; null where a number is not finite. */
+    error: wireNumber.nullable(),
+    /** Absolute, and relative to what the error is relative to. */
+    uncertainty: wireNumber.nullable(),
+    resolution: wireNumber.nullable(),
+    /** On the error; null where the slope of the remainders decided. */
+    tolerance: z.number().nullable(),
+    /** True where a size that was not posted had to be assumed. */
+    assumed: z.boolean(),
+    /** Of the Taylor remainders against their steps, over the usable ones: 2 for a right gradient, 1 for a wrong one. */
+    slope: z.number().nullable(),
+    usableSteps: z.number().int().nullable(),
+    steps: z.array(z.number()),
+    remainders: z.array(wireNumber),
+    /** A clause without a full stop. */
+    sentence: z.string(),
+  })
+  .meta({ id: "ProbeResult" });
+export type ProbeResult = z.infer<typeof probeResult>;
+export type ProbeDetails = Omit<ProbeResult, "blockId">;
+
 /** A block in the list of a build. */
 export const blockRow = z
   .object({
     blockId: id,
     model: z.string(),
     point: z.string(),
+    /** Null for a Jacobian; else the probe of it that this is, as "<kind>: <label>". */
+    probe: z.string().nullable(),
     output: side,
     input: side,
     rows: z.number().int(),
@@ -114,7 +145,10 @@ export const blockDetail = blockRow
     inputValues: z.array(wireNumber).nullable(),
     derivativeMethod: z.string(),
     references: z.array(referenceSummary),
-    probes: z.array(z.record(z.string(), z.unknown())),
+    /** Of this Jacobian, or where the block is itself a probe, of the one that it probes. */
+    probes: z.array(probeResult),
+    /** Where the block is a probe: the block of the Jacobian that it probes, if the build has one. */
+    probeOf: id.nullable(),
     sources: z.array(z.string()),
   })
   .meta({ id: "Block" });
@@ -145,7 +179,18 @@ export const historyItem = z
     /** Builds since the entry was checked: 0 in this one; null where its verdict is of no build. */
     age: z.number().int().nullable(),
     motion: z.enum(MOTIONS).nullable(),
-    drift: z.object({ decades: z.number(), cusum: z.number() }).nullable(),
+    /**
+     * Decades above the baseline and the CUSUM, with the baseline's centre and spread in decades; null beside the
+     * default branch, and where the baseline is too young or the build tells nothing.
+     */
+    drift: z
+      .object({
+        decades: z.number(),
+        cusum: z.number(),
+        centre: z.number().nullable(),
+        spread: z.number().nullable(),
+      })
+      .nullable(),
     event: z.enum(["break", "repair", "climb", "jump"]).nullable(),
   })
   .meta({ id: "HistoryItem" });

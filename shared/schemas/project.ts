@@ -140,7 +140,20 @@ export const overview = z
     ),
     newBreaks: z.array(id),
     repairedBreaks: z.array(id),
-    climbs: z.array(z.object({ model: z.string(), decades: z.number(), builds: z.number().int() })),
+    /** Open climbs as seen from the commit, and jumps of its own build. */
+    climbs: z.array(
+      z.object({
+        kind: z.enum(["climb", "jump"]),
+        model: z.string(),
+        decades: z.number(),
+        builds: z.number().int(),
+        entryCount: z.number().int(),
+        sentence: z.string(),
+        onset: sha,
+        toldBy: sha,
+        worst: z.object({ blockId: id, row: z.number().int(), column: z.number().int() }),
+      }),
+    ),
     silentLanes: z.array(
       z.object({ lane: laneName, lastBuildAt: timestamp.nullable(), commitsSince: z.number().int() }),
     ),

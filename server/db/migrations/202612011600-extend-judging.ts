@@ -21,12 +21,14 @@ CREATE TABLE block_drifts (
   laneId INTEGER NOT NULL REFERENCES lanes(id) ON DELETE CASCADE,
   blockId INTEGER NOT NULL REFERENCES blocks(id) ON DELETE CASCADE,
   columnCount INTEGER NOT NULL,
+  part INTEGER NOT NULL,
   lastSnapshotId INTEGER NOT NULL REFERENCES snapshots(id),
   repeats INTEGER NOT NULL,
   quiet INTEGER NOT NULL,
   state BLOB,
-  PRIMARY KEY (laneId, blockId, columnCount)
-) WITHOUT ROWID;
+  PRIMARY KEY (laneId, blockId, columnCount, part)
+);
+CREATE INDEX block_drifts_snapshot ON block_drifts (lastSnapshotId);
 CREATE TABLE drift_events (
   laneId INTEGER NOT NULL REFERENCES lanes(id) ON DELETE CASCADE,
   blockId INTEGER NOT NULL REFERENCES blocks(id) ON DELETE CASCADE,
@@ -36,10 +38,11 @@ CREATE TABLE drift_events (
   onsetBuildId INTEGER NOT NULL REFERENCES builds(id) ON DELETE CASCADE,
   entries BLOB NOT NULL,
   decades REAL NOT NULL,
-  worstEntry INTEGER NOT NULL,
-  PRIMARY KEY (laneId, blockId, columnCount, buildId, kind, onsetBuildId)
-) WITHOUT ROWID;
+  worstEntry INTEGER NOT NULL
+);
+CREATE INDEX drift_events_block ON drift_events (laneId, blockId);
 CREATE INDEX drift_events_build ON drift_events (buildId);
+CREATE INDEX drift_events_onset ON drift_events (onsetBuildId);
 CREATE TABLE baselines (
   id INTEGER PRIMARY KEY AUTOINCREMENT,
   projectId INTEGER NOT NULL REFERENCES projects(id) ON DELETE CASCADE,

@@ -1,5 +1,6 @@
 import type { Sequelize } from "sequelize";
 import { AuditEntry } from "./AuditEntry.ts";
+import { Baseline } from "./Baseline.ts";
 import { Block } from "./Block.ts";
 import { Break } from "./Break.ts";
 import { Build } from "./Build.ts";
@@ -19,6 +20,7 @@ import { WantedBuild } from "./WantedBuild.ts";
 
 const MODELS = [
   AuditEntry,
+  Baseline,
   Block,
   Break,
   Build,

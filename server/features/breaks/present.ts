@@ -1,3 +1,4 @@
+import type { SuspectScore } from "../../../shared/history/types.ts";
 import type { BreakDetail, BreakEntry, BreakRow, Signature } from "../../../shared/schemas/break.ts";
 import type { Actor } from "../../http/actor.ts";
 import { time, timeOrNull } from "../../http/present.ts";
@@ -10,7 +11,7 @@ import { abilities } from "../policies.ts";
 import type { Action } from "../policies.ts";
 import type { BreakEntryValues } from "./loadBreakEntries.ts";
 import type { LoadedBreak } from "./loadBreaks.ts";
-import { breakSentence } from "./sentence.ts";
+import { breakSentence, partsOf } from "./sentence.ts";
 import type { ActiveWaiver } from "./waived.ts";
 
 const SHOWN_ACTIONS = [
@@ -55,7 +56,7 @@ export function presentBreakRow(
     assignee: one.assigneeId === null ? null : { id: String(one.assigneeId), name: one.assigneeName ?? "" },
     sentence: breakSentence({
       kind: one.kind,
-      entryCount: one.entryCount,
+      ...partsOf(one),
       models,
       invalid: worst.verdict === "invalid",
     }),
@@ -93,10 +94,10 @@ export function presentBreak(
   place: { readonly projectId: number; readonly commitUrl: string | null; readonly urls: Urls; readonly actor: Actor },
 ): BreakDetail {
   const { waiver } = parts;
-  const { nextTest } = JSON.parse(one.trace) as StoredTrace;
+  const { nextTest, suspects } = JSON.parse(one.trace) as StoredTrace;
   return {
     ...presentBreakRow(one, { waived: waiver !== null, signatures: parts.signatures }, place.urls),
-    suspects: presentSuspects(one, parts.suspects, place.commitUrl),
+    suspects: presentSuspects(suspects, parts.suspects, place.commitUrl),
     nextTest: nextTest && { commit: nextTest.commit, remainingAfter: nextTest.remainingAfter },
     entries: parts.entries.map((entry) => presentEntry(entry, one)),
     waiver: waiver && {
@@ -110,12 +111,13 @@ export function presentBreak(
   };
 }
 
-function presentSuspects(
-  one: LoadedBreak,
+/** Suspects as scored, with what is known of their commits. */
+export function presentSuspects(
+  suspects: readonly SuspectScore[],
   facts: ReadonlyMap<string, CommitFacts>,
   commitUrl: string | null,
 ): BreakDetail["suspects"] {
-  return (JSON.parse(one.trace) as StoredTrace).suspects.map(({ sha, score, why }) => {
+  return suspects.map(({ sha, score, why }) => {
     const commit = facts.get(sha);
     return {
       commit: sha,
@@ -138,6 +140,7 @@ function presentEntry({ block, entry, values, before }: BreakEntryValues, one: L
     output: block.output,
     input: block.input,
     point: block.point,
+    probe: block.probe === "" ? null : block.probe,
     row: Math.floor(entry / block.columns),
     column: entry % block.columns,
     ...presentEntryValues(values),

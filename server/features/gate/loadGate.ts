@@ -8,6 +8,7 @@ import { loadGraph } from "../../record/commitGraph.ts";
 import { COUNTS_SQL, JOIN_COVERAGE } from "../../record/countsSql.ts";
 import { findLane, loadLaneBuilds } from "../../record/laneBuilds.ts";
 import { loadGateEntries } from "./loadGateEntries.ts";
+import { loadGateRises } from "./loadGateRises.ts";
 
 export interface GateQuestion {
   readonly project: { readonly id: number; readonly policy: GatePolicy };
@@ -46,7 +47,7 @@ export async function loadGate(reader: Reader, question: GateQuestion, now: numb
   const headId = speaking.get(commit)?.id ?? null;
   if (laneId === null || headId === null) {
     const state = laneId !== null && (await isReceiving(reader, laneId, commit)) ? "receiving" : null;
-    const nothing = { head: [], baseBlocks: [], bad: [] };
+    const nothing = { head: [], baseBlocks: [], bad: [], rises: [] };
     return { ...decideGate({ lane, commit, base, state, policy, ...nothing }), base, buildId: null };
   }
   const head = await loadBlocks(reader, headId);
@@ -54,7 +55,8 @@ export async function loadGate(reader: Reader, question: GateQuestion, now: numb
   const baseBlocks = baseId === null ? [] : await loadBlocks(reader, baseId);
   const place = { projectId: project.id, lane, laneId, commit };
   const bad = await loadGateEntries(reader, place, head, baseBlocks, now);
-  const outcome = decideGate({ lane, commit, base, state: "complete", head, baseBlocks, bad, policy });
+  const rises = await loadGateRises(reader, place, base, head);
+  const outcome = decideGate({ lane, commit, base, state: "complete", head, baseBlocks, bad, rises, policy });
   return { ...outcome, base, buildId: headId };
 }
 
@@ -68,9 +70,13 @@ async function isReceiving(reader: Reader, laneId: number, sha: string): Promise
 }
 
 async function loadBlocks(reader: Reader, buildId: number): Promise<GateBlockRow[]> {
-  type Row = Omit<GateBlockRow, "blockId" | "block" | "bad"> & VerdictCounts & { readonly blockId: number };
+  type Told = { readonly blockId: number; readonly probe: string; readonly sentence: string | null };
+  type Row = Omit<GateBlockRow, "blockId" | "block" | "bad" | "probe"> & VerdictCounts & Told;
   const rows = await reader.select<Row>(
-    `SELECT bb.blockId, bb.snapshotId, b.model, b.output, b.input, b.point, ${COUNTS_SQL}, v.planes AS coveragePlanes
+    `SELECT bb.blockId, bb.snapshotId, b.model, b.output, b.input, b.point, b.probe, ${COUNTS_SQL},
+       v.planes AS coveragePlanes,
+       CASE WHEN b.probe <> '' THEN
+         (SELECT d.details ->> '$.probe.sentence' FROM block_details d WHERE d.id = bb.detailsId) END AS sentence
      FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId ${JOIN_COVERAGE}
      WHERE bb.buildId = $1`,
     [buildId],
@@ -80,6 +86,7 @@ async function loadBlocks(reader: Reader, buildId: number): Promise<GateBlockRow
     bad: row.disagrees + row.invalid,
     blockId: String(row.blockId),
     block: blockName(row),
+    probe: row.probe === "" ? null : { name: row.probe, sentence: row.sentence ?? "" },
   }));
 }
 

@@ -87,6 +87,7 @@ async function entriesOf(
       column,
       verdict: now.verdict.at(entry) === VERDICT_CODE.invalid ? "invalid" : "disagrees",
       error: errorAt(now, entry, snapshot.floor),
+      carried: now.verdict.at(entry) === VERDICT_CODE.disagrees && Number.isNaN(now.reference.at(entry)),
       badAtBase: badThen,
       errorAtBase: badThen && base ? errorAt(then, entry, base.floor) : null,
       breakId: breakOf(block.blockId, snapshot.columns, entry),

@@ -1,95 +1,68 @@
 import { MOTIONS, VERDICTS } from "../../../shared/domain/vocabulary.ts";
 import { NEVER_CHECKED } from "../../../shared/numerics/coverage/carryVerdicts.ts";
+import type { DriftPoint } from "../../../shared/numerics/drift/types.ts";
 import type { HistoryItem } from "../../../shared/schemas/block.ts";
 import type { Reader } from "../../db/reader.ts";
 import { timeOrNull } from "../../http/present.ts";
 import { loadCommitFacts } from "../../record/commitFacts.ts";
-import { commitColumns } from "../../record/commitColumns.ts";
-import { loadGraph } from "../../record/commitGraph.ts";
 import { unpackEntries } from "../../record/entryList.ts";
 import { entryValuesOf, presentEntryValues } from "../../record/entryValues.ts";
-import { loadLaneBuilds } from "../../record/laneBuilds.ts";
-import { loadEntryNumbers } from "../../record/readEntry.ts";
-import { loadSnapshots } from "../../record/readPlanes.ts";
-import type { SnapshotPlanes } from "../../record/readPlanes.ts";
 import { loadEntryCodes } from "./loadEntryCodes.ts";
+import { loadEntrySeries } from "./loadEntrySeries.ts";
+import type { EntryBuild, EntryPlace, EntrySeries } from "./loadEntrySeries.ts";
 
-export interface EntryWanted {
-  readonly projectId: number;
-  readonly laneId: number;
-  readonly blockId: number;
-  readonly row: number;
-  readonly column: number;
+export interface EntryWanted extends EntryPlace {
   /** Only commits that this branch contains; null for all. */
   readonly branch: string | null;
   /** The newest so many. */
   readonly limit: number;
 }
 
-interface BuildOfBlock {
-  readonly buildId: number;
-  readonly snapshotId: number;
-  readonly motionId: number | null;
-  readonly coverageId: number | null;
-}
-
-/**
- * One entry over the builds of a lane, in commit order. Reads one tile of each plane for each distinct snapshot that
- * holds the entry, however many builds share it.
- */
+/** One entry over the builds of a lane, in commit order: its numbers, what moved, its drift and what happened to it. */
 export async function loadEntryHistory(reader: Reader, wanted: EntryWanted): Promise<HistoryItem[]> {
-  const { projectId, laneId, blockId, row, column } = wanted;
-  const builds = await loadBuildsOfBlock(reader, wanted);
-  const snapshots = await loadSnapshots(
-    reader,
-    builds.map((build) => build.snapshotId),
-  );
-  const holding = [...snapshots.values()].filter(({ rows, columns }) => row < rows && column < columns);
-  const numbers = await loadNumbers(reader, holding, row, column);
-  const codesOf = (name: "motion" | "verdict" | "age", idOf: (build: BuildOfBlock) => number | null) =>
+  const series = await loadEntrySeries(reader, wanted);
+  const builds = ofBranch(series, wanted.branch).slice(-wanted.limit);
+  const codesOf = (name: "motion" | "verdict" | "age", idOf: (build: EntryBuild) => number | null) =>
     loadEntryCodes(
       reader,
       name,
-      builds.map((build) => ({ id: idOf(build), entry: entryIn(snapshots, build, row, column) })),
+      builds.map((build) => ({ id: idOf(build), entry: build.entry })),
     );
   const motions = await codesOf("motion", (build) => build.motionId);
   const verdicts = await codesOf("verdict", (build) => build.coverageId);
   const ages = await codesOf("age", (build) => build.coverageId);
-  const events = await loadEvents(reader, laneId, blockId, snapshots, row, column);
+  const events = await loadEvents(reader, wanted, builds);
   const commits = await loadCommitFacts(
     reader,
-    projectId,
+    wanted.projectId,
     builds.map((build) => build.sha),
   );
-  return builds.flatMap(({ sha, buildId, snapshotId }, at) => {
-    const values = numbers.get(snapshotId);
-    if (values === undefined) return [];
+  return builds.map(({ sha, buildId, numbers }, at) => {
+    const values = presentEntryValues(entryValuesOf(numbers, numbers.floor));
     const commit = commits.get(sha);
-    return [
-      {
-        commit: sha,
-        buildId: String(buildId),
-        subject: commit?.subject ?? null,
-        author: commit?.author ?? null,
-        committedAt: timeOrNull(commit?.committedAt ?? null),
-        ...values,
-        verdict: VERDICTS[verdicts[at] ?? NaN] ?? values.verdict,
-        age: ageOf(ages[at], values.verdict),
-        motion: MOTIONS[motions[at] ?? NaN] ?? null,
-        drift: null,
-        event: events.get(sha) ?? null,
-      },
-    ];
+    const drift = series.drift.get(buildId) ?? null;
+    return {
+      commit: sha,
+      buildId: String(buildId),
+      subject: commit?.subject ?? null,
+      author: commit?.author ?? null,
+      committedAt: timeOrNull(commit?.committedAt ?? null),
+      ...values,
+      verdict: VERDICTS[verdicts[at] ?? NaN] ?? values.verdict,
+      age: ageOf(ages[at], values.verdict),
+      motion: MOTIONS[motions[at] ?? NaN] ?? null,
+      drift: presentDrift(drift),
+      event: events.get(sha) ?? eventOf(drift),
+    };
   });
 }
 
-function entryIn(
-  snapshots: ReadonlyMap<number, SnapshotPlanes>,
-  { snapshotId }: BuildOfBlock,
-  row: number,
-  column: number,
-): number {
-  return row * (snapshots.get(snapshotId)?.columns ?? 0) + column;
+function ofBranch({ builds, project }: EntrySeries, branch: string | null): readonly EntryBuild[] {
+  if (branch === null) return builds;
+  const tip = project.tips.get(branch);
+  if (tip === undefined) return [];
+  const within = project.graph.ancestors(tip);
+  return builds.filter((build) => within.has(build.sha));
 }
 
 /** Builds since the entry was checked: what earlier checks say, or this build itself. */
@@ -98,61 +71,21 @@ function ageOf(carried: number | null, own: HistoryItem["verdict"]): number | nu
   return own === "unreferenced" ? null : 0;
 }
 
-async function loadBuildsOfBlock(
-  reader: Reader,
-  wanted: EntryWanted,
-): Promise<(BuildOfBlock & { readonly sha: string })[]> {
-  const project = await loadGraph(reader, wanted.projectId);
-  const { speaking } = await loadLaneBuilds(reader, wanted.laneId);
-  const rows = await reader.select<BuildOfBlock>(
-    "SELECT buildId, snapshotId, motionId, coverageId FROM build_blocks WHERE blockId = $1",
-    [wanted.blockId],
-  );
-  const ofBuild = new Map(rows.map((row) => [row.buildId, row]));
-  const tip = wanted.branch === null ? null : (project.tips.get(wanted.branch) ?? null);
-  if (wanted.branch !== null && tip === null) return [];
-  const within = tip === null ? null : project.graph.ancestors(tip);
-  const builds = commitColumns(project).flatMap((sha) => {
-    const build = speaking.get(sha);
-    const row = build && ofBuild.get(build.id);
-    return row && (within === null || within.has(sha)) ? [{ ...row, sha }] : [];
-  });
-  return builds.slice(-wanted.limit);
+function presentDrift(point: DriftPoint | null): HistoryItem["drift"] {
+  if (point === null || point.decades === null) return null;
+  const { decades, cusum, centre, spread } = point;
+  return { decades, cusum, centre, spread };
 }
 
-type Numbers = Pick<HistoryItem, "derivative" | "reference" | "uncertainty" | "error" | "verdict">;
-
-async function loadNumbers(
-  reader: Reader,
-  snapshots: readonly SnapshotPlanes[],
-  row: number,
-  column: number,
-): Promise<Map<number, Numbers>> {
-  const places = snapshots.map(({ planes, columns }) => ({ planes, entry: row * columns + column }));
-  const derivatives = await loadEntryNumbers(reader, "derivative", places);
-  const references = await loadEntryNumbers(reader, "reference", places);
-  const resolutions = await loadEntryNumbers(reader, "resolution", places);
-  const verdicts = await loadEntryNumbers(reader, "verdict", places);
-  return new Map(
-    snapshots.map(({ id, floor }, at) => {
-      const stored = {
-        derivative: derivatives[at],
-        reference: references[at],
-        resolution: resolutions[at],
-        verdict: verdicts[at],
-      };
-      return [id, presentEntryValues(entryValuesOf(stored, floor))];
-    }),
-  );
+/** That a climb ended is told by its drift, not as an event of its own. */
+function eventOf(point: DriftPoint | null): HistoryItem["event"] {
+  return point === null || point.event === "end" ? null : point.event;
 }
 
 async function loadEvents(
   reader: Reader,
-  laneId: number,
-  blockId: number,
-  snapshots: ReadonlyMap<number, SnapshotPlanes>,
-  row: number,
-  column: number,
+  { laneId, blockId }: EntryPlace,
+  builds: readonly EntryBuild[],
 ): Promise<Map<string, "break" | "repair">> {
   const rows = await reader.select<{ onset: string; repairedBy: string | null; columns: number; entries: Buffer }>(
     `SELECT b.onset, b.repairedBy, e.columnCount AS columns, e.entries
@@ -160,10 +93,11 @@ async function loadEvents(
      WHERE b.laneId = $1 AND e.blockId = $2 AND b.withdrawnAt IS NULL`,
     [laneId, blockId],
   );
-  const shapes = new Set([...snapshots.values()].map(({ columns }) => columns));
+  const entryOf = new Map(builds.map((build) => [build.columns, build.entry]));
   const events = new Map<string, "break" | "repair">();
   for (const { onset, repairedBy, columns, entries } of rows) {
-    if (!shapes.has(columns) || !unpackEntries(entries).includes(row * columns + column)) continue;
+    const entry = entryOf.get(columns);
+    if (entry === undefined || !unpackEntries(entries).includes(entry)) continue;
     events.set(onset, "break");
     if (repairedBy !== null && !events.has(repairedBy)) events.set(repairedBy, "repair");
   }

@@ -2,7 +2,7 @@ import { fromWire } from "../../../shared/schemas/common.ts";
 import type { Strip, StripColumn } from "../../../shared/schemas/commit.ts";
 import type { Reader } from "../../db/reader.ts";
 import { timeOrNull } from "../../http/present.ts";
-import { worstVerdict } from "../../record/buildSummary.ts";
+import { readSummary, worstVerdict } from "../../record/buildSummary.ts";
 import type { BuildSummary } from "../../record/buildSummary.ts";
 import { loadCommitFacts } from "../../record/commitFacts.ts";
 import type { CommitFacts } from "../../record/commitFacts.ts";
@@ -27,6 +27,7 @@ interface BlockNameRow {
   readonly model: string;
   readonly output: string;
   readonly input: string;
+  readonly probe: string;
 }
 
 /** Every known commit in commit order with what the lane's build says of it, and the open breaks' suspects. */
@@ -63,9 +64,10 @@ async function loadStripBuilds(reader: Reader, laneId: number): Promise<Map<stri
 }
 
 async function loadBlockNames(reader: Reader, projectId: number): Promise<Map<number, BlockNameRow>> {
-  const rows = await reader.select<BlockNameRow>("SELECT id, model, output, input FROM blocks WHERE projectId = $1", [
-    projectId,
-  ]);
+  const rows = await reader.select<BlockNameRow>(
+    "SELECT id, model, output, input, probe FROM blocks WHERE projectId = $1",
+    [projectId],
+  );
   return new Map(rows.map((row) => [row.id, row]));
 }
 
@@ -77,7 +79,7 @@ function column(
   names: ReadonlyMap<number, BlockNameRow>,
 ): StripColumn {
   const build = builds.get(facts.sha);
-  const summary = build?.summary ? (JSON.parse(build.summary) as BuildSummary) : null;
+  const summary = build?.summary ? readSummary(build.summary) : null;
   const worst = summary?.worst ?? null;
   const name = worst === null ? undefined : names.get(worst.blockId);
   return {
@@ -96,7 +98,14 @@ function column(
     worst:
       worst === null || name === undefined
         ? null
-        : { model: name.model, output: name.output, input: name.input, row: worst.row, column: worst.column },
+        : {
+            model: name.model,
+            output: name.output,
+            input: name.input,
+            probe: name.probe === "" ? null : name.probe,
+            row: worst.row,
+            column: worst.column,
+          },
   };
 }
 

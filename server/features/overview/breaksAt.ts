@@ -3,11 +3,13 @@ import { timeOrNull } from "../../http/present.ts";
 import type { ProjectGraph } from "../../record/commitGraph.ts";
 import type { StoredBreakWorst, StoredTrace } from "../../trace/storedTrace.ts";
 import type { LoadedBreak } from "../breaks/loadBreaks.ts";
-import { breakSentence } from "../breaks/sentence.ts";
+import { breakSentence, partsOf } from "../breaks/sentence.ts";
 
 export interface BreakAt {
   readonly brief: Overview["openBreaks"][number];
-  readonly entryCount: number;
+  /** Entries of Jacobians, and names of the probes beside them. */
+  readonly partials: number;
+  readonly probes: readonly string[];
   readonly models: readonly string[];
 }
 
@@ -39,12 +41,12 @@ function at(found: LoadedBreak): BreakAt {
     brief: {
       id: String(found.id),
       number: found.number,
-      sentence: breakSentence({ ...found, models, invalid: worst.error === null }),
+      sentence: breakSentence({ kind: found.kind, ...partsOf(found), models, invalid: worst.error === null }),
       onset: found.onset,
       suspectCount: (JSON.parse(found.trace) as StoredTrace).suspects.length,
       since: timeOrNull(found.onsetAt),
     },
-    entryCount: found.entryCount,
+    ...partsOf(found),
     models,
   };
 }

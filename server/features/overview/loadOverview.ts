@@ -1,4 +1,4 @@
-import type { BlockName } from "../../../shared/domain/selector.ts";
+import type { JacobianName } from "../../../shared/domain/selector.ts";
 import type { Overview } from "../../../shared/schemas/project.ts";
 import { loadBlockRows } from "../blocks/loadBlockRows.ts";
 import type { Reader } from "../../db/reader.ts";
@@ -14,6 +14,7 @@ import type { LaneBuild } from "../../record/laneBuilds.ts";
 import { loadBreaks } from "../breaks/loadBreaks.ts";
 import { loadActiveWaivers, loadWaived } from "../breaks/waived.ts";
 import { modelRows } from "./modelRows.ts";
+import { climbsAt } from "./climbsAt.ts";
 import { breaksAt } from "./breaksAt.ts";
 import { overviewSentence } from "./sentence.ts";
 import { loadSilentLanes } from "./silentLanes.ts";
@@ -37,12 +38,14 @@ export async function loadOverview(reader: Reader, wanted: OverviewWanted, now: 
   const build = commit === null ? undefined : speaking.get(commit);
   const facts = commit === null ? undefined : (await loadCommitFacts(reader, projectId, [commit])).get(commit);
   const blocks = build ? await loadBlockRows(reader, projectId, build.id) : [];
+  const jacobians = blocks.filter(({ probe }) => probe === "");
   const baselineId = build?.baselineBuildId ?? null;
   const counts = build ? addUp(blocks) : null;
   const ofLane = await loadBreaks(reader, projectId, { lane, state: null });
   const waived = await loadWaived(reader, ofLane, await loadActiveWaivers(reader, projectId, now));
   const breaks = breaksAt(project, ofLane, waived, commit);
   const vanishedBlocks = build && baselineId !== null ? await loadVanished(reader, build.id, baselineId) : [];
+  const climbs = laneId === null || commit === null ? [] : await climbsAt(reader, { projectId, laneId }, commit);
   return {
     lane,
     commit,
@@ -62,11 +65,12 @@ export async function loadOverview(reader: Reader, wanted: OverviewWanted, now: 
       openBreaks: breaks.open,
       vanished: vanishedBlocks.length,
       hasBaseline: baselineId !== null,
+      newClimbs: climbs.filter(({ toldBy }) => toldBy === commit),
     }),
     openBreaks: breaks.open.map((one) => one.brief),
     newBreaks: breaks.fresh.map((one) => one.brief.id),
     repairedBreaks: breaks.repaired.map((one) => one.brief.id),
-    climbs: [],
+    climbs,
     silentLanes: (await loadSilentLanes(reader, [projectId], now)).map((silent) => ({
       lane: silent.lane,
       lastBuildAt: timeOrNull(silent.lastBuildAt),
@@ -75,7 +79,7 @@ export async function loadOverview(reader: Reader, wanted: OverviewWanted, now: 
     vanishedBlocks,
     checkedShare: counts && checkedShare(counts),
     resolutionCurve: resolutionCurve(
-      blocks.map((block) => JSON.parse(block.resolutions) as ResolutionBins),
+      jacobians.map((block) => JSON.parse(block.resolutions) as ResolutionBins),
       counts?.entries ?? 0,
     ),
     models: modelRows(blocks),
@@ -93,12 +97,20 @@ function baselineOf(baselineId: number, speaking: ReadonlyMap<string, LaneBuild>
   return build ? { commit: build.sha, buildId: String(build.id) } : null;
 }
 
-/** Blocks of the baseline that the build does not have. */
+/** Blocks of the baseline that the build does not have; of one that was probed only, a probe stands for all of them. */
 async function loadVanished(reader: Reader, buildId: number, baselineId: number): Promise<Overview["vanishedBlocks"]> {
-  const rows = await reader.select<BlockName & { blockId: number }>(
-    `SELECT b.id AS blockId, b.model, b.output, b.input, b.point FROM build_blocks bb JOIN blocks b ON b.id = bb.blockId
-     WHERE bb.buildId = $2 AND bb.blockId NOT IN (SELECT blockId FROM build_blocks WHERE buildId = $1)
-     ORDER BY bb.blockId`,
+  const rows = await reader.select<JacobianName & { blockId: number }>(
+    `SELECT min(b.id) AS blockId, b.model, b.output, b.input, b.point
+     FROM build_blocks bb JOIN blocks b ON b.id = bb.blockId
+     LEFT JOIN blocks j ON j.projectId = b.projectId AND j.model = b.model AND j.point = b.point
+       AND j.output = b.output AND j.input = b.input AND j.probe = ''
+       AND EXISTS (SELECT 1 FROM build_blocks x WHERE x.buildId = $2 AND x.blockId = j.id)
+     WHERE bb.buildId = $2 AND CASE
+       WHEN b.probe = '' THEN b.id NOT IN (SELECT blockId FROM build_blocks WHERE buildId = $1)
+       ELSE j.id IS NULL AND NOT EXISTS (SELECT 1 FROM build_blocks x JOIN blocks o ON o.id = x.blockId
+         WHERE x.buildId = $1 AND o.model = b.model AND o.point = b.point AND o.output = b.output AND o.input = b.input)
+       END
+     GROUP BY b.model, b.output, b.input, b.point ORDER BY min(b.id)`,
     [buildId, baselineId],
   );
   return rows.map(({ blockId, model, output, input, point }) => ({

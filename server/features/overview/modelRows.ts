@@ -1,4 +1,5 @@
 import { groupBy } from "../../../shared/domain/groupBy.ts";
+import { jacobianKey } from "../../../shared/domain/selector.ts";
 import type { MotionCounts } from "../../../shared/numerics/types.ts";
 import type { ModelRow } from "../../../shared/schemas/project.ts";
 import { addUp, checkedShare, isWorse, worstOf } from "../../record/buildSummary.ts";
@@ -28,7 +29,7 @@ function modelRow(
   const counts = addUp(blocks);
   return {
     model,
-    blocks: blocks.map(({ blockId, output, input, point }) => ({ blockId: String(blockId), output, input, point })),
+    blocks: namesOf(blocks),
     counts,
     worst: worst && {
       blockId: String(worst.block.blockId),
@@ -41,6 +42,21 @@ function modelRow(
     motion: motionOf(blocks),
     checkedShare: checkedShare(counts) ?? 0,
   };
+}
+
+/** Each Jacobian once; probes are told of with it, and stand for it where the build has them alone. */
+function namesOf(blocks: readonly LoadedBlock[]): ModelRow["blocks"] {
+  const named = new Map<string, LoadedBlock>();
+  for (const block of blocks) {
+    const key = jacobianKey(block);
+    if (block.probe === "" || !named.has(key)) named.set(key, block);
+  }
+  return [...named.values()].map(({ blockId, output, input, point }) => ({
+    blockId: String(blockId),
+    output,
+    input,
+    point,
+  }));
 }
 
 /** Sum over the blocks that have a baseline; null where none has. */

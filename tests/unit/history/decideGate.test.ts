@@ -34,6 +34,7 @@ function gate(more: Partial<GateInput> = {}) {
     head: [block("thrust/pitch")],
     baseBlocks: [block("thrust/pitch")],
     bad: [],
+    rises: [],
     policy: DEFAULT_GATE_POLICY,
     ...more,
   });

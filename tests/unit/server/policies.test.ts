@@ -47,6 +47,8 @@ const POSTERS: Name[] = [...DEVELOPERS, "poster"];
 /** Written out once more by hand, so that a change of the tables has to be meant. */
 const TABLE: Record<Action, Name[]> = {
   "audit.read": LEADS,
+  "baseline.read": READERS,
+  "baseline.accept": LEADS,
   "break.read": READERS,
   "break.comment": DEVELOPERS,
   "break.assign": DEVELOPERS,
