@@ -1,6 +1,8 @@
+import { createHash } from "node:crypto";
 import type { Signature } from "../../shared/schemas/break.ts";
 import type { BlockNumbers, JudgedBlock, ReferenceNumbers } from "../../shared/numerics/types.ts";
 import type { ReferenceMethod, StepKind, UncertaintyKind } from "../../shared/domain/vocabulary.ts";
+import type { ProbeDetails } from "../../shared/schemas/block.ts";
 import type { Cost } from "../../shared/schemas/build.ts";
 import { signaturesOf } from "./blockSignatures.ts";
 import type { SkeletonBlock } from "./skeleton.ts";
@@ -12,7 +14,8 @@ export interface BlockDetails {
   readonly derivativeMethod: string;
   readonly references: readonly ReferenceDetails[];
   readonly signatures: readonly Signature[];
-  readonly probes: SkeletonBlock["probes"];
+  /** What the probe came to, where the block is one. */
+  readonly probe?: ProbeDetails;
   readonly sources: readonly string[];
 }
 export interface SideDetails {
@@ -54,9 +57,14 @@ export function detailsOf(block: SkeletonBlock, numbers: BlockNumbers, judged: J
       columns: reference.columns && [...reference.columns],
     })),
     signatures: signaturesOf(block, numbers, judged),
-    probes: block.probes,
     sources: block.sources,
   };
+}
+
+/** The details as they are stored. */
+export function hashedDetails(told: BlockDetails): { readonly details: string; readonly detailsHash: Uint8Array } {
+  const details = JSON.stringify(told);
+  return { details, detailsHash: createHash("sha256").update(details).digest() };
 }
 
 export function costsOf(block: SkeletonBlock): BlockCosts | null {

@@ -1,27 +1,41 @@
 import type { BlockNumbers, ReferenceNumbers, ReferenceStep } from "../../shared/numerics/types.ts";
+import { checkProbes } from "./checkProbes.ts";
 import type { Complaints, Path } from "./complaints.ts";
 import { decodeMatrix } from "./decodeMatrix.ts";
 import type { Shape } from "./decodeMatrix.ts";
 import { decodeVector } from "./decodeVector.ts";
 import { readNumber } from "./readNumber.ts";
+import { isProbedOnly } from "./skeleton.ts";
 import type { SkeletonBlock } from "./skeleton.ts";
 
 type SkeletonReference = SkeletonBlock["references"][number];
 
+export interface DecodedBlock {
+  /** Null where only probes were posted. */
+  readonly numbers: BlockNumbers | null;
+  readonly outputValues: Float64Array | null;
+}
+
 /** Reads the numbers of one block; what is wrong goes to `complaints`, and the result is then of no use. */
-export function decodeBlock(block: SkeletonBlock, path: Path, complaints: Complaints): BlockNumbers {
+export function decodeBlock(block: SkeletonBlock, path: Path, complaints: Complaints): DecodedBlock {
   const shape = { rows: block.output.size, columns: block.input.size };
   checkNames(block, path, complaints);
-  checkProbes(block, path, complaints);
-  return {
-    ...shape,
-    outputValues: sideValues(block.output, {}, [...path, "output"], complaints),
-    inputValues: sideValues(block.input, { finite: true }, [...path, "input"], complaints),
-    derivative: decodeMatrix(block.derivative.values, shape, {}, [...path, "derivative", "values"], complaints).values,
-    references: block.references.map((reference, k) =>
-      decodeReference(reference, shape, [...path, "references", k], complaints),
-    ),
-  };
+  checkProbes(block.probes, path, complaints);
+  const outputValues = sideValues(block.output, {}, [...path, "output"], complaints);
+  const inputValues = sideValues(block.input, { finite: true }, [...path, "input"], complaints);
+  if (isProbedOnly(block)) return { numbers: null, outputValues };
+  const derivative = derivativeOf(block, shape, [...path, "derivative", "values"], complaints);
+  const references = block.references.map((reference, k) =>
+    decodeReference(reference, shape, [...path, "references", k], complaints),
+  );
+  return { numbers: { ...shape, outputValues, inputValues, derivative, references }, outputValues };
+}
+
+function derivativeOf(block: SkeletonBlock, shape: Shape, path: Path, complaints: Complaints): Float64Array {
+  const { values } = block.derivative;
+  if (values !== undefined) return decodeMatrix(values, shape, {}, path, complaints).values;
+  complaints.add(path, "is missing: only a block with probes and without references may leave it out");
+  return new Float64Array(0);
 }
 
 function sideValues(
@@ -41,18 +55,6 @@ function checkNames(block: SkeletonBlock, path: Path, complaints: Complaints): v
       complaints.add([...path, side, "elements"], `has ${elements.length} names, expected ${size}`);
     }
   }
-}
-
-function checkProbes(block: SkeletonBlock, path: Path, complaints: Complaints): void {
-  block.probes.forEach((probe, k) => {
-    const [name, a, b] =
-      probe.kind === "taylor"
-        ? (["remainders", probe.steps.length, probe.remainders.length] as const)
-        : probe.kind === "directional"
-          ? (["reference", probe.derivative.length, probe.reference.length] as const)
-          : (["", 0, 0] as const);
-    if (a !== b) complaints.add([...path, "probes", k, name], `has ${b} numbers, expected ${a}`);
-  });
 }
 
 function decodeReference(

@@ -19,15 +19,16 @@ export function decodeVector(
       return values;
     }
   }
-  const values = new Float64Array(length);
+  // Nothing of `length` is allocated before as many numbers are there: a size may be told of any magnitude.
   if (!Array.isArray(posted)) {
     complaints.add(path, 'must be an array of numbers or {"f64le": "..."}');
-    return values;
+    return NOTHING;
   }
   if (posted.length !== length) {
     complaints.add(path, `has ${posted.length} numbers, expected ${length}`);
-    return values;
+    return NOTHING;
   }
+  const values = new Float64Array(length);
   for (let at = 0; at < length; at++) {
     const read = readNumber(posted[at], rule);
     if (read.wrong !== null) {
@@ -39,21 +40,22 @@ export function decodeVector(
   return values;
 }
 
+const NOTHING = new Float64Array(0);
 const BASE64 = /^[A-Za-z0-9+/]*={0,2}$/;
 const BYTES = Float64Array.BYTES_PER_ELEMENT;
 
 /** Little-endian binary64 numbers from base64 (RFC 4648 section 4, padded), exactly `length` of them. */
 export function decodeBase64Numbers(posted: unknown, length: number, path: Path, complaints: Complaints): Float64Array {
-  const values = new Float64Array(length);
   if (typeof posted !== "string" || posted.length % 4 !== 0 || !BASE64.test(posted)) {
     complaints.add(path, "must be base64 with padding (RFC 4648) of little-endian binary64 numbers");
-    return values;
+    return NOTHING;
   }
   const bytes = Buffer.from(posted, "base64");
   if (bytes.length !== length * BYTES) {
     complaints.add(path, `has ${bytes.length} bytes, expected ${length * BYTES} (${length} numbers of ${BYTES})`);
-    return values;
+    return NOTHING;
   }
+  const values = new Float64Array(length);
   // Every machine that Node.js runs on is little-endian, but a view must begin at a multiple of 8.
   new Uint8Array(values.buffer).set(bytes);
   return values;

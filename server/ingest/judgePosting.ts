@@ -4,21 +4,19 @@ import { blockKey } from "../../shared/domain/selector.ts";
 import type { BlockName } from "../../shared/domain/selector.ts";
 import { tolerancesFor } from "../../shared/domain/tolerances.ts";
 import type { ToleranceRule, Tolerances } from "../../shared/domain/tolerances.ts";
-import { VERDICTS } from "../../shared/domain/vocabulary.ts";
 import type { Verdict } from "../../shared/domain/vocabulary.ts";
-import { toWire, toWireOrNull } from "../../shared/schemas/common.ts";
 import type { WireNumber } from "../../shared/schemas/common.ts";
-import type { BlockNumbers, JudgedBlock, ReferenceNumbers, VerdictCounts } from "../../shared/numerics/types.ts";
+import type { BlockNumbers, VerdictCounts } from "../../shared/numerics/types.ts";
 import { judgeBlock } from "../../shared/numerics/verdict/judgeBlock.ts";
-import { costsOf, detailsOf } from "./blockDetails.ts";
+import { costsOf, detailsOf, hashedDetails } from "./blockDetails.ts";
 import { Complaints } from "./complaints.ts";
+import { cutBlock } from "./cutBlock.ts";
 import { decodeBlock } from "./decodeBlock.ts";
 import { extractMatrices } from "./extractMatrices.ts";
 import { inflateBody } from "./inflateBody.ts";
+import { judgeProbes } from "./judgeProbes.ts";
 import { parseJson } from "./parseJson.ts";
-import { PLANE_KIND } from "./planes.ts";
 import type { PlaneTiles } from "./planes.ts";
-import { resolutionBins } from "./resolutionBins.ts";
 import type { ResolutionBins } from "./resolutionBins.ts";
 import { invalid, readSkeleton } from "./skeleton.ts";
 import type { SkeletonBlock, SkeletonDocument } from "./skeleton.ts";
@@ -95,11 +93,12 @@ export function judgePosting(posting: Posting): JudgedPosting {
     const twin = names.get(blockKey(name));
     if (twin !== undefined) complaints.add(path, `is the same block as number ${twin} of this document`);
     names.set(blockKey(name), at);
-    const numbers = decodeBlock(block, path, complaints);
+    const { numbers, outputValues } = decodeBlock(block, path, complaints);
     block.derivative.values = null;
     if (!complaints.any) {
       const tolerances = tolerancesFor(posting.tolerances, posting.rules ?? [], name, document.lane);
-      judged.push({ ...name, ...judgeAndCut(block, numbers, tolerances, tiles) });
+      if (numbers !== null) judged.push({ ...name, ...judgeAndCut(block, numbers, tolerances, tiles) });
+      judged.push(...judgeProbes(block, name, outputValues, tolerances, tiles));
     }
     block.references = [];
   });
@@ -174,7 +173,7 @@ function restoreIn(owner: unknown, restore: (value: unknown) => unknown): void {
 const NOTHING = new Uint8Array(0);
 
 function nameOf({ model, point, output, input }: SkeletonBlock): BlockName {
-  return { model, point, output: output.name, input: input.name };
+  return { model, point, output: output.name, input: input.name, probe: "" };
 }
 
 function judgeAndCut(
@@ -184,80 +183,10 @@ function judgeAndCut(
   tiles: TileSet,
 ): Omit<JudgedPostedBlock, keyof BlockName> {
   const judged = judgeBlock(numbers, tolerances);
-  const planes = cutPlanes(numbers, judged, tiles);
-  const details = JSON.stringify(detailsOf(block, numbers, judged));
   const costs = costsOf(block);
   return {
-    snapshot: {
-      hash: snapshotHash(numbers, judged, planes, tiles),
-      rows: numbers.rows,
-      columns: numbers.columns,
-      planes,
-      rtol: tolerances.rtol,
-      floor: judged.floor,
-      counts: judged.counts,
-      worst: storedWorst(judged, numbers.columns),
-      resolutions: resolutionBins(judged.resolution),
-    },
-    details,
-    detailsHash: createHash("sha256").update(details).digest(),
+    snapshot: cutBlock(numbers, judged, tiles),
+    ...hashedDetails(detailsOf(block, numbers, judged)),
     costs: costs && JSON.stringify(costs),
-  };
-}
-
-function cutPlanes(numbers: BlockNumbers, judged: JudgedBlock, tiles: TileSet): PlaneTiles<number>[] {
-  const planes = [
-    tiles.addPlane("derivative", numbers.derivative),
-    tiles.addPlane("reference", judged.best.value),
-    tiles.addPlane("resolution", judged.resolution),
-    tiles.addPlane("verdict", judged.verdict),
-    tiles.addPlane("source", judged.best.source),
-    tiles.addPlane("step", judged.best.step),
-  ];
-  if (numbers.outputValues) planes.push(tiles.addPlane("outputValues", numbers.outputValues));
-  if (numbers.inputValues) planes.push(tiles.addPlane("inputValues", numbers.inputValues));
-  numbers.references.forEach((reference, r) => {
-    reference.steps.forEach((step, s) => planes.push(tiles.addPlane("posted", step.values, r, s)));
-    reference.steps.forEach(({ step }, s) => {
-      if (step instanceof Float64Array) planes.push(tiles.addPlane("columnSteps", step, r, s));
-    });
-    if (reference.uncertainty !== null) planes.push(tiles.addPlane("stated", statedPlane(reference), r));
-  });
-  return planes;
-}
-
-function statedPlane({ uncertainty, steps }: ReferenceNumbers): Float64Array {
-  if (uncertainty instanceof Float64Array) return uncertainty;
-  return new Float64Array(steps[0].values.length).fill(uncertainty ?? NaN);
-}
-
-/** Follows from the numbers and tolerances alone, not from what the record holds already. */
-function snapshotHash(
-  numbers: BlockNumbers,
-  judged: JudgedBlock,
-  planes: readonly PlaneTiles<number>[],
-  tiles: TileSet,
-): Uint8Array {
-  const { rtol, floorRel, floorAbs } = judged.tolerances;
-  const hash = createHash("sha256");
-  hash.update(JSON.stringify([numbers.rows, numbers.columns, rtol, floorRel, floorAbs]));
-  for (const plane of planes) {
-    hash.update(Uint32Array.of(PLANE_KIND[plane.name], plane.reference, plane.step, plane.tiles.length));
-    for (const tile of plane.tiles) hash.update(tiles.hashAt(tile));
-  }
-  return hash.digest();
-}
-
-function storedWorst(judged: JudgedBlock, columns: number): StoredWorst | null {
-  const { worst } = judged;
-  if (worst === null) return null;
-  return {
-    row: worst.row,
-    column: worst.column,
-    verdict: VERDICTS[judged.verdict[worst.row * columns + worst.column]],
-    error: toWireOrNull(worst.error),
-    derivative: toWire(worst.derivative),
-    reference: toWireOrNull(worst.reference),
-    uncertainty: toWireOrNull(worst.uncertainty),
   };
 }

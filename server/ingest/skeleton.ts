@@ -21,6 +21,8 @@ export function readSkeleton(document: unknown, limits: Limits): SkeletonDocumen
   if (count > limits.blocks) throw tooMany(count, "blocks", limits.blocks);
   const parsed = skeletonDocument.safeParse(document);
   if (!parsed.success) throw invalid(zodComplaints(parsed.error, [], "is not a property of the format"));
+  const probes = parsed.data.blocks.reduce((sum, block) => sum + block.probes.length, 0);
+  if (probes > limits.blocks) throw tooMany(probes, "probes", limits.blocks);
   const entries = parsed.data.blocks.reduce((sum, block) => sum + entriesOf(block), 0);
   if (entries > limits.entries) throw tooMany(entries, "entries", limits.entries);
   const numbers = parsed.data.blocks.reduce((sum, block) => sum + entriesOf(block) * matricesOf(block), 0);
@@ -32,9 +34,19 @@ export function readSkeleton(document: unknown, limits: Limits): SkeletonDocumen
 /** Sparse matrices take few bytes on the wire, whatever their size: what they unfold to is limited too. */
 const NUMBERS_PER_ENTRY = 16;
 
-/** Of an empty block the elements of its longer side count: they have values and names. */
-function entriesOf({ output, input }: SkeletonBlock): number {
-  return Math.max(1, output.size) * Math.max(1, input.size);
+/** True where a block comes without its Jacobian: its probes are all that is recorded. */
+export function isProbedOnly({ derivative, references, probes }: SkeletonBlock): boolean {
+  return derivative.values === undefined && probes.length > 0 && references.length === 0;
+}
+
+/**
+ * Of an empty block the elements of its longer side count: they have values and names. Of a block that is probed only
+ * the sizes are told and nothing of that size is kept.
+ */
+function entriesOf(block: SkeletonBlock): number {
+  const { output, input, probes } = block;
+  const ofProbes = probes.reduce((sum, probe) => sum + (probe.kind === "directional" ? probe.derivative.length : 1), 0);
+  return ofProbes + (isProbedOnly(block) ? 0 : Math.max(1, output.size) * Math.max(1, input.size));
 }
 
 function matricesOf({ references }: SkeletonBlock): number {

@@ -1,6 +1,8 @@
+import { jacobianKey } from "../../shared/domain/selector.ts";
+import type { BlockName } from "../../shared/domain/selector.ts";
 import type { Verdict } from "../../shared/domain/vocabulary.ts";
 import type { VerdictCounts } from "../../shared/numerics/types.ts";
-import type { SummaryCounts } from "../../shared/schemas/build.ts";
+import type { ProbeCounts, SummaryCounts } from "../../shared/schemas/build.ts";
 import { fromWire } from "../../shared/schemas/common.ts";
 import type { Reader } from "../db/reader.ts";
 import type { Writer } from "../db/write.ts";
@@ -15,7 +17,7 @@ export interface BuildSummary {
 }
 
 /** A judged block as sums are made of it. */
-export interface SummedBlock extends VerdictCounts {
+export interface SummedBlock extends VerdictCounts, BlockName {
   readonly blockId: number;
   /** Entries whose verdict is that of an earlier build. */
   readonly carried: number;
@@ -26,9 +28,9 @@ export interface SummedBlock extends VerdictCounts {
 /** Adds up the blocks that a build has so far; of equally bad entries the first by its block's names is the worst. */
 export async function sumUpBuild(reader: Reader, buildId: number): Promise<BuildSummary> {
   const blocks = await reader.select<SummedBlock>(
-    `SELECT bb.blockId, ${COUNTS_SQL}, s.worst
+    `SELECT bb.blockId, b.model, b.point, b.output, b.input, b.probe, ${COUNTS_SQL}, s.worst
      FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId ${JOIN_COVERAGE}
-     WHERE bb.buildId = $1 ORDER BY b.model, b.output, b.input, b.point`,
+     WHERE bb.buildId = $1 ORDER BY b.model, b.output, b.input, b.point, b.probe`,
     [buildId],
   );
   const worst = worstOf(blocks);
@@ -43,16 +45,25 @@ export async function summaryOf(
   return build.summary === null ? sumUpBuild(reader, build.id) : readSummary(build.summary);
 }
 
-/** What was stored before entries were carried has none that are. */
+/** What was stored before entries were carried, or probes counted, has none. */
 export function readSummary(stored: string): BuildSummary {
   const { counts, worst } = JSON.parse(stored) as BuildSummary;
-  return { counts: { ...counts, carried: counts.carried ?? 0 }, worst };
+  return { counts: wholeCounts(counts), worst };
 }
 
-export function addUp(blocks: readonly (VerdictCounts & Pick<SummedBlock, "carried">)[]): SummaryCounts {
-  const sum = (name: keyof VerdictCounts | "carried") => blocks.reduce((total, block) => total + block[name], 0);
+/** Counts as they were stored or answered once, with all that is counted by now. */
+export function wholeCounts(counts: SummaryCounts): SummaryCounts {
+  return { ...counts, carried: counts.carried ?? 0, probes: counts.probes ?? countProbes([]) };
+}
+
+/** Entries are those of Jacobians; a Jacobian counts as one block with its probes, and so do probes that have none. */
+export function addUp(
+  blocks: readonly (VerdictCounts & Pick<SummedBlock, "carried" | keyof BlockName>)[],
+): SummaryCounts {
+  const jacobians = blocks.filter(({ probe }) => probe === "");
+  const sum = (name: keyof VerdictCounts | "carried") => jacobians.reduce((total, block) => total + block[name], 0);
   return {
-    blocks: blocks.length,
+    blocks: new Set(blocks.map(jacobianKey)).size,
     entries: sum("entries"),
     agrees: sum("agrees"),
     disagrees: sum("disagrees"),
@@ -60,7 +71,19 @@ export function addUp(blocks: readonly (VerdictCounts & Pick<SummedBlock, "carri
     unreferenced: sum("unreferenced"),
     invalid: sum("invalid"),
     carried: sum("carried"),
+    probes: countProbes(blocks.filter(({ probe }) => probe !== "")),
   };
+}
+
+/** Each probe counts once, by the worst of its verdicts. */
+function countProbes(probes: readonly VerdictCounts[]): ProbeCounts {
+  const counts = { agrees: 0, disagrees: 0, unresolved: 0, invalid: 0 };
+  for (const probe of probes) {
+    const worst = (["invalid", "disagrees", "unresolved"] as const).find((verdict) => probe[verdict] > 0);
+    // Of a directional derivative that has holes nothing more is known.
+    counts[worst ?? (probe.unreferenced > 0 ? "unresolved" : "agrees")] += 1;
+  }
+  return counts;
 }
 
 /** The worst entry of several blocks, the first of equal ones; null where none has an entry. */
@@ -90,9 +113,10 @@ export function isWorse(a: StoredWorst, b: StoredWorst): boolean {
   return size(a) > size(b);
 }
 
-/** The worst verdict that occurs, or null of no entries. */
-export function worstVerdict(counts: Pick<SummaryCounts, Verdict>): Verdict | null {
-  return GRAVITY.find((verdict) => counts[verdict] > 0) ?? null;
+/** The worst verdict that occurs, of entries and of probes; null where there is neither. */
+export function worstVerdict(counts: Pick<SummaryCounts, Verdict | "probes">): Verdict | null {
+  const probed = (verdict: Verdict) => verdict !== "unreferenced" && counts.probes[verdict] > 0;
+  return GRAVITY.find((verdict) => counts[verdict] > 0 || probed(verdict)) ?? null;
 }
 
 /** Share of the entries that have a reference, 0..1; null of no entries. */

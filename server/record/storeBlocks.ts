@@ -1,4 +1,4 @@
-import { blockKey } from "../../shared/domain/selector.ts";
+import { blockKey, jacobianKey } from "../../shared/domain/selector.ts";
 import type { BlockName } from "../../shared/domain/selector.ts";
 import type { Bindable, Writer } from "../db/write.ts";
 import type { JudgedPostedBlock } from "../ingest/judgePosting.ts";
@@ -43,8 +43,8 @@ async function ensureBlocks(w: Writer, projectId: number, blocks: readonly Judge
   const fresh = blocks.filter((block) => !known.has(blockKey(block)));
   await w.insertOrIgnore(
     "blocks",
-    ["projectId", "model", "point", "output", "input"],
-    fresh.map((block): Bindable[] => [projectId, block.model, block.point, block.output, block.input]),
+    ["projectId", "model", "point", "output", "input", "probe"],
+    fresh.map((block): Bindable[] => [projectId, block.model, block.point, block.output, block.input, block.probe]),
     500,
   );
   const added = fresh.length === 0 ? known : await loadBlockIds(w, projectId, fresh);
@@ -54,7 +54,7 @@ async function ensureBlocks(w: Writer, projectId: number, blocks: readonly Judge
 /** Ids by name of all blocks of the models that the given ones are of. */
 async function loadBlockIds(w: Writer, projectId: number, blocks: readonly BlockName[]): Promise<Map<string, number>> {
   const rows = await w.select<BlockName & { id: number }>(
-    `SELECT id, model, point, output, input FROM blocks
+    `SELECT id, model, point, output, input, probe FROM blocks
      WHERE projectId = $1 AND model IN (SELECT value FROM json_each($2))`,
     [projectId, JSON.stringify([...new Set(blocks.map((block) => block.model))])],
   );
@@ -73,9 +73,11 @@ async function refuseTwins(
   );
   if (twin === undefined) return;
   const at = blockIds.indexOf(twin.blockId);
-  const { model, output, input, point } = blocks[at];
-  const name = `${model}, ${output} by ${input} at ${point}`;
-  throw new RecordConflict("invalid", `${name} came with another shard of this build already`, `#/blocks/${at}`);
+  const { model, output, input, point, probe } = blocks[at];
+  const name = `${probe === "" ? "" : `probe ${probe} of `}${model}, ${output} by ${input} at ${point}`;
+  // Where a block came with probes it is in the list more than once: its place in the document is that of its names.
+  const place = [...new Set(blocks.map(jacobianKey))].indexOf(jacobianKey(blocks[at]));
+  throw new RecordConflict("invalid", `${name} came with another shard of this build already`, `#/blocks/${place}`);
 }
 
 async function storeSnapshots(

@@ -1,3 +1,4 @@
+import { jacobianKey } from "../../shared/domain/selector.ts";
 import type { Writer } from "../db/write.ts";
 import type { JudgedPosting } from "../ingest/judgePosting.ts";
 import { storeSummary } from "./buildSummary.ts";
@@ -160,18 +161,22 @@ async function refuseTooLarge(
   posting: JudgedPosting,
   limits: { readonly entries: number; readonly blocks: number },
 ): Promise<void> {
-  const [before] = await w.select<{ entries: number; blocks: number }>(
-    `SELECT COALESCE(sum(s.rowCount * s.columnCount), 0) AS entries, count(*) AS blocks
-     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId WHERE bb.buildId = $1`,
+  const [before] = await w.select<{ entries: number; blocks: number; probes: number }>(
+    `SELECT COALESCE(sum(s.rowCount * s.columnCount), 0) AS entries,
+       count(DISTINCT json_array(b.model, b.point, b.output, b.input)) AS blocks, count(nullif(b.probe, '')) AS probes
+     FROM build_blocks bb JOIN snapshots s ON s.id = bb.snapshotId JOIN blocks b ON b.id = bb.blockId
+     WHERE bb.buildId = $1`,
     [buildId],
   );
   const entries = posting.blocks.reduce((sum, { snapshot }) => sum + snapshot.rows * snapshot.columns, before.entries);
-  const blocks = before.blocks + posting.blocks.length;
+  const blocks = before.blocks + new Set(posting.blocks.map(jacobianKey)).size;
+  const probes = before.probes + posting.blocks.filter(({ probe }) => probe !== "").length;
   if (entries > limits.entries) {
     throw new RecordConflict("too-large", `The build has ${entries} entries, at most ${limits.entries} are taken.`);
   }
-  if (blocks > limits.blocks) {
-    throw new RecordConflict("too-large", `The build has ${blocks} blocks, at most ${limits.blocks} are taken.`);
+  for (const [count, what] of [[blocks, "blocks"] as const, [probes, "probes"] as const]) {
+    if (count <= limits.blocks) continue;
+    throw new RecordConflict("too-large", `The build has ${count} ${what}, at most ${limits.blocks} are taken.`);
   }
 }
 

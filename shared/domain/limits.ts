@@ -18,6 +18,8 @@ export const JSON_ENTRY_LIMIT = 250_000;
 /** References and steps of one block that the source planes can name. */
 export const MAX_REFERENCES = 32;
 export const MAX_SWEEP_STEPS = 64;
+/** Probes of one block. */
+export const MAX_PROBES = 1000;
 /** Builds after which an entry that was not checked again counts as unreferenced; a project may set its own. */
 export const DEFAULT_CHECK_LIMIT = 20;
 /** Ages are kept in one byte, of which the last value means "never checked". */

@@ -10,12 +10,17 @@ export interface Selector {
   readonly columns?: readonly number[] | undefined;
 }
 
-/** What a selector is matched against. */
-export interface BlockName {
+/** The Jacobian that a block is, or is a probe of: what a selector is matched against. */
+export interface JacobianName {
   readonly model: string;
   readonly output: string;
   readonly input: string;
   readonly point: string;
+}
+
+export interface BlockName extends JacobianName {
+  /** Empty for the Jacobian itself; else the probe of it, as "<kind>: <label>". */
+  readonly probe: string;
 }
 
 /** Compiles a glob to an anchored regular expression; every other character stands for itself. */
@@ -33,12 +38,17 @@ export function selectsEntry({ rows, columns }: Selector, row: number, column: n
 }
 
 /** The same text for the same block, another for any other. */
-export function blockKey({ model, point, output, input }: BlockName): string {
+export function blockKey({ model, point, output, input, probe }: BlockName): string {
+  return JSON.stringify([model, point, output, input, probe]);
+}
+
+/** The same text for a Jacobian and all its probes. */
+export function jacobianKey({ model, point, output, input }: JacobianName): string {
   return JSON.stringify([model, point, output, input]);
 }
 
 /** True where the selector's name fields and lane cover the block (rows and columns are not looked at). */
-export function selects(selector: Selector, block: BlockName, lane: string): boolean {
+export function selects(selector: Selector, block: JacobianName, lane: string): boolean {
   const covers = (glob: string | undefined, name: string) => glob === undefined || globToRegExp(glob).test(name);
   return (
     covers(selector.model, block.model) &&

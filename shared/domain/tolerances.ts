@@ -1,5 +1,5 @@
 import { selects } from "./selector.ts";
-import type { BlockName, Selector } from "./selector.ts";
+import type { JacobianName, Selector } from "./selector.ts";
 
 /** The three numbers a verdict is made with; leads set them per project and per selector. */
 export interface Tolerances {
@@ -27,7 +27,7 @@ export interface ToleranceRule {
 export function tolerancesFor(
   base: Tolerances,
   rules: readonly ToleranceRule[],
-  block: BlockName,
+  block: JacobianName,
   lane: string,
 ): Tolerances {
   return rules

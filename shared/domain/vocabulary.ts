@@ -51,6 +51,10 @@ export type ReferenceMethod = (typeof REFERENCE_METHODS)[number];
 export const UNCERTAINTY_KINDS = ["stated", "measured", "modelled"] as const;
 export type UncertaintyKind = (typeof UNCERTAINTY_KINDS)[number];
 
+/** Checks that need no full Jacobian. */
+export const PROBE_KINDS = ["dot-product", "taylor", "directional"] as const;
+export type ProbeKind = (typeof PROBE_KINDS)[number];
+
 export const STEP_KINDS = ["absolute", "relative"] as const;
 export type StepKind = (typeof STEP_KINDS)[number];
 

@@ -58,6 +58,8 @@ export const breakEntry = z
     output: z.string(),
     input: z.string(),
     point: z.string(),
+    /** The probe that the entry is of, as "<kind>: <label>"; null for an entry of a Jacobian. */
+    probe: z.string().nullable(),
     row: z.number().int(),
     column: z.number().int(),
     verdict: z.enum(VERDICTS),

@@ -1,5 +1,5 @@
 import { z } from "zod";
-import { MAX_REFERENCES, MAX_SWEEP_STEPS } from "../domain/limits.ts";
+import { MAX_PROBES, MAX_REFERENCES, MAX_SWEEP_STEPS } from "../domain/limits.ts";
 import {
   BUILD_STATES,
   DEFAULT_LANE,
@@ -18,7 +18,10 @@ const modelName = z
   .string()
   .regex(/^[^\s.]+(\.[^\s.]+)*$/u, "must be dotted words without spaces, like rotor.thrust")
   .max(200);
-const size = z.number().int().min(0).max(2_147_483_647);
+/** Of a block that is probed only any size goes; where its numbers are posted they are counted against the limits. */
+const size = z.number().int().min(0);
+const magnitude = z.number().min(0);
+const precision = z.number().positive().max(1);
 const runId = z.string().trim().min(1).max(200);
 
 /** Dense rows, dense base64 or sparse triplets. The numbers themselves are read by a tight loop, see server/ingest/decode. */
@@ -45,6 +48,53 @@ export const cost = z.strictObject({
 });
 export type Cost = z.infer<typeof cost>;
 
+const VALUES_MAY_BE_MISSING =
+  "May be left out of a block with at least one probe and no references: then only its probes are recorded, and its sizes count against no limit.";
+
+/** A check that needs no full Jacobian. Its label is, if not given, its number among the probes of its kind, from 1. */
+const probe = z
+  .discriminatedUnion("kind", [
+    z.strictObject({
+      kind: z.literal("dot-product"),
+      label: name.optional(),
+      forward: wireNumber,
+      reverse: wireNumber,
+      scale: magnitude
+        .optional()
+        .meta({ description: "Size of the terms that were added: |w|.|J||v|, or a bound like ||w|| ||J v||." }),
+      precision: precision
+        .optional()
+        .meta({ description: "Relative precision of the arithmetic, 2.2e-16 if not given." }),
+    }),
+    z.strictObject({
+      kind: z.literal("taylor"),
+      label: name.optional(),
+      steps: z
+        .array(z.number().positive())
+        .min(2)
+        .max(MAX_SWEEP_STEPS)
+        .meta({ description: "Each smaller than the one before, or each larger." }),
+      remainders: z.array(wireNumber).min(2).max(MAX_SWEEP_STEPS).meta({ description: "|f(x + h d) - f(x) - h g.d|" }),
+      scale: magnitude
+        .optional()
+        .meta({ description: "|g.d|. Without it the slope of the remainders alone has to tell." }),
+      value: magnitude.optional().meta({ description: "|f(x)|, from which the rounding of the remainders is known." }),
+      precision: precision
+        .optional()
+        .meta({ description: "Relative precision of the values of f, 2.2e-16 if not given." }),
+    }),
+    z.strictObject({
+      kind: z.literal("directional"),
+      label: name.optional(),
+      method: z.enum(REFERENCE_METHODS),
+      step: z.number().positive().optional(),
+      derivative: z.array(wireNumber).min(1).meta({ description: "J d, one number for each output element." }),
+      reference: z.array(wireNumber).min(1).meta({ description: "The same by `method` at `step`." }),
+    }),
+  ])
+  .meta({ id: "Probe", description: "Recorded and judged as a block of its own, beside that of the Jacobian." });
+export type PostedProbe = z.infer<typeof probe>;
+
 /**
  * The document's schema over any representation of the numbers: on the wire (`matrix`), or as holes that the
  * decoder fills (`z.unknown()`), so that both say the same of everything else.
@@ -66,45 +116,25 @@ export function blockSchema<M extends z.ZodType, V extends z.ZodType, S extends 
     method: z.enum(REFERENCE_METHODS),
     step: numbers.step.optional(),
     stepKind: z.enum(STEP_KINDS).optional(),
-    precision: z.number().positive().max(1).optional(),
+    precision: precision.optional(),
     values: numbers.matrix.optional(),
     sweep: z.array(sweepStep).min(1).max(MAX_SWEEP_STEPS).optional(),
     columns: z.array(z.number().int().min(0)).optional(),
     uncertainty: z.union([z.number().min(0), numbers.matrix]).optional(),
     cost: cost.optional(),
   });
-  const probe = z.discriminatedUnion("kind", [
-    z.strictObject({
-      kind: z.literal("dot-product"),
-      label: name.optional(),
-      forward: wireNumber,
-      reverse: wireNumber,
-      scale: z.number().optional(),
-    }),
-    z.strictObject({
-      kind: z.literal("taylor"),
-      label: name.optional(),
-      steps: z.array(z.number().positive()).min(2),
-      remainders: z.array(wireNumber).min(2),
-      scale: z.number().optional(),
-    }),
-    z.strictObject({
-      kind: z.literal("directional"),
-      label: name.optional(),
-      method: z.enum(REFERENCE_METHODS),
-      step: z.number().positive().optional(),
-      derivative: z.array(wireNumber),
-      reference: z.array(wireNumber),
-    }),
-  ]);
   return z.strictObject({
     model: modelName,
     point: name.default(DEFAULT_POINT),
     output: side,
     input: side,
-    derivative: z.strictObject({ method: z.enum(DERIVATIVE_METHODS), values: numbers.matrix, cost: cost.optional() }),
+    derivative: z.strictObject({
+      method: z.enum(DERIVATIVE_METHODS),
+      values: numbers.matrix.optional().meta({ description: VALUES_MAY_BE_MISSING }),
+      cost: cost.optional(),
+    }),
     references: z.array(reference).max(MAX_REFERENCES).default([]),
-    probes: z.array(probe).max(1000).default([]),
+    probes: z.array(probe).max(MAX_PROBES).default([]),
     sources: z.array(z.string().max(500)).max(200).default([]),
   });
 }
@@ -151,8 +181,19 @@ export const counts = z
   })
   .meta({ id: "Counts" });
 export type Counts = z.infer<typeof counts>;
+/** Probes by their worst verdict; they are no entries of Jacobians and counted beside them. */
+export const probeCounts = z
+  .object({
+    agrees: z.number().int(),
+    disagrees: z.number().int(),
+    unresolved: z.number().int(),
+    invalid: z.number().int(),
+  })
+  .meta({ id: "ProbeCounts" });
+export type ProbeCounts = z.infer<typeof probeCounts>;
 export const summaryCounts = counts
   .extend({
+    probes: probeCounts,
     blocks: z.number().int(),
     /** Entries that this build did not check: they count with the verdict of an earlier one. */
     carried: z.number().int(),

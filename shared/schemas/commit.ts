@@ -55,6 +55,8 @@ export const stripColumn = z
         model: z.string(),
         output: z.string(),
         input: z.string(),
+        /** The probe that it is, or null for an entry of a Jacobian. */
+        probe: z.string().nullable(),
         row: z.number().int(),
         column: z.number().int(),
       })

@@ -7,10 +7,6 @@ export interface LoadedBlock extends SummedBlock {
   readonly buildId: number;
   readonly sha: string;
   readonly lane: string;
-  readonly model: string;
-  readonly point: string;
-  readonly output: string;
-  readonly input: string;
   readonly snapshotId: number;
   readonly rowCount: number;
   readonly columnCount: number;
@@ -32,7 +28,7 @@ export interface LoadedBlock extends SummedBlock {
 }
 
 const SELECT = `
-  SELECT bb.blockId, bb.buildId, c.sha, l.name AS lane, b.model, b.point, b.output, b.input, bb.snapshotId,
+  SELECT bb.blockId, bb.buildId, c.sha, l.name AS lane, b.model, b.point, b.output, b.input, b.probe, bb.snapshotId,
     s.rowCount, s.columnCount, s.rtol, s.floor, ${COUNTS_SQL}, v.counts ->> '$.oldest' AS oldest, v.planes AS coveragePlanes,
     s.worst, s.resolutions, d.details, bb.costs, m.counts AS motionCounts, m.planes AS motionPlanes
   FROM build_blocks bb JOIN builds u ON u.id = bb.buildId JOIN commits c ON c.id = u.commitId

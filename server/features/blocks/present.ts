@@ -13,6 +13,7 @@ export function presentBlockRow(block: LoadedBlock): BlockRow {
     blockId: String(block.blockId),
     model: block.model,
     point: block.point,
+    probe: block.probe === "" ? null : block.probe,
     output: presentSide(block.output, block.rowCount, details.output),
     input: presentSide(block.input, block.columnCount, details.input),
     rows: block.rowCount,

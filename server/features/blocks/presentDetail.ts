@@ -4,6 +4,7 @@ import { toWire, toWireOrNull } from "../../../shared/schemas/common.ts";
 import type { BlockCosts, BlockDetails } from "../../ingest/blockDetails.ts";
 import type { BlockPlanes, Window } from "./loadBlockPlanes.ts";
 import type { LoadedBlock } from "./loadBlockRows.ts";
+import type { Kin } from "./loadProbes.ts";
 import { presentBlockRow } from "./present.ts";
 
 /** Byte of no code: no reference, nothing to compare with. */
@@ -16,6 +17,7 @@ export function presentBlockDetail(
   window: Window,
   format: "json" | "f64le",
   posted: Float64Array | null,
+  kin: Kin,
 ): BlockDetail {
   const details = JSON.parse(block.details) as BlockDetails;
   const costs = block.costs === null ? null : (JSON.parse(block.costs) as BlockCosts);
@@ -55,7 +57,8 @@ export function presentBlockDetail(
       columns: reference.columns && [...reference.columns],
       cost: costs?.references[index] ?? null,
     })),
-    probes: details.probes.map((probe) => ({ ...probe })),
+    probes: [...kin.probes],
+    probeOf: kin.probeOf,
     sources: [...details.sources],
   };
 }

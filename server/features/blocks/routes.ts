@@ -14,6 +14,7 @@ import { numericId } from "../numericId.ts";
 import { loadBlockPlanes, loadPostedPlane, loadSideValues } from "./loadBlockPlanes.ts";
 import { loadBlockRow, loadBlockRows } from "./loadBlockRows.ts";
 import type { LoadedBlock } from "./loadBlockRows.ts";
+import { loadKin } from "./loadProbes.ts";
 import { presentBlockRow } from "./present.ts";
 import { presentBlockDetail } from "./presentDetail.ts";
 import { windowOf } from "./window.ts";
@@ -104,7 +105,8 @@ export const routes: Route[] = [
         inputValues: await loadSideValues(db, snapshotPlanes, "inputValues", block.columnCount),
       };
       const posted = await postedPlane(db, block, { snapshotPlanes, columns, window }, query);
-      return presentBlockDetail(block, planes, sides, window, query.format ?? "json", posted);
+      const kin = await loadKin(db, project.id, block);
+      return presentBlockDetail(block, planes, sides, window, query.format ?? "json", posted, kin);
     },
   }),
 ];

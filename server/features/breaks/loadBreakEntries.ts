@@ -1,3 +1,4 @@
+import type { BlockName } from "../../../shared/domain/selector.ts";
 import type { Reader } from "../../db/reader.ts";
 import { unpackEntries } from "../../record/entryList.ts";
 import { ENTRY_PLANES, entryValuesAt } from "../../record/entryValues.ts";
@@ -5,12 +6,8 @@ import type { EntryValues } from "../../record/entryValues.ts";
 import { loadSnapshots, loadSparsePlanes } from "../../record/readPlanes.ts";
 
 /** Entries of one block that belong to a break. */
-export interface BreakBlock {
+export interface BreakBlock extends BlockName {
   readonly blockId: number;
-  readonly model: string;
-  readonly output: string;
-  readonly input: string;
-  readonly point: string;
   /** Columns that the indices were counted with. */
   readonly columns: number;
   /** Flat indices, ascending. */
@@ -19,9 +16,9 @@ export interface BreakBlock {
 
 export async function loadBreakBlocks(reader: Reader, breakId: number): Promise<BreakBlock[]> {
   const rows = await reader.select<Omit<BreakBlock, "entries"> & { entries: Buffer }>(
-    `SELECT e.blockId, b.model, b.output, b.input, b.point, e.columnCount AS columns, e.entries
+    `SELECT e.blockId, b.model, b.output, b.input, b.point, b.probe, e.columnCount AS columns, e.entries
      FROM break_entries e JOIN blocks b ON b.id = e.blockId WHERE e.breakId = $1
-     ORDER BY b.model, b.output, b.input, b.point, e.columnCount`,
+     ORDER BY b.model, b.output, b.input, b.point, b.probe, e.columnCount`,
     [breakId],
   );
   return rows.map((row) => ({ ...row, entries: unpackEntries(row.entries) }));

@@ -18,13 +18,20 @@ export interface LoadedBreak extends ToldColumns {
   readonly onsetAuthor: string | null;
   readonly assigneeId: number | null;
   readonly assigneeName: string | null;
+  /** JSON: string[], names of the probes among its blocks. */
+  readonly probes: string;
+  /** Entries of those, each a number of 32 bits. */
+  readonly probeEntries: number;
 }
 
+const OF_PROBES = "FROM break_entries e JOIN blocks k ON k.id = e.blockId WHERE e.breakId = b.id AND k.probe <> ''";
 const SELECT = `
   SELECT b.id, b.number, l.name AS lane, b.laneId, b.state, b.kind, b.onset, b.onsetBuildId,
     c.committedAt AS onsetAt, c.subject AS onsetSubject, c.authorName AS onsetAuthor,
     b.lastGood, b.lastGoodBuildId, b.repairedBy, b.repairedByBuildId, b.trace, b.models, b.entryCount, b.worst,
-    b.motion, b.assigneeId, u.name AS assigneeName
+    b.motion, b.assigneeId, u.name AS assigneeName, 
+    (SELECT json_group_array(k.probe ORDER BY k.id) ${OF_PROBES}) AS probes,
+    (SELECT COALESCE(sum(length(e.entries) / 4), 0) ${OF_PROBES}) AS probeEntries
   FROM breaks b JOIN lanes l ON l.id = b.laneId
   LEFT JOIN commits c ON c.projectId = b.projectId AND c.sha = b.onset LEFT JOIN users u ON u.id = b.assigneeId`;
 

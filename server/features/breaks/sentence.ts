@@ -16,17 +16,39 @@ export function modelsInWords(models: readonly string[]): string {
 
 export interface BreakFacts {
   readonly kind: OnsetKind;
-  readonly entryCount: number;
+  /** Entries of Jacobians. */
+  readonly partials: number;
+  /** Names of the probes beside them. */
+  readonly probes: readonly string[];
   readonly models: readonly string[];
   /** True where the worst entry is not a finite number. */
   readonly invalid: boolean;
 }
 
+/** Partials and probes of a break, as its row in the record tells them. */
+export function partsOf(row: {
+  readonly entryCount: number;
+  /** JSON: string[]. */
+  readonly probes: string;
+  readonly probeEntries: number;
+}): Pick<BreakFacts, "partials" | "probes"> {
+  return { partials: row.entryCount - row.probeEntries, probes: JSON.parse(row.probes) as string[] };
+}
+
+/** `three partials`, `probe dot-product: seed 7`, `one partial and two probes`: what the facts count, not yet of what. */
+export function countedParts({ partials, probes }: Pick<BreakFacts, "partials" | "probes">): string {
+  const words = (count: number, one: string) => `${countInWords(count)} ${one}${count === 1 ? "" : "s"}`;
+  if (probes.length === 0) return words(partials, "partial");
+  if (partials > 0) return `${words(partials, "partial")} and ${words(probes.length, "probe")}`;
+  return probes.length === 1 ? `probe ${probes[0]}` : words(probes.length, "probe");
+}
+
 /** One sentence a person would write: what stopped agreeing. */
-export function breakSentence({ kind, entryCount, models, invalid }: BreakFacts): string {
-  const one = entryCount === 1;
-  const count = countInWords(entryCount);
-  const what = `${count.charAt(0).toUpperCase()}${count.slice(1)} ${one ? "partial" : "partials"} of ${modelsInWords(models)}`;
+export function breakSentence(facts: BreakFacts): string {
+  const { kind, partials, probes, models, invalid } = facts;
+  const one = partials + probes.length === 1;
+  const count = countedParts(facts);
+  const what = `${count.charAt(0).toUpperCase()}${count.slice(1)} of ${modelsInWords(models)}`;
   switch (kind) {
     case "after-good":
       return `${what} ${invalid ? "became NaN or infinite" : "stopped agreeing"} here.`;

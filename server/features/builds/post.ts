@@ -7,6 +7,7 @@ import { Conflict, Invalid, PayloadTooLarge } from "../../http/problem.ts";
 import type { RawContent } from "../../http/rawBody.ts";
 import { collectGarbage } from "../../ingest/collectGarbage.ts";
 import type { JudgedPosting } from "../../ingest/judgePosting.ts";
+import { wholeCounts } from "../../record/buildSummary.ts";
 import { RecordConflict } from "../../record/conflict.ts";
 import { storePosting } from "../../record/storePosting.ts";
 import { finishBuild } from "../../trace/finishBuild.ts";
@@ -86,7 +87,8 @@ function packAnswer(answer: PostedBuild): Buffer {
 }
 
 function unpackAnswer(packed: Buffer): PostedBuild {
-  return JSON.parse(inflateRawSync(packed).toString()) as PostedBuild;
+  const answer = JSON.parse(inflateRawSync(packed).toString()) as PostedBuild;
+  return { ...answer, summary: wholeCounts(answer.summary) };
 }
 
 /** What the record refuses, in the words of HTTP. */

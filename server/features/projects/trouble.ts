@@ -2,8 +2,7 @@ import type { ProjectRow } from "../../../shared/schemas/project.ts";
 import type { Context } from "../../context.ts";
 import type { Reader } from "../../db/reader.ts";
 import { timeOrNull } from "../../http/present.ts";
-import { worstVerdict } from "../../record/buildSummary.ts";
-import type { BuildSummary } from "../../record/buildSummary.ts";
+import { readSummary, worstVerdict } from "../../record/buildSummary.ts";
 import { speaks } from "../../record/laneBuilds.ts";
 import { loadUnwaived } from "../breaks/loadUnwaived.ts";
 import { finiteOrNull } from "../history/loadStrip.ts";
@@ -49,7 +48,7 @@ async function loadTrace(reader: Reader, projectId: number): Promise<Trouble["tr
     [projectId, TRACE_LENGTH],
   );
   return rows.reverse().map(({ sha, summary }) => {
-    const { worst, counts } = JSON.parse(summary) as BuildSummary;
+    const { worst, counts } = readSummary(summary);
     return { commit: sha, worstError: finiteOrNull(worst?.error ?? null), verdict: worstVerdict(counts) };
   });
 }

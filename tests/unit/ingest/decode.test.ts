@@ -281,11 +281,11 @@ describe("a mistake of shape", () => {
   it("in a probe is told at the shorter list", () => {
     const probes: Json = [
       { kind: "taylor", steps: [1, 2, 3], remainders: [1, 2] },
-      { kind: "directional", method: "complex-step", derivative: [1], reference: [] },
+      { kind: "directional", method: "complex-step", derivative: [1], reference: [1, 2] },
     ];
     expect(mistakes(build([block({ probes })]))).toEqual([
       "#/blocks/0/probes/0/remainders: has 2 numbers, expected 3",
-      "#/blocks/0/probes/1/reference: has 0 numbers, expected 1",
+      "#/blocks/0/probes/1/reference: has 2 numbers, expected 1",
     ]);
   });
 

@@ -179,7 +179,8 @@ describe("the limits", () => {
       });
       expect(refusal(build([huge])).kind, `${rows} x ${columns}`).toBe("too-large");
     }
-    expect(mistakes(build([sized(2_147_483_648, 1)]))).toHaveLength(1);
+    expect(refusal(build([sized(Number.MAX_SAFE_INTEGER, 1)])).kind).toBe("too-large");
+    expect(mistakes(build([sized(2 ** 53, 1)]))).toHaveLength(1);
     expect(mistakes(build([sized(-1, 1)]))).toHaveLength(1);
   });
 

@@ -3,11 +3,11 @@ import { breakSentence, countInWords, modelsInWords } from "../../../server/feat
 import { isSilent } from "../../../server/features/overview/silentLanes.ts";
 
 describe("the sentence of a break", () => {
-  const facts = { kind: "after-good", entryCount: 3, models: ["rotor.thrust"], invalid: false } as const;
+  const facts = { kind: "after-good", partials: 3, probes: [], models: ["rotor.thrust"], invalid: false } as const;
 
   it("is what a person would write", () => {
     expect(breakSentence(facts)).toBe("Three partials of rotor.thrust stopped agreeing here.");
-    expect(breakSentence({ ...facts, entryCount: 1 })).toBe("One partial of rotor.thrust stopped agreeing here.");
+    expect(breakSentence({ ...facts, partials: 1 })).toBe("One partial of rotor.thrust stopped agreeing here.");
     expect(breakSentence({ ...facts, invalid: true })).toBe(
       "Three partials of rotor.thrust became NaN or infinite here.",
     );
@@ -16,14 +16,24 @@ describe("the sentence of a break", () => {
   it("does not say that something stopped which was never seen to agree", () => {
     const first = { ...facts, kind: "since-first-check" } as const;
     expect(breakSentence(first)).toBe("Three partials of rotor.thrust have disagreed since the first check.");
-    expect(breakSentence({ ...first, entryCount: 1 })).toBe(
+    expect(breakSentence({ ...first, partials: 1 })).toBe(
       "One partial of rotor.thrust has disagreed since the first check.",
     );
     expect(breakSentence({ ...first, invalid: true })).toBe(
       "Three partials of rotor.thrust have been NaN or infinite since the first check.",
     );
-    expect(breakSentence({ ...facts, kind: "fixed-between", entryCount: 1 })).toBe(
+    expect(breakSentence({ ...facts, kind: "fixed-between", partials: 1 })).toBe(
       "One partial of rotor.thrust disagrees here; another line holds a fix.",
+    );
+  });
+
+  it("tells probes from partials", () => {
+    const probed = (partials: number, ...probes: string[]) => breakSentence({ ...facts, partials, probes });
+    expect(probed(0, "dot-product: seed 7")).toBe("Probe dot-product: seed 7 of rotor.thrust stopped agreeing here.");
+    expect(probed(0, "taylor: 1", "taylor: 2")).toBe("Two probes of rotor.thrust stopped agreeing here.");
+    expect(probed(1, "taylor: 1")).toBe("One partial and one probe of rotor.thrust stopped agreeing here.");
+    expect(breakSentence({ ...facts, kind: "since-first-check", partials: 0, probes: ["taylor: 1"] })).toBe(
+      "Probe taylor: 1 of rotor.thrust has disagreed since the first check.",
     );
   });
 

@@ -83,6 +83,7 @@ export function posted(parts: {
       unreferenced: 0,
       invalid: 0,
       carried: 0,
+      probes: { agrees: 0, disagrees: 0, unresolved: 0, invalid: 0 },
       ...parts.summary,
     },
     gate: { decision: "pass", lane: "gcc", commit: SHA, base: null, reasons: [], url, ...parts.gate },
