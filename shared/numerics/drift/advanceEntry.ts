@@ -7,10 +7,11 @@ import {
   CALM_SPREADS,
   DECISION_INTERVAL,
   driftLimit,
+  isHigh,
   jumpLimit,
-  LEARNING_LIMIT,
   nextCusum,
   STEPS_PER_DECADE,
+  SUSPICION,
   YOUNG_BUILDS,
 } from "./rules.ts";
 import type { DriftState } from "./types.ts";
@@ -21,16 +22,15 @@ import { STANDING } from "./types.ts";
  * `driftSeries`, in place. `state.standing` is that of this build.
  */
 export function advanceEntry(state: DriftState, k: number, g: number, buildId: number, news: DriftNews): void {
-  const count = state.count[k];
-  if (count > 0) watch(state, k, g, buildId, news);
-  if (count < BASELINE_BUILDS && !isSuspect(state, k)) learnBaseline(state, k, g, 1);
+  if (state.count[k] > 0) watch(state, k, g, buildId, news);
+  if (learns(state, k)) learnBaseline(state, k, g, 1);
   state.last[k] = g;
   state.awake[k] = isFixed(state, k) ? 0 : 1;
 }
 
-/** True where S is too high for the baseline to learn from a build. */
-export function isSuspect(state: DriftState, k: number): boolean {
-  return state.count[k] >= YOUNG_BUILDS && state.cusum[k] > LEARNING_LIMIT;
+/** True where the baseline has room, and S does not forbid it to learn. */
+export function learns(state: DriftState, k: number): boolean {
+  return state.count[k] < BASELINE_BUILDS && state.climbing[k] === 0 && state.cusum[k] <= SUSPICION;
 }
 
 /** Drift of the newest build, in decades. */
@@ -46,7 +46,7 @@ export function repeatedCusum(state: DriftState, k: number): number {
 
 /** True where the newest build's numbers, repeated, would leave everything as it is. */
 function isFixed(state: DriftState, k: number): boolean {
-  if (state.count[k] < BASELINE_BUILDS && !isSuspect(state, k)) return false;
+  if (learns(state, k)) return false;
   if (repeatedCusum(state, k) !== state.cusum[k]) return false;
   const drift = driftOf(state, k);
   if (state.climbing[k] !== 0) return state.calm[k] === 0 && drift >= CALM_SPREADS * state.spread[k];
@@ -58,6 +58,7 @@ function watch(state: DriftState, k: number, g: number, buildId: number, news: D
   const limit = driftLimit(state.spread[k]);
   const before = state.last[k];
   const beyond = state.standing[k] === STANDING.beyond;
+  const suspected = state.cusum[k] > SUSPICION;
   if (state.count[k] >= YOUNG_BUILDS) {
     accumulate(state, k, drift / state.spread[k], beyond, buildId);
     if (state.climbing[k] !== 0) {
@@ -65,19 +66,18 @@ function watch(state: DriftState, k: number, g: number, buildId: number, news: D
         endClimb(state, k, drift, news);
         return;
       }
-    } else if (state.cusum[k] > DECISION_INTERVAL && meanDrift(state, k, g, before) >= limit) {
+    } else if (
+      state.cusum[k] > DECISION_INTERVAL &&
+      isHigh(drift, before / STEPS_PER_DECADE - state.centre[k], limit)
+    ) {
       state.climbing[k] = 1;
       tell(news.climbs, k, state.onset[k], drift);
       return;
     }
   }
   const rise = (g - before) / STEPS_PER_DECADE;
-  if (beyond && drift >= limit && rise >= jumpLimit(state.spread[k])) tell(news.jumps, k, buildId, rise);
-}
-
-/** Mean drift of this build and the one before: one lucky build does not make a climb. */
-function meanDrift(state: DriftState, k: number, g: number, before: number): number {
-  return (g + before) / 2 / STEPS_PER_DECADE - state.centre[k];
+  if (beyond && !suspected && drift >= limit && rise >= jumpLimit(state.count[k], state.spread[k]))
+    tell(news.jumps, k, buildId, rise);
 }
 
 function accumulate(state: DriftState, k: number, z: number, beyond: boolean, buildId: number): void {

@@ -9,11 +9,12 @@ import {
   CALM_SPREADS,
   DECISION_INTERVAL,
   driftLimit,
+  isHigh,
   jumpLimit,
-  LEARNING_LIMIT,
   nextCusum,
   spreadOf,
   STEPS_PER_DECADE,
+  SUSPICION,
   YOUNG_BUILDS,
 } from "./rules.ts";
 import { standingOf } from "./standingOf.ts";
@@ -42,21 +43,23 @@ interface Yardstick {
  * Drift of one entry over its history (section 4 of the judging rules): the definition, which `advanceDrift` follows
  * to the last bit.
  *
- * Formula, for a build whose numbers tell something (`standingOf`), with g as in `errorSteps` in decades:
+ * Formula, for a build whose numbers tell something (`standingOf`), with g as in `errorSteps`, in decades:
  * 1. The baseline is that of the n <= 20 builds learned from since the last restart, this build not included: centre
  *    m = median of g, spread s = max(0.15, 1.4826 MAD) sqrt(1 + pi/(2n)); limit L = max(1, 4 s). Drift = g - m.
- * 2. From n = 5 on: z = drift / s within [-3, 3], not above 0 where d <= U; S = max(0, S + z - 0.5), at most 16, kept in
- *    binary32.
- * 3. `climb`, from n = 5 on, when none is under way: S > 8 and the mean drift of this build and the one before >= L.
- *    `end` of a climb: drift < 3 s in three builds in a row; S is 0 then.
- * 4. `jump`, from n = 1 on (s from an assumed spread of 0.3 for n < 5): g rose by at least max(1, 4 sqrt(2) s) since
- *    the build before, drift >= L, d > U. A climb or end of the same build is told instead.
- * 5. The baseline learns this build if n < 20 and S <= 4: a baseline that learned a climb would never tell it.
- * A build that tells nothing changes nothing; where it disagrees its decades are still given.
+ * 2. From n = 5 on: z = drift / s within [-3, 3], not above 0 where d <= U; S = max(0, S + z - 0.5), at most 16, kept
+ *    in binary32.
+ * 3. `climb`, from n = 5 on, when none is under way: S > 8 and the mean drift of this build and the one before, neither
+ *    taken for more than 1.5 L, is at least L. `end` of a climb: drift < 3 s in three builds in a row; S is 0 then.
+ * 4. `jump`, from n = 1 on: g rose by at least max(1, 4 sqrt(2) s) since the last build that told something, drift >= L,
+ *    d > U, and S was not above 3. Here s is at least 0.3 while n < 20. A climb or end in the same build is told instead.
+ * 5. The baseline learns this build if n < 20, S <= 3 and no climb is under way.
+ * A build that tells nothing changes nothing, as if it were not there; where it disagrees its drift is still given.
  *
- * Differences to the section: the bound on S, which does nothing to what is told but lets repeats come to rest; the root in s, for a centre that is itself estimated; the mean of two builds in 3, as one
- * lucky build in thousands of entries and builds is certain; drift >= L in 4, so that the way back from a lucky
- * cancellation is no jump, and sqrt(2), as a rise is the difference of two builds; rule 5.
+ * Differences to the section, each for fewer false events or to be in time from the fifth build on: the root in s, as
+ * the centre is itself estimated; S bounded, which lets repeats come to rest and forgets a past level; the mean in 3, as
+ * one lucky build among thousands of entries is certain; in 4 the limits of drift and rise (the way back from a lucky
+ * cancellation is no jump, a rise is the difference of two noisy builds) and that of S (a suspected entry that goes to
+ * and fro is no news); rule 5, as a baseline that learns a climb never tells it; builds that disagree teach nothing.
  *
  * Shapes: one point an item, null where there was no item or it is silent but for a disagreement. `restartsBefore`: indices of the items
  * before which a new baseline was accepted. Throws: never. NaN policy: see `standingOf`.
@@ -99,7 +102,7 @@ function yardstickOf(baseline: readonly number[]): Yardstick {
 function takeBuild(course: Course, yardstick: Yardstick, g: number, beyond: boolean): DriftEventKind | null {
   const learned = course.baseline.length;
   const event = learned === 0 ? null : eventOf(course, yardstick, g, beyond);
-  const suspect = learned >= YOUNG_BUILDS && course.cusum > LEARNING_LIMIT;
+  const suspect = course.climbing || course.cusum > SUSPICION;
   if (learned < BASELINE_BUILDS && !suspect) course.baseline.push(g);
   course.last = g;
   return event;
@@ -107,17 +110,18 @@ function takeBuild(course: Course, yardstick: Yardstick, g: number, beyond: bool
 
 function eventOf(course: Course, yardstick: Yardstick, g: number, beyond: boolean): DriftEventKind | null {
   const drift = g - yardstick.centre;
+  const suspected = course.cusum > SUSPICION;
   if (course.baseline.length >= YOUNG_BUILDS) {
     course.cusum = Math.fround(nextCusum(course.cusum, drift / yardstick.spread, beyond));
     if (course.climbing) {
       if (ends(course, drift < CALM_SPREADS * yardstick.spread)) return "end";
-    } else if (course.cusum > DECISION_INTERVAL && (g + course.last) / 2 - yardstick.centre >= yardstick.limit) {
+    } else if (course.cusum > DECISION_INTERVAL && isHigh(drift, course.last - yardstick.centre, yardstick.limit)) {
       course.climbing = true;
       return "climb";
     }
   }
-  const rises = g - course.last >= jumpLimit(yardstick.spread);
-  return beyond && rises && drift >= yardstick.limit ? "jump" : null;
+  const rises = g - course.last >= jumpLimit(course.baseline.length, yardstick.spread);
+  return beyond && !suspected && rises && drift >= yardstick.limit ? "jump" : null;
 }
 
 function ends(course: Course, calm: boolean): boolean {

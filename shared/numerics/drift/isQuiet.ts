@@ -1,5 +1,5 @@
-import { driftOf, isSuspect, repeatedCusum } from "./advanceEntry.ts";
-import { BASELINE_BUILDS, CALM_SPREADS, driftLimit } from "./rules.ts";
+import { driftOf, repeatedCusum } from "./advanceEntry.ts";
+import { BASELINE_BUILDS, CALM_SPREADS, driftLimit, SUSPICION } from "./rules.ts";
 import type { DriftState } from "./types.ts";
 
 /**
@@ -22,10 +22,8 @@ export function isQuiet(state: DriftState): boolean {
 
 function isQuietEntry(state: DriftState, k: number): boolean {
   const drift = driftOf(state, k);
-  const next = repeatedCusum(state, k);
-  const grows = next >= state.cusum[k];
-  const learns = state.count[k] < BASELINE_BUILDS && !(isSuspect(state, k) && grows);
-  if (learns) return state.climbing[k] === 0 && state.cusum[k] === 0 && (drift <= 0 || state.count[k] === 0);
   if (state.climbing[k] !== 0) return drift >= CALM_SPREADS * state.spread[k];
-  return state.cusum[k] > 0 && drift < driftLimit(state.spread[k]);
+  const frozen = state.cusum[k] > SUSPICION && repeatedCusum(state, k) >= state.cusum[k];
+  if (state.count[k] === BASELINE_BUILDS || frozen) return state.cusum[k] > 0 && drift < driftLimit(state.spread[k]);
+  return state.cusum[k] === 0 && (drift <= 0 || state.count[k] === 0);
 }

@@ -13,13 +13,15 @@ export const ALLOWANCE = 0.5;
 export const DECISION_INTERVAL = 8;
 /** S goes no higher: an entry that has long been a little higher is soon forgiven, and repeats come to rest. */
 export const CUSUM_CAP = 16;
-/** Where S is above this the build is suspect, and the baseline does not learn from it. */
-export const LEARNING_LIMIT = 4;
+/** From here on an entry is suspected: its baseline does not learn the build, and a jump is no news. */
+export const SUSPICION = 3;
 /** A drift worth telling: so many decades, and so many spreads. */
 export const LEAST_DECADES = 1;
 export const LEAST_SPREADS = 4;
+/** One build counts for so many limits at most when two are averaged. */
+const CLIPPED_LIMITS = 1.5;
 /** The rise of a jump is the difference of two builds, and so is its deviation: sqrt 2 of that of one. */
-export const JUMP_SPREADS = LEAST_SPREADS * Math.SQRT2;
+const JUMP_SPREADS = LEAST_SPREADS * Math.SQRT2;
 /** A climb ends after CALM_BUILDS in a row under CALM_SPREADS spreads. */
 export const CALM_SPREADS = 3;
 export const CALM_BUILDS = 3;
@@ -50,7 +52,20 @@ export function driftLimit(spread: number): number {
   return Math.max(LEAST_DECADES, LEAST_SPREADS * spread);
 }
 
-/** Rise from one build to the next from which on it is a jump, in decades. */
-export function jumpLimit(spread: number): number {
-  return Math.max(LEAST_DECADES, JUMP_SPREADS * spread);
+/**
+ * Rise from one build to the next from which on it is a jump, in decades; a young baseline of n builds is taken for no
+ * calmer than is assumed of an unknown one.
+ */
+export function jumpLimit(n: number, spread: number): number {
+  const known = n < BASELINE_BUILDS ? Math.max(ASSUMED_SPREAD, spread) : spread;
+  return Math.max(LEAST_DECADES, JUMP_SPREADS * known);
+}
+
+/**
+ * Whether drift has been large enough for a climb: the mean of this build's and the one before's reaches the limit,
+ * neither taken for more than 1.5 limits. One lucky build in thousands of entries is certain, and does not make a climb.
+ */
+export function isHigh(drift: number, before: number, limit: number): boolean {
+  const most = CLIPPED_LIMITS * limit;
+  return (Math.min(drift, most) + Math.min(before, most)) / 2 >= limit;
 }
