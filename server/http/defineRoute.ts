@@ -7,7 +7,7 @@ import type { Anyone, Caller, PersonActor } from "./actor.ts";
 import { MAX_JSON_BYTES } from "./jsonBody.ts";
 import type { ProblemSlug } from "./problemCatalogue.ts";
 import type { RawBody, RawContent } from "./rawBody.ts";
-import type { Reply } from "./reply.ts";
+import type { Reply, StreamedReply } from "./reply.ts";
 
 /** Who is let in before anything is looked at: no credentials asked for, a session, or a session or token. */
 export type Auth = "anyone" | "person" | "caller";
@@ -69,10 +69,14 @@ interface RouteOptions<P extends string, A extends Auth, S extends z.ZodRawShape
   readonly status?: number;
   /** Other successes, which the handler answers by `reply`. */
   readonly responses?: Readonly<Record<number, { description: string; schema: z.ZodType }>>;
+  /** Content types besides JSON that the handler answers by `streamed`, with what they hold. */
+  readonly streams?: Readonly<Record<string, z.ZodType>>;
   /** Problems besides those that follow from the rest. */
   readonly problems?: readonly ProblemSlug[];
   readonly locate?: L;
-  handler(call: Call<Actors[A], Params<P, S>, Query<Q>, Body<B>, Located<P, L>>): Promise<Answer<R> | Reply>;
+  handler(
+    call: Call<Actors[A], Params<P, S>, Query<Q>, Body<B>, Located<P, L>>,
+  ): Promise<Answer<R> | Reply | StreamedReply>;
 }
 
 /** A route as data, from which it is mounted, checked and documented. */
@@ -91,6 +95,7 @@ export interface Route {
   readonly response: z.ZodType | null;
   readonly status: number;
   readonly responses: Readonly<Record<number, { description: string; schema: z.ZodType }>>;
+  readonly streams: Readonly<Record<string, z.ZodType>>;
   readonly problems: readonly ProblemSlug[];
   readonly locate: Locate | null;
   readonly handler: (call: Call<unknown, unknown, unknown, unknown, unknown>) => Promise<unknown>;
@@ -125,6 +130,7 @@ export function defineRoute<
     response: options.response,
     status: options.status ?? (options.response === null ? 204 : 200),
     responses: options.responses ?? {},
+    streams: options.streams ?? {},
     problems: options.problems ?? [],
     locate: options.locate ?? null,
     handler: options.handler as unknown as Route["handler"],

@@ -15,7 +15,8 @@ import { requestLimiter } from "./rateLimit.ts";
 import type { Limiter } from "./rateLimit.ts";
 import { rawBodyReader } from "./rawBody.ts";
 import type { BodyReader } from "./rawBody.ts";
-import { Reply } from "./reply.ts";
+import { Reply, StreamedReply } from "./reply.ts";
+import { sendStream } from "./sendStream.ts";
 import { parseWith } from "./validate.ts";
 
 /** Reads and checks the body that a route wants. */
@@ -51,7 +52,8 @@ function serve(context: Context, route: Route, limit: Limiter, readBody: ReadBod
     const body = await readBody(request, response);
     const requestId = String(request.id);
     const result = await route.handler({ context, actor, params, query, body, project, request, response, requestId });
-    answer(context, route, response, result instanceof Reply ? result : new Reply(route.status, result, {}));
+    if (result instanceof StreamedReply) await sendStream(response, result);
+    else answer(context, route, response, result instanceof Reply ? result : new Reply(route.status, result, {}));
   };
 }
 

@@ -69,10 +69,14 @@ function security(route: Route): Record<string, string[]>[] {
 
 function successes(route: Route): ZodOpenApiResponsesObject {
   const { response } = route;
+  const streams = Object.entries(route.streams).map(([type, schema]) => [type, { schema }]);
   const own =
     response === null
       ? { description: "Done; nothing is answered." }
-      : { description: route.summary, content: { "application/json": { schema: response } } };
+      : {
+          description: route.summary,
+          content: { "application/json": { schema: response }, ...Object.fromEntries(streams) },
+        };
   const others = Object.entries(route.responses).map(([status, { description, schema }]) => [
     status,
     { description, content: { "application/json": { schema } } },

@@ -53,3 +53,15 @@ export async function loadBlockRow(
   );
   return block ?? null;
 }
+
+/** Blocks of a build by their ids: `limit` of them after the block `after`. */
+export function loadBlockPage(
+  reader: Reader,
+  buildId: number,
+  page: { readonly after: number; readonly limit: number },
+): Promise<LoadedBlock[]> {
+  return reader.select<LoadedBlock>(
+    `${SELECT} WHERE bb.buildId = $1 AND bb.blockId > $2 ORDER BY bb.blockId LIMIT $3`,
+    [buildId, page.after, page.limit],
+  );
+}

@@ -93,3 +93,19 @@ function recognised({ columns, entries, signatures, leftBehind }: RecognisedRow)
   const old = leftBehind === null ? [] : [JSON.parse(leftBehind) as StoredSignature];
   return { columns, entries: unpackEntries(entries), signatures: [...old, ...found] };
 }
+
+/** Breaks that were not withdrawn and began within [from, to), by commit time or else when they were found, by number. */
+export function loadBreakPage(
+  reader: Reader,
+  projectId: number,
+  filter: { readonly lane: string | null; readonly from: number | null; readonly to: number | null },
+  page: { readonly after: number; readonly limit: number },
+): Promise<LoadedBreak[]> {
+  const began = "COALESCE(c.committedAt, b.createdAt)";
+  return reader.select<LoadedBreak>(
+    `${SELECT} WHERE b.projectId = $1 AND b.withdrawnAt IS NULL AND ($2 IS NULL OR l.name = $2)
+       AND ($3 IS NULL OR ${began} >= $3) AND ($4 IS NULL OR ${began} < $4)
+       AND b.number > $5 ORDER BY b.number LIMIT $6`,
+    [projectId, filter.lane, filter.from, filter.to, page.after, page.limit],
+  );
+}
