@@ -1,4 +1,6 @@
 import { blockMotion } from "../../shared/numerics/motion/blockMotion.ts";
+import { leftBehind } from "../../shared/numerics/signatures/leftBehind.ts";
+import type { BlockNames, NamedSignature } from "../../shared/numerics/signatures/types.ts";
 import type { MotionCounts, MotionSide } from "../../shared/numerics/types.ts";
 import { assemble } from "./assemble.ts";
 import type { StoredTile } from "./assemble.ts";
@@ -19,11 +21,15 @@ export interface MotionTask {
   readonly columns: number;
   readonly now: StoredSide & { readonly verdict: readonly StoredTile[] };
   readonly before: StoredSide;
+  readonly rtol: number;
+  readonly names: BlockNames;
 }
 
 export interface JudgedMotion {
   readonly counts: MotionCounts;
   readonly tiles: PackedTiles;
+  /** Told where disagreeing entries are what the reference was before. */
+  readonly leftBehind: NamedSignature | null;
   /** The motion plane as indices into the tiles. */
   readonly plane: readonly number[];
 }
@@ -33,10 +39,12 @@ export function judgeMotion(task: MotionTask): JudgedMotion {
   const { rows, columns } = task;
   const verdict = assemble("verdict", task.now.verdict, rows * columns);
   const now = { ...side(task.now, rows, columns), verdict: new Uint8Array(verdict) };
-  const { motion, counts } = blockMotion(now, side(task.before, rows, columns), rows, columns);
+  const before = side(task.before, rows, columns);
+  const { motion, counts } = blockMotion(now, before, rows, columns);
   const tiles = new TileSet();
   const plane = tiles.addPlane("motion", motion).tiles;
-  return { counts, plane, tiles: tiles.pack() };
+  const behind = leftBehind(now, before, task.rtol, rows, columns, task.names);
+  return { counts, plane, leftBehind: behind, tiles: tiles.pack() };
 }
 
 function side(stored: StoredSide, rows: number, columns: number): MotionSide {

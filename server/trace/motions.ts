@@ -1,9 +1,10 @@
 import { createHash } from "node:crypto";
 import { groupBy } from "../../shared/domain/groupBy.ts";
 import type { Writer } from "../db/write.ts";
+import type { BlockDetails } from "../ingest/blockDetails.ts";
 import type { StoredTile } from "../ingest/assemble.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
-import type { JudgedMotion, StoredSide } from "../ingest/judgeMotion.ts";
+import type { JudgedMotion, MotionTask, StoredSide } from "../ingest/judgeMotion.ts";
 import { packPlanes } from "../ingest/planes.ts";
 import { hashKey } from "../ingest/tiles.ts";
 import { TileSet, unpackTiles } from "../ingest/tileSet.ts";
@@ -45,7 +46,10 @@ export async function updateMotions(w: Writer, judge: JudgePool, rebased: Rebase
     const still = sameNumbers(now, before);
     const motionId =
       (still ? stillByShape.get(entries) : undefined) ??
-      (await storeMotion(w, still ? allStill(entries) : await judgeChange(w, judge, now, before)));
+      (await storeMotion(
+        w,
+        still ? allStill(entries) : await judgeChange(w, judge, { buildId, blockId: pair.blockId }, now, before),
+      ));
     if (still) stillByShape.set(entries, motionId);
     told.push({ motionId, blockId: pair.blockId });
   }
@@ -72,12 +76,13 @@ function allStill(entries: number): JudgedMotion {
   const tiles = new TileSet();
   const plane = tiles.addPlane("motion", new Uint8Array(entries)).tiles;
   const counts = { still: entries, together: 0, "derivative-only": 0, "model-only": 0, apart: 0 };
-  return { counts, plane, tiles: tiles.pack() };
+  return { counts, plane, leftBehind: null, tiles: tiles.pack() };
 }
 
 async function judgeChange(
   w: Writer,
   judge: JudgePool,
+  place: { readonly buildId: number; readonly blockId: number },
   now: SnapshotPlanes,
   before: SnapshotPlanes,
 ): Promise<JudgedMotion> {
@@ -98,13 +103,37 @@ async function judgeChange(
     columns: now.columns,
     now: { ...sideOf(now), verdict: plane(now, "verdict") },
     before: sideOf(before),
+    ...(await loadNames(w, place)),
   });
+}
+
+/** What the block's rows and columns are called, and the tolerance that it was judged with. */
+async function loadNames(
+  w: Writer,
+  { buildId, blockId }: { readonly buildId: number; readonly blockId: number },
+): Promise<Pick<MotionTask, "rtol" | "names">> {
+  const [block] = await w.select<{ rtol: number; output: string; input: string; details: string }>(
+    `SELECT s.rtol, b.output, b.input, d.details FROM build_blocks bb JOIN blocks b ON b.id = bb.blockId
+     JOIN snapshots s ON s.id = bb.snapshotId JOIN block_details d ON d.id = bb.detailsId
+     WHERE bb.buildId = $1 AND bb.blockId = $2`,
+    [buildId, blockId],
+  );
+  const details = JSON.parse(block.details) as BlockDetails;
+  return {
+    rtol: block.rtol,
+    names: {
+      output: { name: block.output, ...details.output },
+      input: { name: block.input, ...details.input },
+    },
+  };
 }
 
 async function storeMotion(w: Writer, motion: JudgedMotion): Promise<number> {
   const tileHashes = unpackTiles(motion.tiles).map((tile) => tile.hash);
   const hash = createHash("sha256");
   for (const tile of motion.plane) hash.update(tileHashes[tile]);
+  const leftBehind = motion.leftBehind && JSON.stringify(motion.leftBehind);
+  if (leftBehind !== null) hash.update(leftBehind);
   const digest = hash.digest();
   const known = (await idsByHash(w, "motions", [digest])).get(hashKey(digest));
   if (known !== undefined) return known;
@@ -112,8 +141,8 @@ async function storeMotion(w: Writer, motion: JudgedMotion): Promise<number> {
   const plane = { name: "motion", reference: 0, step: 0, tiles: motion.plane.map((tile) => tileIds[tile]) } as const;
   await w.insertOrIgnore(
     "motions",
-    ["hash", "planes", "counts"],
-    [[digest, packPlanes([plane]), JSON.stringify(motion.counts)]],
+    ["hash", "planes", "counts", "leftBehind"],
+    [[digest, packPlanes([plane]), JSON.stringify(motion.counts), leftBehind]],
   );
   return (await idsByHash(w, "motions", [digest])).get(hashKey(digest)) as number;
 }

@@ -21,6 +21,8 @@ export interface LoadedBlock extends SummedBlock {
   /** JSON: MotionCounts, or null. */
   readonly motionCounts: string | null;
   readonly motionPlanes: Buffer | null;
+  /** JSON: NamedSignature, or null. */
+  readonly leftBehind: string | null;
   /** Builds since the entry was checked that was left longest; null where this build checked all that ever were. */
   readonly oldest: number | null;
   /** Verdicts and ages with earlier checks heard, or null. */
@@ -30,7 +32,8 @@ export interface LoadedBlock extends SummedBlock {
 const SELECT = `
   SELECT bb.blockId, bb.buildId, c.sha, l.name AS lane, b.model, b.point, b.output, b.input, b.probe, bb.snapshotId,
     s.rowCount, s.columnCount, s.rtol, s.floor, ${COUNTS_SQL}, v.counts ->> '$.oldest' AS oldest, v.planes AS coveragePlanes,
-    s.worst, s.resolutions, d.details, bb.costs, m.counts AS motionCounts, m.planes AS motionPlanes
+    s.worst, s.resolutions, d.details, bb.costs, m.counts AS motionCounts, m.planes AS motionPlanes,
+    m.leftBehind
   FROM build_blocks bb JOIN builds u ON u.id = bb.buildId JOIN commits c ON c.id = u.commitId
   JOIN lanes l ON l.id = u.laneId JOIN blocks b ON b.id = bb.blockId JOIN snapshots s ON s.id = bb.snapshotId
   JOIN block_details d ON d.id = bb.detailsId LEFT JOIN motions m ON m.id = bb.motionId

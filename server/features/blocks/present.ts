@@ -24,9 +24,14 @@ export function presentBlockRow(block: LoadedBlock): BlockRow {
     floor: block.floor,
     resolution: weakestResolution(block),
     worst: block.worst === null ? null : presentWorst(JSON.parse(block.worst) as StoredWorst),
-    signatures: details.signatures.map(presentSignature),
+    signatures: [...leftBehindOf(block), ...details.signatures].map(presentSignature),
     motion: block.motionCounts === null ? null : presentMotion(JSON.parse(block.motionCounts) as MotionCounts),
   };
+}
+
+/** What the build before told: the simplest explanation there is, so it goes first. */
+function leftBehindOf({ leftBehind }: LoadedBlock): BlockDetails["signatures"] {
+  return leftBehind === null ? [] : [JSON.parse(leftBehind) as BlockDetails["signatures"][number]];
 }
 
 function presentSide(name: string, size: number, side: SideDetails): BlockRow["output"] {
