@@ -29,24 +29,35 @@ export interface ClimbGroup {
   readonly openCount: number;
   /** The build at which the last of it ended; null while it is open. */
   readonly endedAt: number | null;
+  /** True of a climb whose worst entry jumped at its onset and stayed there. */
+  readonly jumped: boolean;
 }
 
 /**
  * Rises of a lane as a reader of `until` (a place in the chain) sees them: what was told later is not there, what ended
  * later is open. Rises of one model whose time between onset and telling overlaps are one climb: noise alone sets them
- * apart by a few builds. Newest first, then the steepest. Cost O(n log n).
+ * apart by a few builds. A jump that became a climb, as the error stayed where it had jumped to, is told as that climb
+ * alone. Newest first, then the steepest. Cost O(n log n).
  */
 export function groupClimbs(rises: Iterable<DriftRise>, until: number): ClimbGroup[] {
+  const seen = [...rises].filter((rise) => rise.told <= until);
+  const jumps = new Set(seen.filter(({ kind }) => kind === "jump").flatMap(beginnings));
+  const climbs = new Set(seen.filter(({ kind }) => kind === "climb").flatMap(beginnings));
   const byModel = new Map<string, DriftRise[]>();
-  for (const rise of rises) {
-    if (rise.told > until) continue;
+  for (const rise of seen) {
+    if (rise.kind === "jump" && beginnings(rise).every((one) => climbs.has(one))) continue;
     const key = `${rise.kind} ${rise.model}`;
     byModel.set(key, [...(byModel.get(key) ?? []), rise]);
   }
   return [...byModel.values()]
     .flatMap(overlapping)
-    .map((members) => groupOf(members, until))
+    .map((members) => groupOf(members, until, jumps))
     .sort((a, b) => b.worst.told - a.worst.told || b.worst.decades - a.worst.decades);
+}
+
+/** Each entry of a rise with the build that it began in. */
+function beginnings({ blockId, columns, onset, entries }: DriftRise): string[] {
+  return Array.from(entries, (entry) => `${blockId} ${columns} ${onset} ${entry}`);
 }
 
 function overlapping(rises: readonly DriftRise[]): DriftRise[][] {
@@ -61,7 +72,7 @@ function overlapping(rises: readonly DriftRise[]): DriftRise[][] {
   return groups;
 }
 
-function groupOf(members: readonly DriftRise[], until: number): ClimbGroup {
+function groupOf(members: readonly DriftRise[], until: number, jumps: ReadonlySet<string>): ClimbGroup {
   const worst = members.reduce((a, b) => (b.decades > a.decades ? b : a));
   const openCount = members.reduce((sum, member) => sum + openEntries(member, until), 0);
   const ends = members.flatMap((member) => member.ends.map(({ at }) => at).filter((at) => at <= until));
@@ -74,6 +85,7 @@ function groupOf(members: readonly DriftRise[], until: number): ClimbGroup {
     entryCount: members.reduce((sum, member) => sum + member.entries.length, 0),
     openCount,
     endedAt: openCount > 0 ? null : lastEnd,
+    jumped: worst.kind === "climb" && jumps.has(`${worst.blockId} ${worst.columns} ${worst.onset} ${worst.worstEntry}`),
   };
 }
 

@@ -15,7 +15,7 @@ export function presentClimb(
   const { group, block, row, column, commits, traced } = climb;
   const open = group.kind === "climb" && group.openCount > 0;
   const builds = (group.endedAt ?? place.until) - group.worst.onset + 1;
-  const decades = open ? (climb.decades ?? group.worst.decades) : group.worst.decades;
+  const decades = open ? (climb.now.decades ?? group.worst.decades) : group.worst.decades;
   return {
     id: `${climb.toldBy.id}-${group.worst.blockId}-${group.worst.worstEntry}`,
     kind: group.kind,
@@ -36,11 +36,13 @@ export function presentClimb(
       point: block.point,
       row,
       column,
-      decades: climb.decades,
+      decades: climb.now.decades,
     },
     sentence: climbSentence({
       kind: group.kind,
       open,
+      jumped: group.jumped,
+      disagrees: open && climb.now.disagrees,
       model: group.model,
       entryCount: group.entryCount,
       decades,

@@ -10,6 +10,8 @@ import type { LaneBuild } from "../../record/laneBuilds.ts";
 import { loadEntrySeries } from "../history/loadEntrySeries.ts";
 import type { EntrySeries } from "../history/loadEntrySeries.ts";
 import type { ClimbsAt } from "./loadClimbs.ts";
+import { worstNow } from "./worstNow.ts";
+import type { WorstNow } from "./worstNow.ts";
 
 /** A climb with what its worst entry's history says of it. */
 export interface TracedClimb {
@@ -17,8 +19,8 @@ export interface TracedClimb {
   readonly block: BlockName;
   readonly row: number;
   readonly column: number;
-  /** Decades above the baseline in the build that is spoken of. */
-  readonly decades: number | null;
+  /** What the build that is spoken of says of the worst entry. */
+  readonly now: WorstNow;
   readonly onset: LaneBuild;
   readonly toldBy: LaneBuild;
   readonly lastCalm: LaneBuild | null;
@@ -61,7 +63,7 @@ export async function traceClimb(
     block,
     row,
     column,
-    decades: series.drift.get(chain[until].id)?.decades ?? null,
+    now: worstNow(series, chain[until].id),
     onset: chain[onset],
     toldBy: chain[told],
     lastCalm,

@@ -3,6 +3,8 @@ import type { Overview } from "../../../shared/schemas/project.ts";
 import type { Reader } from "../../db/reader.ts";
 import { loadClimbsAt } from "../climbs/loadClimbs.ts";
 import { climbSentence } from "../climbs/sentence.ts";
+import { worstNow } from "../climbs/worstNow.ts";
+import type { WorstNow } from "../climbs/worstNow.ts";
 import { loadEntrySeries } from "../history/loadEntrySeries.ts";
 
 /** Most climbs whose worst entry is looked up; further ones are told with the decades they were found with. */
@@ -23,8 +25,8 @@ export async function climbsAt(
   const rows: Overview["climbs"] = [];
   for (const [at, group] of shown.entries()) {
     const { kind, model, entryCount, openCount, worst } = group;
-    const now = at < MOST_LOOKED_UP ? await decadesNow(reader, place, group, chain[until].id) : null;
-    const decades = kind === "jump" ? worst.decades : (now ?? worst.decades);
+    const now = at < MOST_LOOKED_UP ? await lookUp(reader, place, group, chain[until].id) : null;
+    const decades = kind === "jump" ? worst.decades : (now?.decades ?? worst.decades);
     const builds = until - worst.onset + 1;
     const { blockId, worstEntry, columns } = worst;
     rows.push({
@@ -33,7 +35,16 @@ export async function climbsAt(
       decades,
       builds,
       entryCount: kind === "jump" ? entryCount : openCount,
-      sentence: climbSentence({ kind, open: openCount > 0, model, entryCount, decades, builds }),
+      sentence: climbSentence({
+        kind,
+        open: openCount > 0,
+        jumped: group.jumped,
+        model,
+        entryCount,
+        decades,
+        builds,
+        disagrees: now?.disagrees ?? false,
+      }),
       onset: chain[worst.onset].sha,
       toldBy: chain[worst.told].sha,
       worst: { blockId: String(blockId), row: Math.floor(worstEntry / columns), column: worstEntry % columns },
@@ -42,14 +53,14 @@ export async function climbsAt(
   return rows;
 }
 
-async function decadesNow(
+async function lookUp(
   reader: Reader,
   place: { readonly projectId: number; readonly laneId: number },
   { worst }: ClimbGroup,
   buildId: number,
-): Promise<number | null> {
+): Promise<WorstNow> {
   const { blockId, worstEntry, columns } = worst;
   const entry = { row: Math.floor(worstEntry / columns), column: worstEntry % columns };
   const series = await loadEntrySeries(reader, { ...place, blockId, ...entry });
-  return series.drift.get(buildId)?.decades ?? null;
+  return worstNow(series, buildId);
 }

@@ -56,6 +56,16 @@ describe("rises of a lane", () => {
     expect(groupClimbs([rise({ kind: "jump", onset: 20 })], 30)).toMatchObject([{ openCount: 0, endedAt: 20 }]);
   });
 
+  it("that jumped and stayed are told once: as a jump at first, then as the climb it became", () => {
+    const jump = rise({ kind: "jump", onset: 16, told: 16 });
+    const climb = rise({ onset: 16, told: 19 });
+    expect(groupClimbs([jump, climb], 17)).toMatchObject([{ kind: "jump" }]);
+    expect(groupClimbs([jump, climb], 20)).toMatchObject([{ kind: "climb", jumped: true }]);
+    const partly = rise({ onset: 16, told: 19, entries: Uint32Array.of(0), worstEntry: 0 });
+    expect(groupClimbs([jump, partly], 20).map(({ kind }) => kind)).toEqual(["climb", "jump"]);
+    expect(groupClimbs([rise()], 20)).toMatchObject([{ jumped: false }]);
+  });
+
   it("of an empty lane are none", () => {
     expect(groupClimbs([], 30)).toEqual([]);
   });
