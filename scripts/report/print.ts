@@ -19,7 +19,20 @@ export const paint = (coloured: boolean): Paint =>
 
 const count = (n: number, one: string, many = `${one}s`): string => `${n.toLocaleString("en")} ${n === 1 ? one : many}`;
 
-/** `7 blocks, 812 entries: 800 agree, 3 disagree, 9 unresolved`. */
+/** `; 3 probes: 2 agree, 1 disagrees`, or nothing where there are none. */
+function probesInWords({ agrees, disagrees, unresolved, invalid }: SummaryCounts["probes"]): string {
+  const all = agrees + disagrees + unresolved + invalid;
+  if (all === 0) return "";
+  const parts = [
+    count(agrees, "agrees", "agree"),
+    ...(disagrees > 0 ? [count(disagrees, "disagrees", "disagree")] : []),
+    ...(invalid > 0 ? [`${invalid.toLocaleString("en")} invalid`] : []),
+    ...(unresolved > 0 ? [`${unresolved.toLocaleString("en")} unresolved`] : []),
+  ];
+  return `; ${count(all, "probe")}: ${parts.join(", ")}`;
+}
+
+/** `7 blocks, 812 entries: 800 agree, 3 disagree, 9 unresolved; 2 probes: 2 agree`. */
 export function sumInWords(summary: SummaryCounts): string {
   const { blocks, entries, agrees, disagrees, unresolved, unreferenced, invalid } = summary;
   const parts = [
@@ -29,7 +42,8 @@ export function sumInWords(summary: SummaryCounts): string {
     ...(unresolved > 0 ? [`${unresolved.toLocaleString("en")} unresolved`] : []),
     ...(unreferenced > 0 ? [`${unreferenced.toLocaleString("en")} unreferenced`] : []),
   ];
-  return `${count(blocks, "block")}, ${count(entries, "entry", "entries")}: ${parts.join(", ")}`;
+  const sum = `${count(blocks, "block")}, ${count(entries, "entry", "entries")}: ${parts.join(", ")}`;
+  return sum + probesInWords(summary.probes);
 }
 
 /** Twelve digits of the hash, and the subject where the posting told it. */

@@ -1,5 +1,5 @@
 import type { BlockRow } from "../../shared/schemas/block.ts";
-import type { BuildRow, Counts } from "../../shared/schemas/build.ts";
+import type { BuildRow, Counts, ProbeCounts } from "../../shared/schemas/build.ts";
 import { capitalised, countText, countWords } from "./number.ts";
 
 function outcome({ entries, agrees, disagrees, invalid, unresolved, unreferenced }: Counts): string {
@@ -12,13 +12,34 @@ function outcome({ entries, agrees, disagrees, invalid, unresolved, unreferenced
   return "agrees wherever there is a reference";
 }
 
-/** What a block came to: `rotor.thrust disagrees in three entries of 18.` */
-export const blockSentence = (block: Pick<BlockRow, "model" | "counts">) => `${block.model} ${outcome(block.counts)}.`;
+function probeOutcome({ entries, agrees, disagrees, invalid }: Counts): string {
+  if (invalid > 0) return "is not a finite number";
+  if (disagrees > 0) return "disagrees";
+  return agrees === entries ? "agrees" : "cannot tell at this tolerance";
+}
+
+/** What a block came to: `rotor.thrust disagrees in three entries of 18.`, `Probe taylor: 1 of rotor.thrust agrees.` */
+export function blockSentence({ model, counts, probe }: Pick<BlockRow, "model" | "counts" | "probe">): string {
+  return probe === null ? `${model} ${outcome(counts)}.` : `Probe ${probe} of ${model} ${probeOutcome(counts)}.`;
+}
+
+/** Probes that say no, or whatever they say where there is nothing else: `one probe of 3 disagrees`. */
+function probesOutcome({ agrees, disagrees, unresolved, invalid }: ProbeCounts, alone: boolean): string | null {
+  const all = agrees + disagrees + unresolved + invalid;
+  const failed = disagrees + invalid;
+  if (failed > 0)
+    return `${countWords(failed, "probe")} of ${countText(all)} ${failed === 1 ? "disagrees" : "disagree"}`;
+  if (!alone || all === 0) return null;
+  if (unresolved > 0) return `${countWords(unresolved, "probe")} of ${countText(all)} cannot tell`;
+  return all === 1 ? "its one probe agrees" : `all of its ${countText(all)} probes agree`;
+}
 
 /** What a build came to, as a headline. */
 export function buildSentence(build: Pick<BuildRow, "state" | "summary" | "shards">): string {
   if (build.state === "receiving") {
     return `${capitalised(countWords(build.shards.missing.length, "shard"))} of ${build.shards.expected} ${build.shards.missing.length === 1 ? "is" : "are"} still to come.`;
   }
-  return `The build ${outcome(build.summary)}.`;
+  const { summary } = build;
+  const probes = probesOutcome(summary.probes, summary.entries === 0);
+  return probes === null ? `The build ${outcome(summary)}.` : `The build ${outcome(summary)}; ${probes}.`;
 }

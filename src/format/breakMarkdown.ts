@@ -6,12 +6,20 @@ import { elementName, elsewhere, MOTION_SENTENCE, shortSha } from "./words.ts";
 type Side = Parameters<typeof elementName>[0];
 export type EntryNames = ReadonlyMap<string, { readonly output: Side; readonly input: Side }>;
 
-/** Name of an entry: `spring ebb by pitch` where its elements have names, else `thrust[2] by blade[0]`. */
+/**
+ * Name of an entry: `spring ebb by pitch` where its elements have names, else `thrust[2] by blade[0]`; of a probe
+ * `probe dot-product: seed 7 of thrust by blade`, of a directional one with the element.
+ */
 export function entryName(
-  entry: Pick<BreakEntry, "blockId" | "output" | "input" | "row" | "column">,
+  entry: Pick<BreakEntry, "blockId" | "output" | "input" | "row" | "column" | "probe">,
   names?: EntryNames,
 ): string {
   const sides = names?.get(entry.blockId);
+  if (entry.probe !== null) {
+    const element = sides ? elementName(sides.output, entry.row) : `${entry.output}[${entry.row}]`;
+    const output = entry.probe.startsWith("directional") ? element : entry.output;
+    return `probe ${entry.probe} of ${output} by ${entry.input}`;
+  }
   if (!sides) return `${entry.output}[${entry.row}] by ${entry.input}[${entry.column}]`;
   return `${elementName(sides.output, entry.row)} by ${elementName(sides.input, entry.column)}`;
 }

@@ -8,10 +8,13 @@ export function columnVerdict(column: StripColumn): string {
   if (column.state === "receiving") return "still receiving shards";
   if (column.counts === null) return column.verdict ?? "not judged";
   const worst = column.worstError === null ? "" : `, worst ${numberText(column.worstError)}`;
-  return verdictCounts(column.counts)
-    .map((count) => count.text)
-    .join(", ")
-    .concat(worst);
+  const counts = verdictCounts(column.counts).map((count) => count.text);
+  return [...probeVerdict(column), ...counts].join(", ").concat(worst);
+}
+
+/** The probe that is the worst of its build, where it does not agree. */
+function probeVerdict({ worst, verdict }: StripColumn): string[] {
+  return worst?.probe && verdict !== "agrees" ? [`probe ${worst.probe} of ${worst.model} ${verdict}`] : [];
 }
 
 /** A commit of the strip in one line: sha, subject, author, what was found. */

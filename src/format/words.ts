@@ -1,4 +1,4 @@
-import type { Counts } from "../../shared/schemas/build.ts";
+import type { Counts, ProbeCounts } from "../../shared/schemas/build.ts";
 import { VERDICTS } from "../../shared/domain/vocabulary.ts";
 import type {
   Motion,
@@ -8,7 +8,7 @@ import type {
   Verdict,
 } from "../../shared/domain/vocabulary.ts";
 import type { Signature } from "../../shared/schemas/break.ts";
-import { countText, percentText } from "./number.ts";
+import { countOf, countText, percentText } from "./number.ts";
 
 export const shortSha = (sha: string) => sha.slice(0, 7);
 
@@ -33,13 +33,18 @@ export interface VerdictCount {
   readonly verdict: Verdict;
   readonly text: string;
 }
-/** What a set of entries comes to, loudest first: `3 disagree`, `all 18 agree`. */
-export function verdictCounts(counts: Counts): VerdictCount[] {
-  if (counts.entries > 0 && counts.agrees === counts.entries) return [{ verdict: "agrees", text: "all agree" }];
-  return VERDICTS_LOUDEST_FIRST.filter((v) => counts[v] > 0).map((verdict) => ({
-    verdict,
-    text: `${countText(counts[verdict])} ${counts[verdict] === 1 ? verdict : PLURAL[verdict]}`,
-  }));
+/** What a set of entries, and of probes, comes to, loudest first: `3 disagree`, `1 probe disagrees`, `all agree`. */
+export function verdictCounts(counts: Counts & { readonly probes?: ProbeCounts | undefined }): VerdictCount[] {
+  const allAgree = counts.entries > 0 && counts.agrees === counts.entries;
+  return VERDICTS_LOUDEST_FIRST.flatMap((verdict) => {
+    const number = counts[verdict];
+    const text = allAgree ? "all agree" : `${countText(number)} ${number === 1 ? verdict : PLURAL[verdict]}`;
+    const probed = verdict === "unreferenced" ? 0 : (counts.probes?.[verdict] ?? 0);
+    // Probes that agree are told only where there is nothing else.
+    const loud = probed > 0 && (verdict !== "agrees" || counts.entries === 0);
+    const ofProbes = { verdict, text: `${countOf(probed, "probe")} ${probed === 1 ? verdict : PLURAL[verdict]}` };
+    return [...(number > 0 ? [{ verdict, text }] : []), ...(loud ? [ofProbes] : [])];
+  });
 }
 
 export const VERDICT_MEANING: Record<Verdict, string> = {

@@ -111,7 +111,7 @@ describe("the break's parts", () => {
 describe("sentences", () => {
   it("say what a block came to", () => {
     const of = (entries: number, bad = {}) =>
-      blockSentence({ model: "rotor.thrust", counts: countsFixture(entries, bad) });
+      blockSentence({ model: "rotor.thrust", probe: null, counts: countsFixture(entries, bad) });
     expect(of(18, { disagrees: 3 })).toBe("rotor.thrust disagrees in three entries of 18.");
     expect(of(18)).toBe("rotor.thrust agrees in every entry.");
     expect(of(18, { invalid: 1, disagrees: 2 })).toBe("rotor.thrust has one entry that is not a finite number.");

@@ -17,6 +17,10 @@ describe("the verdict in words", () => {
   it("counts, singular and plural", () => {
     const { summary } = posted({});
     expect(sumInWords(summary)).toBe("2 blocks, 12 entries: 11 agree, 1 unresolved");
+    const probes = { agrees: 2, disagrees: 1, unresolved: 1, invalid: 0 };
+    expect(sumInWords({ ...summary, probes })).toBe(
+      "2 blocks, 12 entries: 11 agree, 1 unresolved; 4 probes: 2 agree, 1 disagrees, 1 unresolved",
+    );
     expect(
       sumInWords({ ...summary, blocks: 1, entries: 1, agrees: 1, disagrees: 1, invalid: 2, unreferenced: 3000 }),
     ).toBe("1 block, 1 entry: 1 agrees, 1 disagrees, 2 invalid, 1 unresolved, 3,000 unreferenced");
