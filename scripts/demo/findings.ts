@@ -1,8 +1,8 @@
-import type { BlockRow, HistoryItem } from "../../shared/schemas/block.ts";
+import type { BlockRow } from "../../shared/schemas/block.ts";
 import type { BreakDetail, BreakRow } from "../../shared/schemas/break.ts";
 import type { BuildRow } from "../../shared/schemas/build.ts";
+import type { ClimbRow } from "../../shared/schemas/climb.ts";
 import type { Overview } from "../../shared/schemas/project.ts";
-import { fromWire } from "../../shared/schemas/common.ts";
 import type { LaneName } from "./blocks.ts";
 import type { Client } from "./client.ts";
 import type { DemoCommit } from "./history/history.ts";
@@ -105,26 +105,32 @@ async function silence(
 
 /** How the error of the loosened solve rose before it became a break. */
 export interface Climb {
-  readonly first: number;
-  readonly last: number;
+  /** The commit whose build told the climb. */
+  readonly toldBy: string;
+  readonly onset: string;
+  /** Builds of the lane from there to the break. */
+  readonly buildsBefore: number;
   readonly decades: number;
+  /** Builds from the onset to the newest. */
   readonly builds: number;
 }
 
-/** The relative error of the worst entry of the mooring's break, over the lane's builds. */
-export async function climbOf(reader: Client, found: readonly Finding[]): Promise<Climb | null> {
+/** What the server told of the loosened solve as a climb, while it was still within the tolerance. */
+export async function climbOf(
+  reader: Client,
+  found: readonly Finding[],
+  history: readonly DemoCommit[],
+): Promise<Climb | null> {
   const finding = found.find(({ planted }) => planted.key === "loosened-solve");
-  const { items } = await reader.get<{ items: BreakRow[] }>(`${base}/breaks?state=all&lane=${LANE}&limit=500`);
-  const row = items.find(({ onset }) => onset.commit === finding?.commit.commit.sha);
-  if (!row) return null;
-  const { entries } = await reader.get<BreakDetail>(`${base}/breaks/${row.id}`);
-  const entry = entries[0];
-  if (!entry) return null;
-  const trace = await reader.get<{ items: HistoryItem[] }>(
-    `${base}/blocks/${entry.blockId}/entries/${entry.row}/${entry.column}/history?lane=${LANE}`,
-  );
-  const errors = trace.items.flatMap(({ error }) => (error === null ? [] : [fromWire(error)])).filter((e) => e > 0);
-  const [first, last] = [errors[0], errors.at(-1)];
-  if (first === undefined || last === undefined) return null;
-  return { first, last, decades: Math.log10(last / first), builds: errors.length };
+  const { items } = await reader.get<{ items: ClimbRow[] }>(`${base}/climbs?state=all&lane=${LANE}`);
+  const climb = items.find(({ kind, model }) => kind === "climb" && model === finding?.planted.model);
+  if (!climb || !finding) return null;
+  const built = history.filter(({ lanes }) => lanes.includes(LANE)).map(({ commit }) => commit.sha);
+  return {
+    toldBy: climb.toldBy.commit,
+    onset: climb.onset.commit,
+    buildsBefore: built.indexOf(finding.commit.commit.sha) - built.indexOf(climb.toldBy.commit),
+    decades: climb.worst.decades ?? 0,
+    builds: climb.builds,
+  };
 }

@@ -80,7 +80,7 @@ try {
   const accounts = [...accountLines(server.url), "Ctrl-C stops it; run it again and it starts at once."];
   if (!given.once && prepared.seededAt !== null) say("", ...accounts);
   const found = await findings(reader, history);
-  say("", ...findingLines(found, await climbOf(reader, found)), "");
+  say("", ...findingLines(found, await climbOf(reader, found, history)), "");
   if (given.once) stop(found.every(({ right }) => right) ? 0 : 1);
   else if (prepared.seededAt === null) say(...accounts);
 } catch (error) {

@@ -32,10 +32,10 @@ export function findingLines(found: readonly Finding[], climb: Climb | null): st
     `${right} of ${found.length} planted mistakes are named by their commit.`,
   ];
   if (climb !== null) {
-    const { first, last, decades, builds } = climb;
+    const { toldBy, onset, buildsBefore, decades, builds } = climb;
     lines.push(
-      `The loosened solve: its worst entry's relative error rose from ${first.toExponential(1)} to ` +
-        `${last.toExponential(1)}, ${decades.toFixed(1)} decades in ${builds} builds; it became a break where it crossed the tolerance.`,
+      `The loosened solve was told as a climb that began at ${short(onset)} by the build of ${short(toldBy)}, ` +
+        `${buildsBefore} builds before it became a break; by now ${decades.toFixed(1)} decades in ${builds} builds.`,
     );
   }
   return lines;
