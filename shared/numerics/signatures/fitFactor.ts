@@ -4,9 +4,10 @@ import type { Evidence, Trial } from "./types.ts";
 
 /** Entries whose reference is coarser than this say nothing of a factor. */
 const COARSEST = 1e-2;
+/** Where many single entries are tried one fits something by chance, unless the references are this sharp. */
 const COARSEST_OF_MANY = 5e-6;
 /** Sharpest entries whose own ratio is tried on the others. */
-const HYPOTHESES = 6;
+const HYPOTHESES = 4;
 /** No ratio test is looser than this, however coarse the references. */
 const LOOSEST = 1e-4;
 /** Nor tighter: a factor written with seven digits is still that factor. */
@@ -19,31 +20,37 @@ export interface Factor {
   readonly uncertainty: number;
 }
 
-interface Ratio {
-  readonly entry: number;
-  readonly value: number;
-  readonly uncertainty: number;
-}
+const FITTED = new WeakMap<Trial, { readonly factor: Factor | null }>();
 
 /**
  * The factor c that most entries of a trial share, a = c r within |c| (U + T): the mean of their ratios, each weighed
  * by how sharp its reference is. Null where fewer than `LEAST_SHARE` share one, or where it is 1, -1 or 0.
+ * Fitted once for each trial, on a sample of its entries.
  */
 export function fitFactor(trial: Trial): Factor | null {
-  const { evidence } = trial;
-  const sample = sampleOf(trial.entries);
-  const ratios = Array.from(sample, (k) => ratioOf(evidence, k))
-    .filter((ratio) => ratio !== null)
-    .sort((a, b) => a.uncertainty - b.uncertainty);
-  if (ratios.length < sample.length * LEAST_SHARE) return null;
-  if (trial.width === "entry of many" && ratios[0].uncertainty > COARSEST_OF_MANY) return null;
-  for (const hypothesis of ratios.slice(0, HYPOTHESES)) {
-    const sharing = ratios.filter(({ entry }) => hasFactor(evidence, entry, hypothesis));
+  const known = FITTED.get(trial);
+  if (known !== undefined) return known.factor;
+  const factor = fit(trial);
+  FITTED.set(trial, { factor });
+  return factor;
+}
+
+function fit({ evidence, entries, width }: Trial): Factor | null {
+  const sample = sampleOf(entries);
+  const blurs = Float64Array.from(sample, (k) => blurOf(evidence, k));
+  const sharp = blurs.reduce((count, blur) => count + Number(blur <= COARSEST), 0);
+  if (sharp < sample.length * LEAST_SHARE) return null;
+  const tried = new Set<number>();
+  for (let h = 0; h < HYPOTHESES && h < sharp; h += 1) {
+    const best = sharpest(blurs, tried);
+    tried.add(best);
+    const uncertainty = blurs[best];
+    if (width === "entry of many" && uncertainty > COARSEST_OF_MANY) return null;
+    const value = ratioOf(evidence, sample[best]);
+    const sharing = sample.filter((k, s) => blurs[s] <= COARSEST && hasFactor(evidence, k, { value, uncertainty }));
     if (sharing.length < sample.length * LEAST_SHARE) continue;
-    const value = weightedMean(sharing);
-    const { uncertainty } = hypothesis;
-    const trivial = Math.abs(Math.abs(value) - 1) <= 2 * uncertainty;
-    return trivial ? null : { value, uncertainty };
+    const mean = weightedMean(evidence, sharing, uncertainty);
+    return Math.abs(Math.abs(mean) - 1) <= 2 * uncertainty ? null : { value: mean, uncertainty };
   }
   return null;
 }
@@ -60,23 +67,34 @@ export function ratioTolerance({ uncertainty }: Factor): number {
   return Math.min(LOOSEST, Math.max(TIGHTEST, 2 * uncertainty));
 }
 
-function ratioOf(evidence: Evidence, k: number): Ratio | null {
-  const r = evidence.reference[k];
-  const value = evidence.derivative[k] / r;
-  const size = Math.abs(r);
-  const uncertainty = evidence.rtol + (evidence.resolution[k] * Math.max(size, evidence.floor)) / size;
-  if (!(uncertainty <= COARSEST) || value === 0 || !(Math.abs(value) < Infinity)) return null;
-  return { entry: k, value, uncertainty };
+function ratioOf({ derivative, reference }: Evidence, k: number): number {
+  return derivative[k] / reference[k];
 }
 
-function weightedMean(ratios: readonly Ratio[]): number {
+/** How far the ratio of an entry may be off, relative; NaN or infinite where it has none. */
+function blurOf(evidence: Evidence, k: number): number {
+  const size = Math.abs(evidence.reference[k]);
+  const ratio = ratioOf(evidence, k);
+  if (ratio === 0 || !(Math.abs(ratio) < Infinity)) return NaN;
+  return evidence.rtol + (evidence.resolution[k] * Math.max(size, evidence.floor)) / size;
+}
+
+function sharpest(blurs: Float64Array, not: ReadonlySet<number>): number {
+  let best = -1;
+  blurs.forEach((blur, s) => {
+    if (!not.has(s) && blur <= COARSEST && (best < 0 || blur < blurs[best])) best = s;
+  });
+  return best;
+}
+
+function weightedMean(evidence: Evidence, entries: Int32Array, sharpestBlur: number): number {
+  const first = ratioOf(evidence, entries[0]);
   let sum = 0;
   let weights = 0;
-  const sharpest = Math.max(ratios[0].uncertainty, Number.MIN_VALUE);
-  for (const { value, uncertainty } of ratios) {
-    const weight = (sharpest / Math.max(uncertainty, sharpest)) ** 2;
-    sum += weight * (value / ratios[0].value);
+  for (const k of entries) {
+    const weight = sharpestBlur === 0 ? 1 : (sharpestBlur / Math.max(blurOf(evidence, k), sharpestBlur)) ** 2;
+    sum += weight * (ratioOf(evidence, k) / first);
     weights += weight;
   }
-  return ratios[0].value * (sum / weights);
+  return first * (sum / weights);
 }

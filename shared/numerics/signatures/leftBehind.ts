@@ -1,6 +1,6 @@
 import { VERDICT_CODE } from "../../domain/vocabulary.ts";
 import { explain } from "./explain.ts";
-import { countIn, placeOf } from "./place.ts";
+import { countingOf, placeOf } from "./place.ts";
 import { isWithin, slackOf } from "./slack.ts";
 import type { BlockNames, Evidence, NamedSignature } from "./types.ts";
 import { subject } from "./words.ts";
@@ -51,7 +51,7 @@ export function leftBehind(
   return {
     code: "left-behind",
     ...place,
-    share: explained.length / countIn(place, columns, bad),
+    share: explained.length / countingOf(evidence, bad)(place),
     detail: `${subject(evidence, place, explained)} where the reference was at the build before: the model moved and its derivative was left behind.`,
     alternatives: [],
   };

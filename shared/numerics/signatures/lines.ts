@@ -18,6 +18,10 @@ export function columnsOf({ rows, columns }: Pick<Evidence, "rows" | "columns">)
   return { count: columns, length: rows, lineStride: 1, stride: columns };
 }
 
+export function entryOf({ lineStride, stride }: Lines, line: number, p: number): number {
+  return line * lineStride + p * stride;
+}
+
 export function lineOf(lines: Lines, k: number): number {
   return lines.stride === 1 ? Math.floor(k / lines.lineStride) : k % lines.count;
 }
@@ -26,7 +30,11 @@ export function lineOf(lines: Lines, k: number): number {
 export function linesWith(lines: Lines, entries: Int32Array): number[] {
   const touched = new Uint8Array(lines.count);
   for (const k of entries) touched[lineOf(lines, k)] = 1;
-  return Array.from(touched.keys()).filter((line) => touched[line] === 1);
+  const found: number[] = [];
+  touched.forEach((is, line) => {
+    if (is === 1) found.push(line);
+  });
+  return found;
 }
 
 /** One in so many entries of a line may miss: an uncertainty covers nearly always, not always. */
@@ -36,8 +44,7 @@ const ENTRIES_A_MISS = 20;
 export function lineHolds(evidence: Evidence, lines: Lines, to: number, from: number): boolean {
   let left = Math.floor(lines.length / ENTRIES_A_MISS);
   for (let p = 0; p < lines.length; p += 1) {
-    const k = to * lines.lineStride + p * lines.stride;
-    if (holds(evidence, k, from * lines.lineStride + p * lines.stride)) continue;
+    if (holds(evidence, entryOf(lines, to, p), entryOf(lines, from, p))) continue;
     if (left === 0) return false;
     left -= 1;
   }
@@ -54,26 +61,38 @@ export interface LineKeys {
 
 /** Each position is weighed by how sharp its references are, so that one coarse position does not blur the keys. */
 export function lineKeys(evidence: Evidence, lines: Lines, touched: readonly number[]): LineKeys {
+  const weights = Float64Array.from({ length: lines.length }, (_, p) => {
+    const weight = mixture(p) / coarsest(evidence, lines, touched, p);
+    return weight < Infinity ? weight : 0;
+  });
   const derivative = new Float64Array(touched.length);
   const reference = new Float64Array(touched.length);
-  const spread = new Float64Array(touched.length);
-  for (let p = 0; p < lines.length; p += 1) {
-    const at = (t: number) => touched[t] * lines.lineStride + p * lines.stride;
-    let coarsest = 0;
-    for (let t = 0; t < touched.length; t += 1) {
-      const slack = slackOf(evidence, at(t));
-      const known = slack < Infinity && evidence.derivative[at(t)] - evidence.derivative[at(t)] === 0;
-      coarsest = known ? Math.max(coarsest, slack) : Infinity;
+  let tolerance = 0;
+  touched.forEach((line, t) => {
+    let spread = 0;
+    for (let p = 0; p < lines.length; p += 1) {
+      const weight = weights[p];
+      if (weight === 0) continue;
+      const k = entryOf(lines, line, p);
+      derivative[t] = derivative[t] + weight * evidence.derivative[k];
+      reference[t] = reference[t] + weight * evidence.reference[k];
+      spread += weight * slackOf(evidence, k);
     }
-    const weight = mixture(p) / coarsest;
-    if (!(weight > 0) || !(weight < Infinity)) continue;
-    for (let t = 0; t < touched.length; t += 1) {
-      derivative[t] = derivative[t] + weight * evidence.derivative[at(t)];
-      reference[t] = reference[t] + weight * evidence.reference[at(t)];
-      spread[t] = spread[t] + weight * slackOf(evidence, at(t));
-    }
+    tolerance = Math.max(tolerance, spread);
+  });
+  return { derivative, reference, tolerance: tolerance * (1 + 1e-6) };
+}
+
+/** The largest slack of a position over the touched lines; infinite where an entry of it is not known. */
+function coarsest(evidence: Evidence, lines: Lines, touched: readonly number[], p: number): number {
+  let most = 0;
+  for (const line of touched) {
+    const k = entryOf(lines, line, p);
+    const slack = slackOf(evidence, k);
+    if (!(slack < Infinity) || evidence.derivative[k] - evidence.derivative[k] !== 0) return Infinity;
+    if (slack > most) most = slack;
   }
-  return { derivative, reference, tolerance: spread.reduce((most, one) => Math.max(most, one), 0) * (1 + 1e-6) };
+  return most;
 }
 
 /** Weights between 1/2 and 3/2 without any pattern that entries could have too (the golden ratio's multiples). */

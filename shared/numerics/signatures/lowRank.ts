@@ -1,4 +1,4 @@
-import { explain } from "./explain.ts";
+import { explain, sampleOf } from "./explain.ts";
 import { columnsOf, linesWith, rowsOf } from "./lines.ts";
 import { slackOf } from "./slack.ts";
 import type { Candidate, Evidence } from "./types.ts";
@@ -18,7 +18,8 @@ interface Cross {
 
 /**
  * `term-missing`, where one product of the chain rule is: a - r is of rank 1, an outer product of a column and a row.
- * The cross through the entry with the largest error (in units of its U + T) predicts all others,
+ * The cross through the entry with the largest error (in units of its U + T; of a sample where there are many) predicts
+ * all others,
  * E_ij = E_iJ E_Ij / E_IJ; whole blocks only, over the rows and columns that disagree, two of each at least.
  * Parameters: rows + columns - 1. Accuracy: each prediction is judged with the slack of the three entries it is from.
  * Source: M. Bebendorf, Approximation of boundary element matrices, Numerische Mathematik 86:565-589, 2000 (the cross).
@@ -26,13 +27,13 @@ interface Cross {
 export const lowRank: Candidate = (trial) => {
   const { evidence, entries } = trial;
   if (trial.width !== "block" || entries.length < 4) return null;
+  const cross = largestError(evidence, sampleOf(entries));
+  const explanation = explain(entries, (k) => isPredicted(evidence, k, cross, true));
+  if (explanation === null) return null;
   const rows = linesWith(rowsOf(evidence), entries);
   const columns = linesWith(columnsOf(evidence), entries);
   const parameters = rows.length + columns.length - 1;
-  if (rows.length < 2 || columns.length < 2 || entries.length <= parameters) return null;
-  const cross = largestError(evidence, entries);
-  const explanation = explain(entries, (k) => isPredicted(evidence, k, cross, true));
-  if (explanation === null || explanation.explained.length <= parameters) return null;
+  if (rows.length < 2 || columns.length < 2 || explanation.explained.length <= parameters) return null;
   if (contradicting(evidence, rows, columns, entries, cross)) return null;
   const { explained } = explanation;
   return {

@@ -3,7 +3,9 @@ import type { BlockNumbers, JudgedBlock } from "../types.ts";
 import { without } from "./explain.ts";
 import { byColumn, byRow } from "./groups.ts";
 import { notFinite } from "./notFinite.ts";
+import { countingOf } from "./place.ts";
 import { named, simplest } from "./simplest.ts";
+import type { Finding } from "./simplest.ts";
 import type { BlockNames, Evidence, NamedSignature, Trial } from "./types.ts";
 
 /** Signatures told of one block. */
@@ -13,12 +15,9 @@ const MOST_ENTRIES = 100;
 /** Rows or columns looked at. */
 const MOST_GROUPS = 4096;
 
-interface Told {
-  readonly signature: NamedSignature;
-  readonly entries: number;
-}
+/** What was found, and the entries that nothing explains yet. */
 interface Round {
-  readonly told: readonly Told[];
+  readonly found: readonly Finding[];
   readonly rest: Int32Array;
 }
 
@@ -51,12 +50,16 @@ export function nameSignatures(block: BlockNumbers, judged: JudgedBlock, names: 
   };
   const disagreeing = entriesWith(judged.verdict, VERDICT_CODE.disagrees, disagrees);
   const notNumbers = entriesWith(judged.verdict, VERDICT_CODE.invalid, invalid);
-  const bad = merged([disagreeing, notNumbers]);
-  const told = nameAll(evidence, disagreeing, bad);
+  const bad = countingOf(evidence, merged([disagreeing, notNumbers]));
+  const told = nameAll(evidence, disagreeing)
+    .sort((a, b) => b.match.explained.length - a.match.explained.length)
+    .slice(0, MOST_TOLD)
+    .map((finding) => ({ signature: named(finding, bad), entries: finding.match.explained.length }));
   const broken = notFinite(evidence, notNumbers, bad);
   if (broken !== null) told.push({ signature: broken, entries: notNumbers.length });
+  const rank = ({ scope }: NamedSignature) => (scope === "block" ? 0 : 1);
   return told
-    .sort(firstToTell)
+    .sort((a, b) => rank(a.signature) - rank(b.signature) || b.entries - a.entries)
     .slice(0, MOST_TOLD)
     .map(({ signature }) => signature);
 }
@@ -81,56 +84,42 @@ function merged(parts: readonly Int32Array[]): Int32Array {
   return all.sort();
 }
 
-function firstToTell(a: Told, b: Told): number {
-  const rank = ({ signature }: Told) => (signature.scope === "block" ? 0 : 1);
-  return rank(a) - rank(b) || b.entries - a.entries;
-}
-
-function nameAll(evidence: Evidence, disagreeing: Int32Array, bad: Int32Array): Told[] {
-  const whole = nameWhole(evidence, disagreeing, bad);
-  const rows = nameGroups(evidence, whole.rest, byRow(evidence, whole.rest, MOST_GROUPS), bad);
-  const columns = nameGroups(evidence, whole.rest, byColumn(evidence, whole.rest, MOST_GROUPS), bad);
+function nameAll(evidence: Evidence, disagreeing: Int32Array): Finding[] {
+  const whole = nameWhole(evidence, disagreeing);
+  const rows = nameGroups(evidence, whole.rest, byRow(evidence, whole.rest, MOST_GROUPS), "line");
+  const columns = nameGroups(evidence, whole.rest, byColumn(evidence, whole.rest, MOST_GROUPS), "line");
   const lines = betterOf(rows, columns);
   const single = Array.from(lines.rest.subarray(0, MOST_ENTRIES), (k) => Int32Array.of(k));
-  const entries = nameGroups(evidence, lines.rest, single, bad, "entry of many");
-  return [...whole.told, ...lines.told, ...entries.told];
+  const entries = nameGroups(evidence, lines.rest, single, "entry of many");
+  return [...whole.found, ...lines.found, ...entries.found];
 }
 
 /** Fewer entries left, then fewer signatures. */
 function betterOf(rows: Round, columns: Round): Round {
-  const less = columns.rest.length - rows.rest.length || columns.told.length - rows.told.length;
+  const less = columns.rest.length - rows.rest.length || columns.found.length - rows.found.length;
   return less < 0 ? columns : rows;
 }
 
 /** What explains the block, or nearly, and then what explains the rest of it. */
-function nameWhole(evidence: Evidence, disagreeing: Int32Array, bad: Int32Array): Round {
-  const told: Told[] = [];
+function nameWhole(evidence: Evidence, disagreeing: Int32Array): Round {
+  const found: Finding[] = [];
   let rest = disagreeing;
   while (rest.length > 0) {
-    const trial: Trial = { evidence, entries: rest, width: rest.length === 1 ? "line" : "block" };
-    const finding = simplest(trial);
+    const finding = simplest({ evidence, entries: rest, width: rest.length === 1 ? "line" : "block" });
     if (finding === null) break;
-    told.push({ signature: named(trial, finding, bad), entries: finding.match.explained.length });
+    found.push(finding);
     rest = without(rest, finding.match.settled);
   }
-  return { told, rest };
+  return { found, rest };
 }
 
-function nameGroups(
-  evidence: Evidence,
-  all: Int32Array,
-  groups: readonly Int32Array[],
-  bad: Int32Array,
-  width: Trial["width"] = "line",
-): Round {
-  const told: Told[] = [];
-  const settled: Int32Array[] = [];
+function nameGroups(evidence: Evidence, all: Int32Array, groups: readonly Int32Array[], width: Trial["width"]): Round {
+  const found: Finding[] = [];
   for (const entries of groups) {
-    const trial: Trial = { evidence, entries, width };
-    const finding = simplest(trial);
-    if (finding === null) continue;
-    told.push({ signature: named(trial, finding, bad), entries: finding.match.explained.length });
-    settled.push(finding.match.settled);
+    // A single line that holds all was tried as a whole.
+    const finding = entries.length === all.length ? null : simplest({ evidence, entries, width });
+    if (finding !== null) found.push(finding);
   }
-  return { told, rest: settled.length === 0 ? all : without(all, merged(settled)) };
+  if (found.length === 0) return { found, rest: all };
+  return { found, rest: without(all, merged(found.map(({ match }) => match.settled))) };
 }

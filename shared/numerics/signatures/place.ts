@@ -1,30 +1,38 @@
 import type { Evidence, Place } from "./types.ts";
 
-/** The narrowest of block, row, column and entry that holds all of `entries`. A row or column that is all of the block is the block. */
+/**
+ * The narrowest of block, row, column and entry that holds all of `entries` (ascending). A row or column that is all of
+ * the block is the block.
+ */
 export function placeOf({ rows, columns }: Pick<Evidence, "rows" | "columns">, entries: Int32Array): Place {
-  const first = entries[0];
-  if (entries.length === 1) {
-    return { scope: "entry", row: Math.floor(first / columns), column: first % columns };
-  }
-  const row = Math.floor(first / columns);
-  const column = first % columns;
+  const row = Math.floor(entries[0] / columns);
+  const column = entries[0] % columns;
+  if (entries.length === 1) return { scope: "entry", row, column };
   // Ascending: all are in the row of the first exactly when the last is.
-  const oneRow = entries[entries.length - 1] < (row + 1) * columns;
-  if (oneRow && rows > 1) return { scope: "row", row, column: null };
-  if (!oneRow && columns > 1 && entries.every((k) => k % columns === column))
-    return { scope: "column", row: null, column };
-  return { scope: "block", row: null, column: null };
+  if (entries[entries.length - 1] < (row + 1) * columns) {
+    return rows > 1 ? { scope: "row", row, column: null } : BLOCK;
+  }
+  return columns > 1 && entries.every((k) => k % columns === column) ? { scope: "column", row: null, column } : BLOCK;
 }
 
-/** How many of `entries` are in the place. */
-export function countIn(place: Place, columns: number, entries: Int32Array): number {
-  if (place.scope === "block") return entries.length;
-  let count = 0;
-  for (const k of entries) count += Number(isIn(place, columns, k));
-  return count;
-}
+const BLOCK: Place = { scope: "block", row: null, column: null };
 
-/** True where entry k is in the place. */
-export function isIn({ row, column }: Pick<Place, "row" | "column">, columns: number, k: number): boolean {
-  return (row === null || Math.floor(k / columns) === row) && (column === null || k % columns === column);
+/** How many of some entries are in a place. */
+export type Counting = (place: Place) => number;
+
+/** Counts `entries` by row and by column once, for any number of questions. */
+export function countingOf({ rows, columns }: Pick<Evidence, "rows" | "columns">, entries: Int32Array): Counting {
+  const inRow = new Int32Array(rows);
+  const inColumn = new Int32Array(columns);
+  for (const k of entries) {
+    const row = Math.floor(k / columns);
+    inRow[row] = inRow[row] + 1;
+    const column = k - row * columns;
+    inColumn[column] = inColumn[column] + 1;
+  }
+  return ({ scope, row, column }) => {
+    if (scope === "block") return entries.length;
+    if (scope === "entry") return 1;
+    return row === null ? inColumn[column ?? 0] : inRow[row];
+  };
 }

@@ -1,11 +1,13 @@
 import { CANDIDATES } from "./candidates.ts";
-import { countIn, placeOf } from "./place.ts";
+import { placeOf } from "./place.ts";
+import type { Counting } from "./place.ts";
 import type { Match, NamedSignature, Trial } from "./types.ts";
 
 const MOST_ALTERNATIVES = 3;
 
 /** The match that is told of a trial, and the others that explain as much about as simply. */
 export interface Finding {
+  readonly trial: Trial;
   readonly match: Match;
   readonly others: readonly Match[];
 }
@@ -24,11 +26,11 @@ export function simplest(trial: Trial): Finding | null {
   if (match === undefined) return null;
   const rival = (one: Match) =>
     one.explained.length >= match.explained.length && one.parameters <= match.parameters + 1;
-  return { match, others: others.filter(rival) };
+  return { trial, match, others: others.filter(rival) };
 }
 
-/** What is told of a finding; `bad` are all entries that disagree or are invalid. */
-export function named(trial: Trial, { match, others }: Finding, bad: Int32Array): NamedSignature {
+/** What is told of a finding; `bad` counts all entries that disagree or are invalid. */
+export function named({ trial, match, others }: Finding, bad: Counting): NamedSignature {
   const { evidence } = trial;
   const place = placeOf(evidence, match.explained);
   const detail = match.say(place);
@@ -36,7 +38,7 @@ export function named(trial: Trial, { match, others }: Finding, bad: Int32Array)
   return {
     code: match.code,
     ...place,
-    share: match.explained.length / countIn(place, evidence.columns, bad),
+    share: match.explained.length / bad(place),
     detail,
     alternatives: [...match.alternatives, ...rivals].slice(0, MOST_ALTERNATIVES),
   };

@@ -1,4 +1,5 @@
 import { UNIT_ROUNDOFF } from "../roundoff.ts";
+import { sampleOf } from "./explain.ts";
 import { slackOf } from "./slack.ts";
 import type { Candidate, Evidence, Trial } from "./types.ts";
 import { inWords, subject } from "./words.ts";
@@ -21,7 +22,8 @@ const BELOW_LARGEST = 1e-2;
 export const unevenSolve: Candidate = (trial) => {
   const { evidence, entries } = trial;
   if (entries.length < LEAST_ENTRIES || trial.width === "entry of many" || !isOneLine(trial)) return null;
-  const errors = Array.from(entries, (k) => Math.abs(evidence.derivative[k] - evidence.reference[k]));
+  if (isSpread(evidence, sampleOf(entries))) return null;
+  const errors = Array.from(entries, (k) => errorAt(evidence, k));
   const size = Math.exp(errors.reduce((sum, error) => sum + Math.log(error), 0) / errors.length);
   const explained = entries.filter((_, at) => errors[at] <= SPREAD * size && errors[at] * SPREAD >= size);
   if (explained.length < entries.length) return null;
@@ -38,6 +40,21 @@ export const unevenSolve: Candidate = (trial) => {
     alternatives: [],
   };
 };
+
+function errorAt({ derivative, reference }: Evidence, k: number): number {
+  return Math.abs(derivative[k] - reference[k]);
+}
+
+/** True where the errors are not of one size, whatever that is. */
+function isSpread(evidence: Evidence, entries: Int32Array): boolean {
+  let least = Infinity;
+  let most = 0;
+  for (const k of entries) {
+    least = Math.min(least, errorAt(evidence, k));
+    most = Math.max(most, errorAt(evidence, k));
+  }
+  return most > SPREAD * SPREAD * least;
+}
 
 /** All in one row or one column of several entries. */
 function isOneLine({ evidence: { columns }, entries }: Trial): boolean {
