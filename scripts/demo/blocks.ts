@@ -4,6 +4,7 @@ import { byCentralDifferences, byComplexSteps, byDualNumbers, byForwardDifferenc
 import type { Rows } from "./jacobians.ts";
 import { MODELS } from "./models/index.ts";
 import type { DemoModel } from "./models/model.ts";
+import { probesOf } from "./probes.ts";
 import { remember } from "./remember.ts";
 
 export const LANES = ["gcc-release", "clang-arm"] as const;
@@ -38,6 +39,9 @@ const PLANS: Readonly<Record<string, BlockPlan>> = {
   "cost.energy cost": { lanes: { "gcc-release": [complexStep, sweep(1e-2, 1e-3, 1e-4)], "clang-arm": [complexStep] } },
   "cost.energy energy": { lanes: { "gcc-release": [sweep(1e-4)], "clang-arm": [forward(1e-7)] } },
 };
+
+/** Models whose check job draws probes as well. */
+const PROBED: ReadonlySet<string> = new Set(["blade.section"]);
 
 /** Larger blocks travel as base64, as a job with many entries would send them. */
 const ROWS_UP_TO = 200;
@@ -87,6 +91,7 @@ const JOBS = { "gcc-release": jobsOf("gcc-release"), "clang-arm": jobsOf("clang-
 function blockOf(model: DemoModel, code: Code, plans: readonly Plan[]): WireBlock {
   const { output, input } = model;
   const byHand = model.derivative?.(input.values, code);
+  const delivered = byHand ?? byDualNumbers(model, code);
   return {
     model: model.model,
     output: {
@@ -105,10 +110,11 @@ function blockOf(model: DemoModel, code: Code, plans: readonly Plan[]): WireBloc
     },
     derivative: {
       method: byHand ? "analytic" : "ad-forward",
-      values: matrix(byHand ?? byDualNumbers(model, code)),
+      values: matrix(delivered),
       cost: { evaluations: 1 },
     },
     references: plans.map((plan) => reference(model, code, plan)),
+    ...(PROBED.has(model.model) ? { probes: probesOf(model, code, delivered) } : {}),
     sources: [...model.sources],
   };
 }

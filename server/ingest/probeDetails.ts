@@ -2,6 +2,7 @@ import { VERDICTS } from "../../shared/domain/vocabulary.ts";
 import { toWireOrNull } from "../../shared/schemas/common.ts";
 import type { ProbeDetails } from "../../shared/schemas/block.ts";
 import type { PostedProbe } from "../../shared/schemas/build.ts";
+import { shown } from "../../shared/numerics/probes/shown.ts";
 import type { JudgedBlock } from "../../shared/numerics/types.ts";
 import type { JudgedProbe, JudgedTaylorProbe } from "../../shared/numerics/probes/types.ts";
 
@@ -41,7 +42,7 @@ export function directionalDetails(label: string, judged: JudgedBlock): ProbeDet
     invalid > 0
       ? `${of(invalid, entries)} not a finite number`
       : disagrees > 0
-        ? `${of(disagrees, entries)} off by up to ${Number(worst?.error).toPrecision(2)}`
+        ? `${of(disagrees, entries)} off by up to ${shown(Number(worst?.error))}`
         : agrees === entries
           ? `right in ${entries === 1 ? "its element" : `all ${entries} elements`}`
           : `${of(entries - agrees, entries)} not to be told at this tolerance`;
@@ -54,7 +55,7 @@ export function directionalDetails(label: string, judged: JudgedBlock): ProbeDet
     resolution: toWireOrNull(judged.resolution[row]),
     tolerance: tolerances.rtol,
     assumed: judged.best.assumed.includes(true),
-    sentence: `the directional derivative is ${outcome}, ${tolerances.rtol.toPrecision(2)} is allowed`,
+    sentence: `the directional derivative is ${outcome}, ${shown(tolerances.rtol)} is allowed`,
     slope: null,
     usableSteps: null,
     steps: [],

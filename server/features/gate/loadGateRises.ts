@@ -14,7 +14,8 @@ export async function loadGateRises(
   if (told.length === 0) return [];
   const { groups, chain, project } = await loadClimbsAt(reader, place.projectId, place.laneId, place.commit);
   const known = base !== null && project.graph.has(base) ? project.graph.ancestors(base) : new Set<string>();
-  const names = new Map(head.map((block) => [block.blockId, block.block]));
+  const named = ({ block, probe }: GateBlockRow) => (probe ? `probe ${probe.name} of ${block}` : block);
+  const names = new Map(head.map((block) => [block.blockId, named(block)]));
   return groups
     .filter(({ worst }) => !known.has(chain[worst.told].sha))
     .map(({ kind, model, worst, entryCount }) => ({

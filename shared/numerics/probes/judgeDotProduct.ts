@@ -2,6 +2,7 @@ import { DEFAULT_PRECISION } from "../roundoff.ts";
 import { relativeError } from "../verdict/relativeError.ts";
 import { decideProbe } from "./decideProbe.ts";
 import { gamma } from "./gamma.ts";
+import { shown } from "./shown.ts";
 import type { DotProductProbe, JudgedProbe } from "./types.ts";
 
 /** Relative tolerance where rounding asks for no more. */
@@ -47,12 +48,12 @@ export function judgeDotProduct(probe: DotProductProbe): JudgedProbe {
 }
 
 function sentenceOf(verdict: JudgedProbe["verdict"], error: number, tolerance: number): string {
-  const allowed = `${tolerance.toPrecision(2)} is allowed`;
+  const allowed = `${shown(tolerance)} is allowed`;
   if (verdict === "unresolved") {
-    return `forward and reverse differ by ${error.toPrecision(2)} of their size, which rounding may explain or not`;
+    return `forward and reverse differ by ${shown(error)} of their size, which rounding may explain or not`;
   }
   if (error === 0) return "forward and reverse are the same to the last bit";
-  const differ = `forward and reverse differ by ${error.toPrecision(2)} of their size`;
+  const differ = `forward and reverse differ by ${shown(error)} of their size`;
   return verdict === "agrees" ? `${differ}, within rounding: ${allowed}` : `${differ}, ${allowed}`;
 }
 

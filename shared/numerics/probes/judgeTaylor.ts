@@ -4,6 +4,7 @@ import type { Extrapolated } from "./extrapolateRemainders.ts";
 import { logSlope } from "./logSlope.ts";
 import { surveyRemainders } from "./surveyRemainders.ts";
 import type { Remainders } from "./surveyRemainders.ts";
+import { shown } from "./shown.ts";
 import type { JudgedTaylorProbe, TaylorProbe } from "./types.ts";
 
 /** An uncertainty that rests on an assumed |f| accuses only beyond so many times itself. */
@@ -98,12 +99,12 @@ function sentenceOf(judged: Omit<JudgedTaylorProbe, "sentence">, linear: boolean
       slope === null ? "too few steps are usable for a slope" : `the remainders go as h^${slope.toFixed(2)}`;
     return verdict === "unresolved" ? `${shown}; the size of g.d was not posted, and steps alone do not tell` : shown;
   }
-  const allowed = `${tolerance.toPrecision(2)} is allowed`;
+  const allowed = `${shown(tolerance)} is allowed`;
   if (verdict === "unresolved") {
     const seen = uncertainty / floor;
-    return `the remainders tell the directional derivative to ${seen.toPrecision(2)} of its size, ${allowed}`;
+    return `the remainders tell the directional derivative to ${shown(seen)} of its size, ${allowed}`;
   }
-  return `the directional derivative is off by ${error.toPrecision(2)} of its size, ${allowed}`;
+  return `the directional derivative is off by ${shown(error)} of its size, ${allowed}`;
 }
 
 function notFinite(assumed: boolean): JudgedTaylorProbe {
