@@ -2,7 +2,7 @@
  * Measures what the product claims and prints it as ratios of one run, because machines are noisy.
  * `npm run bench` runs all, `npm run bench -- judge gate` some.
  */
-const BENCHES = ["judge", "trace", "ingest", "growth", "history", "gate"] as const;
+const BENCHES = ["judge", "faults", "drift", "trace", "ingest", "growth", "history", "gate"] as const;
 
 const asked = process.argv.slice(2);
 const unknown = asked.filter((name) => !(BENCHES as readonly string[]).includes(name));
