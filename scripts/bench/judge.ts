@@ -18,7 +18,7 @@ function generator(seed: number): () => number {
 }
 
 /** A block whose derivative is right to 1e-9, with one forward difference, all values new in every build. */
-function makeBlock(rows: number, columns: number, build: number): BlockNumbers {
+export function makeBlock(rows: number, columns: number, build: number): BlockNumbers {
   const random = generator(build);
   const truth = generator(99);
   const derivative = new Float64Array(rows * columns);
@@ -73,7 +73,7 @@ function median(values: readonly number[]): number {
 }
 
 /** Milliseconds of processor time: on a shared machine the clock would tell how often others were let in. */
-function timed(work: () => void): number {
+export function timed(work: () => void): number {
   const start = process.cpuUsage();
   work();
   const { user, system } = process.cpuUsage(start);

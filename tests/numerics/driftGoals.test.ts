@@ -6,7 +6,10 @@ import { log10Steps } from "../../shared/numerics/drift/log10Steps.ts";
 import { median } from "../../shared/numerics/robust/median.ts";
 import { followDrift, lanesOf } from "./support/driftTrials.ts";
 
-describe("a climb of 0.1 decade a build", () => {
+/** Simulations take seconds on a busy machine. */
+const PATIENCE = 60_000;
+
+describe("a climb of 0.1 decade a build", { timeout: PATIENCE }, () => {
   it.each([
     { noise: 0.05, start: 5 },
     { noise: 0.1, start: 5 },
@@ -29,7 +32,7 @@ describe("a climb of 0.1 decade a build", () => {
   });
 });
 
-describe("noise about a constant level", () => {
+describe("noise about a constant level", { timeout: PATIENCE }, () => {
   const cases = [0.05, 0.1, 0.2, 0.3].flatMap((noise) => [20, 60, 300, 1000].map((builds) => ({ noise, builds })));
   it.each(cases)("of $noise decades over $builds builds tells less than one climb or jump in 10,000", (trial) => {
     const entryBuilds = 120_000;
@@ -40,7 +43,7 @@ describe("noise about a constant level", () => {
   });
 });
 
-describe("the logarithm in steps", () => {
+describe("the logarithm in steps", { timeout: PATIENCE }, () => {
   it("is that of Math.log10 rounded or its neighbour, for every normal number", () => {
     const positive = fc.double({ min: 2 ** -1022, max: Number.MAX_VALUE, noNaN: true });
     fc.assert(

@@ -1,5 +1,5 @@
 import { relativeError } from "../verdict/relativeError.ts";
-import { advanceEntry } from "./advanceEntry.ts";
+import { advanceEntry, repeatEntry } from "./advanceEntry.ts";
 import type { DriftNews } from "./driftNews.ts";
 import { driftEventsOf, newDriftNews } from "./driftNews.ts";
 import { errorSteps } from "./errorSteps.ts";
@@ -69,7 +69,7 @@ function repeat(state: DriftState, buildId: number, times: number, news: DriftNe
   const { awake } = state;
   for (let k = 0; k < awake.length; k += 1) {
     for (let left = times; left > 0 && awake[k] !== 0; left -= 1) {
-      advanceEntry(state, k, state.last[k], buildId, news);
+      repeatEntry(state, k, buildId, news);
     }
   }
 }

@@ -8,6 +8,7 @@ import {
   DECISION_INTERVAL,
   driftLimit,
   isHigh,
+  LEAST_DECADES,
   jumpLimit,
   nextCusum,
   STEPS_PER_DECADE,
@@ -26,6 +27,24 @@ export function advanceEntry(state: DriftState, k: number, g: number, buildId: n
   if (learns(state, k)) learnBaseline(state, k, g, 1);
   state.last[k] = g;
   state.awake[k] = isFixed(state, k) ? 0 : 1;
+}
+
+/**
+ * The newest build of entry k once more: as `advanceEntry` with the same g, and a short way where the baseline is whole
+ * and the drift too small to be told, so that only S moves.
+ */
+export function repeatEntry(state: DriftState, k: number, buildId: number, news: DriftNews): void {
+  const small = driftOf(state, k) < LEAST_DECADES;
+  if (!small || state.count[k] !== BASELINE_BUILDS || state.climbing[k] !== 0) {
+    advanceEntry(state, k, state.last[k], buildId, news);
+    return;
+  }
+  const old = state.cusum[k];
+  const next = repeatedCusum(state, k);
+  if (next === 0) state.onset[k] = 0;
+  else if (old === 0) state.onset[k] = buildId;
+  if (next === 0 || next === old) state.awake[k] = 0;
+  state.cusum[k] = next;
 }
 
 /** True where the baseline has room, and S does not forbid it to learn. */

@@ -28,6 +28,9 @@ export const CALM_BUILDS = 3;
 /** 1 / Phi^-1(3/4): MAD to standard deviation of normal values. */
 export const MAD_TO_SIGMA = 1.4826;
 
+/** sqrt(1 + pi / (2n)), by n. */
+const ESTIMATED_CENTRE = Float64Array.from({ length: BASELINE_BUILDS + 1 }, (_, n) => Math.sqrt(1 + Math.PI / (2 * n)));
+
 /**
  * Spread of a baseline of n builds, in decades: max(0.15, 1.4826 MAD), or 0.3 for fewer than five builds, times
  * sqrt(1 + pi / (2n)): a new g differs from the estimated centre by its own deviation and by that of the median, whose
@@ -35,7 +38,7 @@ export const MAD_TO_SIGMA = 1.4826;
  */
 export function spreadOf(n: number, mad: number): number {
   const own = n < YOUNG_BUILDS ? ASSUMED_SPREAD : Math.max(LEAST_SPREAD, MAD_TO_SIGMA * mad);
-  return own * Math.sqrt(1 + Math.PI / (2 * n));
+  return own * ESTIMATED_CENTRE[n];
 }
 
 /**

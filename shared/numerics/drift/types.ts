@@ -41,7 +41,7 @@ export interface DriftState {
   readonly climbing: Uint8Array;
   /** Builds in a row back under centre + 3 spread, of a climb under way. */
   readonly calm: Uint8Array;
-  /** 0 where repeating the newest build's numbers would change nothing. */
+  /** 0 where repeating the newest build's numbers would change nothing, 1 where it may. */
   readonly awake: Uint8Array;
   /**
    * g of the builds the baseline has learned from, in steps, ascending, BASELINE_BUILDS places an entry; null while
