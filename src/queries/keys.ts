@@ -12,12 +12,15 @@ export const keys = {
   blocks: (project: string, build: string) => ["project", project, "builds", "one", build, "blocks"] as const,
   block: (project: string, build: string, block: string) =>
     ["project", project, "builds", "one", build, "blocks", block] as const,
+  steps: (project: string, build: string, block: string, reference: number, window: number) =>
+    ["project", project, "builds", "one", build, "steps", block, reference, window] as const,
   names: (project: string, build: string, blocks: string) =>
     ["project", project, "builds", "one", build, "names", blocks] as const,
   history: (project: string, block: string, row: number, column: number, lane: string) =>
     ["project", project, "history", block, row, column, lane] as const,
   gate: (project: string, lane: string, commit: string) => ["project", project, "gate", lane, commit] as const,
   wanted: (project: string, lane: string) => ["project", project, "wanted", lane] as const,
+  plan: (project: string, lane: string, budget: string) => ["project", project, "plan", lane, budget] as const,
   members: (project: string) => ["project", project, "members"] as const,
   tokens: (project: string) => ["project", project, "tokens"] as const,
   waivers: (project: string) => ["project", project, "waivers"] as const,

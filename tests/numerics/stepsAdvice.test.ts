@@ -78,8 +78,9 @@ describe("the advice", () => {
       { code: "reference-not-finite", entries: 3 },
     ] as const;
     const complex = adviseReference(study(complexStep(exponentialOverCubes, X)), findings);
-    expect(complex.slice(1).map((sentence) => sentence.split(":")[0])).toEqual([
+    expect(complex.map((sentence) => sentence.split(":")[0])).toEqual([
       "The complex step lost its imaginary part in 4 entries",
+      "Elsewhere complex steps at 10⁻²⁰ resolve every entry at 10⁻⁶.",
       "The references of this block conflict in one entry, beyond both their uncertainties",
       "3 entries of the block's references are not finite.",
     ]);

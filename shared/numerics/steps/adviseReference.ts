@@ -32,7 +32,24 @@ export type Told = Pick<ReferenceFinding, "code" | "entries">;
 export function adviseReference(study: StepStudy, findings: readonly Told[] = []): string[] {
   const totals = studyTotals(study);
   const of = { study, totals };
-  return [...resolution(of), ...branches(of), ...trouble(study.method, findings)];
+  const dropped = droppedIn(study.method, findings);
+  if (dropped === 0) return [...resolution(of), ...branches(of), ...trouble(study.method, findings)];
+  const [first, ...rest] = resolution(of);
+  const elsewhere = `Elsewhere ${first.charAt(0).toLowerCase()}${first.slice(1)}`;
+  return [lostImaginary(dropped), elsewhere, ...rest, ...branches(of), ...trouble(study.method, findings)];
+}
+
+/** Entries that a complex step lost its imaginary part in. */
+function droppedIn(method: ReferenceMethod, findings: readonly Told[]): number {
+  return method === "complex-step" ? countOf("reference-dropped-imaginary", findings) : 0;
+}
+
+function lostImaginary(entries: number): string {
+  return `The complex step lost its imaginary part in ${entriesOf(entries)}: an absolute value, a comparison or a call for real numbers swallowed it there; until it is mended these entries need a difference.`;
+}
+
+function countOf(code: Told["code"], findings: readonly Told[]): number {
+  return findings.reduce((sum, finding) => sum + (finding.code === code ? finding.entries : 0), 0);
 }
 
 interface Advised {
@@ -105,15 +122,8 @@ function branches({ study, totals }: Advised): string[] {
 }
 
 function trouble(method: ReferenceMethod, findings: readonly Told[]): string[] {
-  const count = (code: Told["code"]) =>
-    findings.reduce((sum, finding) => sum + (finding.code === code ? finding.entries : 0), 0);
+  const count = (code: Told["code"]) => countOf(code, findings);
   const sentences: string[] = [];
-  const dropped = count("reference-dropped-imaginary");
-  if (method === "complex-step" && dropped > 0) {
-    sentences.push(
-      `The complex step lost its imaginary part in ${entriesOf(dropped)}: an absolute value, a comparison or a call for real numbers swallowed it there; until it is mended these entries need a difference.`,
-    );
-  }
   const blind = count("reference-saw-no-change");
   if (isDifference(method) && blind > 0) {
     sentences.push(
