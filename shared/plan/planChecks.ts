@@ -3,22 +3,21 @@ import type { Plan, PlanColumn } from "./types.ts";
 
 /** Costs are counted in whole parts of the budget, so that sums are exact and the promise does not hang on rounding. */
 const PARTS = 2 ** 36;
-/** Part of the budget that is kept for the rotation; the rest goes where a check is worth most. */
+/** What the rotation spends before the rest goes where a check is worth most. */
 const RESERVE = PARTS / 2;
 
 /**
  * Which columns the next build should check with its budget, and within how many builds all will have been checked.
  *
- * Two purses. Half of the budget goes round: columns in the order of their waiting (equal ones by block and column), as
- * many as fit until one does not, or the first alone where it is dearer than that half. What remains buys, of all other
- * columns, those of most value per cost first, passing over what no longer fits.
+ * Two purses. One goes round: columns in the order of their waiting (equal ones by block and column) until half of the
+ * budget is spent or the next does not fit into the whole. What remains buys, of all other columns, those of most value
+ * per cost first, passing over what no longer fits.
  *
  * The promise `everyBuilds`: if every build follows its plan with this budget, and costs stay as they are, each column
  * is checked within so many builds from now, and again within so many from then, whatever values there are. Why: what
  * stands before a column in the queue can only become less (a checked column goes to the end, a new one has waited 0),
- * and taking columns out of a queue never makes it move slower (Next Fit is monotone: F. D. Murgolo, Anomalous
- * behavior in bin packing algorithms, Discrete Applied Mathematics 21, 1988); `rotationPromise` bounds the builds for
- * any order. New columns make later promises longer, not the ones given.
+ * and with columns taken out of a queue, or from a later place in it, a build's half reaches as far or further;
+ * `rotationPromise` bounds the builds for any order. New columns make later promises longer, not the ones given.
  *
  * Shapes: any number of columns. Units: costs and budget in one and the same. Domain: budget finite and > 0; costs,
  * waits and values >= 0 and finite.
@@ -64,11 +63,10 @@ function waitedLonger(a: PlanColumn, b: PlanColumn): number {
 /** Takes from the head of the queue; answers with what that costs. */
 function takeRotation(queue: Uint32Array, parts: Float64Array, taken: Uint8Array): number {
   let spent = 0;
-  for (const [place, at] of queue.entries()) {
-    if (spent + parts[at] > RESERVE && place > 0) break;
+  for (const at of queue) {
+    if (spent >= RESERVE || spent + parts[at] > PARTS) break;
     spent += parts[at];
     taken[at] = 1;
-    if (spent > RESERVE) break;
   }
   return spent;
 }

@@ -2,6 +2,7 @@ import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { plan as planSchema } from "../../shared/schemas/plan.ts";
 import type { Plan } from "../../shared/schemas/plan.ts";
 import type { BuildDocument } from "../../shared/schemas/build.ts";
+import { packEntries } from "../../server/record/entryList.ts";
 import { blockOf, buildOf, commitOf, flipped, numbers, post, shaOf } from "../support/hull.ts";
 import { startTestServer } from "../support/server.ts";
 import type { SeededProject, TestServer } from "../support/server.ts";
@@ -164,7 +165,7 @@ describe("a lane's plan", () => {
       ["mooring.tension", [0, 1], 2],
       ["wake.deficit", [0, 1], 0],
     ]);
-    expect(answer).toMatchObject({ spent: 4, everyBuilds: 8 });
+    expect(answer).toMatchObject({ spent: 4, everyBuilds: 7 });
   });
 
   it("converts by the project's rate where seconds are the budget", async () => {
@@ -272,8 +273,34 @@ it("counts the entries that the last check could not resolve", async () => {
   expect(answer.items.map(({ columns, reason }) => [columns, reason.code, reason.sentence])).toEqual([
     [[1, 3], "never-checked", "Posted for the first time and not checked."],
     [[0], "unresolved", "The last check could not resolve two of three entries."],
-    [[2], "rotation", "The budget has room for it."],
+    [[2], "rotation", "Its turn, though the newest build checked it."],
   ]);
+});
+
+it("puts a column that climbs before its quiet neighbours, until the climb ends", async () => {
+  hull = await server.seedProject("cove");
+  const { build } = await post(server, hull, buildOf(commitOf(1), [covering("wake.deficit", THRUST, null)]));
+  const tell = (kind: "climb" | "end", entries: number[]) =>
+    server.context.db.write((w) =>
+      w.run(
+        `INSERT INTO drift_events (laneId, blockId, columnCount, buildId, kind, onsetBuildId, entries, decades, worstEntry)
+         SELECT b.laneId, bb.blockId, 4, b.id, $2, b.id, $3, 1.25, $4
+         FROM builds b JOIN build_blocks bb ON bb.buildId = b.id WHERE b.id = $1`,
+        [Number(build.id), kind, packEntries(Uint32Array.from(entries)), entries[0]],
+      ),
+    );
+  const lines = async () =>
+    (await ask("?evaluations=100")).items.map(({ columns, reason }) => [columns, reason.sentence]);
+  // Entries of a matrix of four columns: one of column 2, two of column 3.
+  await tell("climb", [2, 7, 11]);
+  expect(await lines()).toEqual([
+    [[2, 3], "The error climbs, by 1.3 decades so far."],
+    [[0, 1], "Its turn, though the newest build checked it."],
+  ]);
+  await tell("end", [2, 7]);
+  expect((await lines())[0]).toEqual([[3], "The error climbs, by 1.3 decades so far."]);
+  await tell("end", [11]);
+  expect(await lines()).toEqual([[[0, 1, 2, 3], "Its turn, though the newest build checked it."]]);
 });
 
 it("does not tell the plan to whoever may not read", async () => {

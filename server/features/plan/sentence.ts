@@ -33,7 +33,9 @@ const SENTENCE: Record<PlanReason, (members: Members, limit: number) => string> 
     return `The last check could not resolve ${countInWords(entries)} of ${countInWords(all)} entries.`;
   },
   rotation: ([{ waited }]) =>
-    waited === 0 ? "The budget has room for it." : `${passed(waited)} since the last check: its turn.`,
+    waited === 0
+      ? "Its turn, though the newest build checked it."
+      : `${passed(waited)} since the last check: its turn.`,
 };
 
 /** Why columns of a block that share their reason and their last check are worth checking. */
