@@ -12,6 +12,8 @@ export const keys = {
   blocks: (project: string, build: string) => ["project", project, "builds", "one", build, "blocks"] as const,
   block: (project: string, build: string, block: string) =>
     ["project", project, "builds", "one", build, "blocks", block] as const,
+  steps: (project: string, build: string, block: string, reference: number, window: number) =>
+    ["project", project, "builds", "one", build, "steps", block, reference, window] as const,
   names: (project: string, build: string, blocks: string) =>
     ["project", project, "builds", "one", build, "names", blocks] as const,
   history: (project: string, block: string, row: number, column: number, lane: string) =>
