@@ -13,6 +13,8 @@ export interface BlockPlanes {
   /** Index into MOTIONS; 255 none. Null for the first build of a lane. */
   readonly motion: Uint8Array | null;
   readonly source: Uint8Array;
+  /** Builds since an entry was checked, 255 = too long ago or never; null where this build checked whatever has a verdict. */
+  readonly age: Uint8Array | null;
 }
 
 function bytesOf(base64: string): Uint8Array<ArrayBuffer> {
@@ -50,5 +52,6 @@ export function decodePlanes(block: BlockDetail): BlockPlanes {
     verdict: checked("verdict", bytesOf(String(block.verdict))),
     motion: block.motionPlane === null ? null : checked("motion", bytesOf(String(block.motionPlane))),
     source: checked("source", bytesOf(String(block.source))),
+    age: block.age === null ? null : checked("age", bytesOf(String(block.age))),
   };
 }

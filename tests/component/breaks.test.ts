@@ -2,7 +2,7 @@ import { describe, expect, it } from "vitest";
 import { CAUTION } from "../../shared/domain/vocabulary.ts";
 import BreakEntries from "../../src/components/break/BreakEntries.vue";
 import BreakSuspects from "../../src/components/break/BreakSuspects.vue";
-import EntryTrace from "../../src/components/break/EntryTrace.vue";
+import EntryTrace from "../../src/components/entry/EntryTrace.vue";
 import { resolutionOf, traceEntry, valueScale } from "../../src/drawing/entryTrace.ts";
 import { breakMarkdown, entryName, worstFirst } from "../../src/format/breakMarkdown.ts";
 import { blockSentence, buildSentence } from "../../src/format/blockSentence.ts";

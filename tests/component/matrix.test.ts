@@ -41,6 +41,7 @@ function planes(rows: number, columns: number, error: number[], rest: Partial<Bl
     verdict: new Uint8Array(size),
     motion: new Uint8Array(size),
     source: new Uint8Array(size),
+    age: null,
     ...rest,
   };
 }
