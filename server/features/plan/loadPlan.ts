@@ -45,7 +45,7 @@ async function loadFacts(reader: Reader, place: PlanPlace, line: LaneLine, limit
     blocks,
     checks,
     broken: await loadBrokenColumns(reader, place, blocks),
-    climbing: await loadClimbingColumns(reader, place, blocks),
+    climbing: await loadClimbingColumns(reader, place, line, blocks),
     unresolved: await loadUnresolvedColumns(reader, blocks, checks),
     clueSince: await loadChangeClues(reader, place.projectId, line, blocks, checks),
     placeOf: (sha) => places.get(sha) ?? line.commits.length,
