@@ -4,6 +4,8 @@ import type { Evidence, Trial } from "./types.ts";
 
 /** Entries whose reference is coarser than this say nothing of a factor. */
 const COARSEST = 1e-2;
+/** Part of the entries whose references must be sharp enough to fit a factor; the others must bear it out. */
+const LEAST_SHARP = 0.1;
 /** Where many single entries are tried one fits something by chance, unless the references are this sharp. */
 const COARSEST_OF_MANY = 5e-6;
 /** Sharpest entries whose own ratio is tried on the others. */
@@ -18,13 +20,15 @@ export interface Factor {
   readonly value: number;
   /** Relative: how far the value may be off. */
   readonly uncertainty: number;
+  /** Entries of the sample that say so sharply. */
+  readonly witnesses: number;
 }
 
 const FITTED = new WeakMap<Trial, { readonly factor: Factor | null }>();
 
 /**
- * The factor c that most entries of a trial share, a = c r within |c| (U + T): the mean of their ratios, each weighed
- * by how sharp its reference is. Null where fewer than `LEAST_SHARE` share one, or where it is 1, -1 or 0.
+ * The factor c that most sharp entries of a trial share, a = c r within |c| (U + T): the mean of their ratios, each
+ * weighed by how sharp its reference is. Null where fewer than `LEAST_SHARE` of them share one, or it is 1, -1 or 0.
  * Fitted once for each trial, on a sample of its entries.
  */
 export function fitFactor(trial: Trial): Factor | null {
@@ -39,7 +43,7 @@ function fit({ evidence, entries, width }: Trial): Factor | null {
   const sample = sampleOf(entries);
   const blurs = Float64Array.from(sample, (k) => blurOf(evidence, k));
   const sharp = blurs.reduce((count, blur) => count + Number(blur <= COARSEST), 0);
-  if (sharp < sample.length * LEAST_SHARE) return null;
+  if (sharp < sample.length * LEAST_SHARP) return null;
   const tried = new Set<number>();
   for (let h = 0; h < HYPOTHESES && h < sharp; h += 1) {
     const best = sharpest(blurs, tried);
@@ -48,15 +52,17 @@ function fit({ evidence, entries, width }: Trial): Factor | null {
     if (width === "entry of many" && uncertainty > COARSEST_OF_MANY) return null;
     const value = ratioOf(evidence, sample[best]);
     const sharing = sample.filter((k, s) => blurs[s] <= COARSEST && hasFactor(evidence, k, { value, uncertainty }));
-    if (sharing.length < sample.length * LEAST_SHARE) continue;
+    if (sharing.length < sharp * LEAST_SHARE) continue;
     const mean = weightedMean(evidence, sharing, uncertainty);
-    return Math.abs(Math.abs(mean) - 1) <= 2 * uncertainty ? null : { value: mean, uncertainty };
+    return Math.abs(Math.abs(mean) - 1) <= 2 * uncertainty
+      ? null
+      : { value: mean, uncertainty, witnesses: sharing.length };
   }
   return null;
 }
 
 /** True where a = c r within |c| (U + T) and what c itself may be off. */
-export function hasFactor(evidence: Evidence, k: number, { value, uncertainty }: Factor): boolean {
+export function hasFactor(evidence: Evidence, k: number, { value, uncertainty }: Omit<Factor, "witnesses">): boolean {
   const r = evidence.reference[k];
   const slack = slackOf(evidence, k) + uncertainty * Math.abs(r);
   return isWithin(evidence.derivative[k], value * r, Math.abs(value) * slack);

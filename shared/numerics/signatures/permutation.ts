@@ -9,7 +9,7 @@ const MOST_ALIKE = 12;
 /** Lines compared in all, for each line: a block of equal lines is no puzzle worth a minute. */
 const COMPARISONS_A_LINE = 40;
 /** More lines are only looked at for a reversal or a shift. */
-const MOST_LINES = 20_000;
+const MOST_LINES = 150_000;
 /** Lines that are looked for before all are, and how many of them may be nowhere. */
 const PROBED = 6;
 const MOST_LOST = 1;

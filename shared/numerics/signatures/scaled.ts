@@ -22,7 +22,7 @@ export const scaled: Candidate = (trial) => {
   const tolerance = ratioTolerance(factor);
   if (factor.value > 0 && unitReadings(size, tolerance, evidence.names).length > 0) return null;
   const plain = plainRatio(size, tolerance);
-  if (trial.entries.length < 2 && (plain === null || factor.uncertainty > tolerance)) return null;
+  if (factor.witnesses < 2 && (plain === null || factor.uncertainty > tolerance)) return null;
   return elementwise(trial, {
     code: "scaled",
     parameters: 1,

@@ -8,8 +8,8 @@ import { inWords, subject } from "./words.ts";
 const LEAST_ENTRIES = 4;
 /** Errors of one size are within this factor of their geometric mean. */
 const SPREAD = 8;
-/** Their relative errors must differ by more than the absolute ones, this many times. */
-const CLEARER = 5;
+/** Their relative errors must be spread more than the absolute ones, this many times. */
+const CLEARER = 2;
 /** Far above rounding, and above what the reference cannot see; small beside the line's largest entry. */
 const ABOVE_ROUNDING = 1e3 * UNIT_ROUNDOFF;
 const BELOW_LARGEST = 1e-2;
@@ -63,19 +63,18 @@ function isOneLine({ evidence: { columns }, entries }: Trial): boolean {
   return entries.every((k) => Math.floor(k / columns) === row) || entries.every((k) => k % columns === column);
 }
 
-/** Errors of both signs, not all the same, while the relative errors differ much more; each well seen. */
+/** Errors of both signs, each well seen, whose sizes differ much less than they do in terms of their entries. */
 function isUneven(evidence: Evidence, entries: Int32Array, errors: readonly number[]): boolean {
   const { derivative, reference, floor } = evidence;
-  let up = 0;
-  let least = Infinity;
-  let most = 0;
-  entries.forEach((k, at) => {
-    up += Number(derivative[k] > reference[k]);
-    const relative = errors[at] / Math.max(Math.abs(reference[k]), floor);
-    least = Math.min(least, relative);
-    most = Math.max(most, relative);
-  });
-  const spread = Math.max(...errors) / Math.min(...errors);
+  const relative = errors.map((error, at) => error / Math.max(Math.abs(reference[entries[at]]), floor));
+  const up = entries.reduce((count, k) => count + Number(derivative[k] > reference[k]), 0);
   const seen = entries.every((k, at) => errors[at] >= 2 * slackOf(evidence, k));
-  return seen && up > 0 && up < entries.length && most / least >= CLEARER * spread;
+  return seen && up > 0 && up < entries.length && logSpread(relative) >= CLEARER * logSpread(errors);
+}
+
+/** Standard deviation of the logarithms. */
+function logSpread(values: readonly number[]): number {
+  const logs = values.map(Math.log);
+  const mean = logs.reduce((sum, one) => sum + one, 0) / logs.length;
+  return Math.sqrt(logs.reduce((sum, one) => sum + (one - mean) ** 2, 0) / logs.length);
 }
