@@ -5,6 +5,8 @@ export interface Selector {
   readonly input?: string | undefined;
   readonly point?: string | undefined;
   readonly lane?: string | undefined;
+  /** Names probes, as "<kind>: <label>"; a selector with it covers no Jacobian. */
+  readonly probe?: string | undefined;
   /** Zero-based rows and columns; missing = all. */
   readonly rows?: readonly number[] | undefined;
   readonly columns?: readonly number[] | undefined;
@@ -47,14 +49,27 @@ export function jacobianKey({ model, point, output, input }: JacobianName): stri
   return JSON.stringify([model, point, output, input]);
 }
 
-/** True where the selector's name fields and lane cover the block (rows and columns are not looked at). */
-export function selects(selector: Selector, block: JacobianName, lane: string): boolean {
+/**
+ * True where the selector's name fields and lane cover the block; which rows and columns it takes is not looked at, but
+ * they are those of the Jacobian: a selector with some of them covers no probe that it does not name.
+ */
+export function selects(
+  selector: Selector,
+  block: JacobianName & { readonly probe?: string | undefined },
+  lane: string,
+): boolean {
   const covers = (glob: string | undefined, name: string) => glob === undefined || globToRegExp(glob).test(name);
   return (
     covers(selector.model, block.model) &&
     covers(selector.output, block.output) &&
     covers(selector.input, block.input) &&
     covers(selector.point, block.point) &&
-    covers(selector.lane, lane)
+    covers(selector.lane, lane) &&
+    coversProbe(selector, block.probe ?? "")
   );
+}
+
+function coversProbe({ probe, rows, columns }: Selector, name: string): boolean {
+  if (probe !== undefined) return name !== "" && globToRegExp(probe).test(name);
+  return name === "" || (rows === undefined && columns === undefined);
 }

@@ -22,6 +22,8 @@ export const blockSelector = z
 export const selector = z
   .strictObject({
     ...blockFields,
+    /** Names probes, as "<kind>: <label>"; a selector with it covers no Jacobian. */
+    probe: glob.optional(),
     rows: indices.optional(),
     columns: indices.optional(),
   })

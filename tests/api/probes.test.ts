@@ -3,6 +3,7 @@ import { blockDetail, blockRow, historyItem } from "../../shared/schemas/block.t
 import { breakDetail, breakRow } from "../../shared/schemas/break.ts";
 import { buildRow, postedBuild } from "../../shared/schemas/build.ts";
 import type { BuildDocument, PostedBuild } from "../../shared/schemas/build.ts";
+import type { Selector } from "../../shared/domain/selector.ts";
 import { page } from "../../shared/schemas/common.ts";
 import { strip } from "../../shared/schemas/commit.ts";
 import { gate } from "../../shared/schemas/gate.ts";
@@ -277,16 +278,22 @@ describe("the gate", () => {
     ]);
   });
 
-  it("lets a waiver of the block bear with its probes", async () => {
-    const project = await server.seedProject("waived");
-    await postAt(project, 1, [withProbes(dot(1.25))]);
-    await server.context.db.write((w) =>
+  const waive = (project: SeededProject, selector: Selector) =>
+    server.context.db.write((w) =>
       w.run(
         `INSERT INTO waivers (projectId, state, selector, reason, maxError, expiresAt, askedAt)
          VALUES ($1, 'approved', $2, 'known', 0.2, $3, 0)`,
-        [project.project.id, JSON.stringify({ model: "rotor.*" }), Date.now() + 60_000],
+        [project.project.id, JSON.stringify(selector), Date.now() + 60_000],
       ),
     );
+
+  it.each<[string, Selector]>([
+    ["of the block", { model: "rotor.*" }],
+    ["of the probe", { model: "rotor.*", probe: "dot-product: *" }],
+  ])("lets a waiver %s bear with a probe, up to its bound", async (name, selector) => {
+    const project = await server.seedProject(`waived-${name.replaceAll(" ", "-")}`);
+    await postAt(project, 1, [withProbes(dot(1.25))]);
+    await waive(project, selector);
     expect(reasons(await postAt(project, 2, [withProbes(dot(1.5))]))).toEqual([]);
     expect(reasons(await postAt(project, 3, [withProbes(dot(2))]))).toEqual([
       {
@@ -294,6 +301,15 @@ describe("the gate", () => {
         message: expect.stringContaining("probe dot-product: seed 7 of rotor.thrust") as string,
       },
     ]);
+  });
+
+  it("hears no waiver of an entry, or of other probes, for a probe", async () => {
+    const project = await server.seedProject("other-waiver");
+    await postAt(project, 1, [withProbes(dot(1.25))]);
+    await waive(project, { model: "rotor.*", rows: [0], columns: [0] });
+    await waive(project, { model: "rotor.*", probe: "taylor: *" });
+    const gated = await postAt(project, 2, [withProbes(dot(1.5))]);
+    expect(reasons(gated).map(({ code }) => code)).toEqual(["probe-failed"]);
   });
 });
 

@@ -1,5 +1,6 @@
 import { isBadVerdict, VERDICT_CODE } from "../../../shared/domain/vocabulary.ts";
 import { selects, selectsEntry } from "../../../shared/domain/selector.ts";
+import type { BlockName } from "../../../shared/domain/selector.ts";
 import type { GateEntry } from "../../../shared/history/types.ts";
 import { relativeError } from "../../../shared/numerics/verdict/relativeError.ts";
 import type { Reader } from "../../db/reader.ts";
@@ -39,7 +40,7 @@ export async function loadGateEntries(
   const before = new Map(baseBlocks.map((block) => [block.blockId, block]));
   const changed = suspicious.filter((block) => {
     const same = before.get(block.blockId)?.snapshotId === block.snapshotId && block.coveragePlanes === null;
-    return !same || waivers.some(({ selector }) => selects(selector, block, place.lane));
+    return !same || waivers.some(({ selector }) => selects(selector, nameOf(block), place.lane));
   });
   if (changed.length === 0) return [];
   const snapshots = await loadSnapshots(
@@ -54,10 +55,14 @@ export async function loadGateEntries(
       withCoverage(snapshots.get(one.snapshotId) as SnapshotPlanes, one.coveragePlanes);
     const snapshot = told(block);
     const base = then ? told(then) : null;
-    const covering = waivers.filter(({ selector }) => selects(selector, block, place.lane));
+    const covering = waivers.filter(({ selector }) => selects(selector, nameOf(block), place.lane));
     entries.push(...(await entriesOf(reader, block, snapshot, base, covering, breakOf)));
   }
   return entries;
+}
+
+function nameOf({ model, output, input, point, probe }: GateBlockRow): BlockName {
+  return { model, output, input, point, probe: probe?.name ?? "" };
 }
 
 async function entriesOf(
