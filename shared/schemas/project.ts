@@ -110,6 +110,10 @@ export const modelRow = z
       .nullable(),
     /** Share of the entries that have a reference, 0..1. */
     checkedShare: z.number(),
+    /** Resolution of the weakest reference of its blocks; null where none tells. */
+    resolution: z.number().nullable(),
+    /** Share of the entries whose references can tell at their block's rtol, 0..1. */
+    resolvedShare: z.number(),
   })
   .meta({ id: "ModelRow" });
 export type ModelRow = z.infer<typeof modelRow>;
@@ -161,6 +165,8 @@ export const overview = z
       z.object({ blockId: id, model: z.string(), output: z.string(), input: z.string(), point: z.string() }),
     ),
     checkedShare: z.number().nullable(),
+    /** Share of the entries whose references can tell at their block's rtol, and the weakest reference; `at` is the project's rtol. */
+    resolution: z.object({ resolvedShare: z.number(), at: z.number(), weakest: z.number().nullable() }).nullable(),
     /** Share of the entries that would be resolved at each relative tolerance: the resolution curve. */
     resolutionCurve: z.array(z.object({ rtol: z.number(), share: z.number() })),
     models: z.array(modelRow),

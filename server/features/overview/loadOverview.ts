@@ -16,6 +16,7 @@ import { loadActiveWaivers, loadWaived } from "../breaks/waived.ts";
 import { modelRows } from "./modelRows.ts";
 import { climbsAt } from "./climbsAt.ts";
 import { breaksAt } from "./breaksAt.ts";
+import { presentResolution } from "./resolution.ts";
 import { overviewSentence } from "./sentence.ts";
 import { loadSilentLanes } from "./silentLanes.ts";
 
@@ -78,6 +79,7 @@ export async function loadOverview(reader: Reader, wanted: OverviewWanted, now: 
     })),
     vanishedBlocks,
     checkedShare: counts && checkedShare(counts),
+    resolution: presentResolution(blocks, rtol),
     resolutionCurve: resolutionCurve(
       jacobians.map((block) => JSON.parse(block.resolutions) as ResolutionBins),
       counts?.entries ?? 0,

@@ -6,6 +6,7 @@ import { addUp, checkedShare, isWorse, worstOf } from "../../record/buildSummary
 import type { LoadedBlock } from "../blocks/loadBlockRows.ts";
 import { presentMotion, weakestResolution } from "../blocks/present.ts";
 import { finiteOrNull } from "../history/loadStrip.ts";
+import { resolutionOf } from "./resolution.ts";
 
 /** Blocks of one build, gathered by model; the models with the worst entry first. */
 export function modelRows(blocks: readonly LoadedBlock[]): ModelRow[] {
@@ -27,6 +28,7 @@ function modelRow(
   worst: ReturnType<typeof worstOf<LoadedBlock>>,
 ): ModelRow {
   const counts = addUp(blocks);
+  const { resolvedShare, weakest } = resolutionOf(blocks);
   return {
     model,
     blocks: namesOf(blocks),
@@ -41,6 +43,8 @@ function modelRow(
     },
     motion: motionOf(blocks),
     checkedShare: checkedShare(counts) ?? 0,
+    resolution: weakest,
+    resolvedShare: resolvedShare ?? 0,
   };
 }
 
