@@ -25,7 +25,7 @@ interface Round {
  * What kinds of mistake the entries of a block that disagree or are invalid look like (section 5 of the judging rules).
  *
  * The whole block is tried first, again as long as something explains at least 0.8 of what is left; then its rows or
- * its columns, whichever explains more; then single entries. Each is told of the narrowest place that holds what it
+ * its columns, whichever explains more, and so on with what they leave; then single entries. Each is told of the narrowest place that holds what it
  * explains. A block without a bad entry has none; what nothing explains has none either.
  *
  * Shapes: as in `judgeBlock`. Units: factors are dimensionless. Throws: never on a judged block.
@@ -84,14 +84,26 @@ function merged(parts: readonly Int32Array[]): Int32Array {
   return all.sort();
 }
 
+/** What is left by the whole block is tried line by line, what that leaves as a whole again, and at last one by one. */
 function nameAll(evidence: Evidence, disagreeing: Int32Array): Finding[] {
-  const whole = nameWhole(evidence, disagreeing);
-  const rows = nameGroups(evidence, whole.rest, byRow(evidence, whole.rest, MOST_GROUPS), "line");
-  const columns = nameGroups(evidence, whole.rest, byColumn(evidence, whole.rest, MOST_GROUPS), "line");
-  const lines = betterOf(rows, columns);
-  const single = Array.from(lines.rest.subarray(0, MOST_ENTRIES), (k) => Int32Array.of(k));
-  const entries = nameGroups(evidence, lines.rest, single, "entry of many");
-  return [...whole.found, ...lines.found, ...entries.found];
+  const found: Finding[] = [];
+  let rest = disagreeing;
+  for (let width: Trial["width"] = "block"; rest.length > 0; width = "line") {
+    const whole = nameWhole(evidence, rest, width);
+    const lines = nameLines(evidence, whole.rest);
+    found.push(...whole.found, ...lines.found);
+    rest = lines.rest;
+    if (lines.found.length === 0) break;
+  }
+  const single = Array.from(rest.subarray(0, MOST_ENTRIES), (k) => Int32Array.of(k));
+  return [...found, ...nameGroups(evidence, rest, single, "entry of many").found];
+}
+
+/** By rows or by columns, whichever leaves less. */
+function nameLines(evidence: Evidence, entries: Int32Array): Round {
+  const rows = nameGroups(evidence, entries, byRow(evidence, entries, MOST_GROUPS), "line");
+  const columns = nameGroups(evidence, entries, byColumn(evidence, entries, MOST_GROUPS), "line");
+  return betterOf(rows, columns);
 }
 
 /** Fewer entries left, then fewer signatures. */
@@ -100,12 +112,13 @@ function betterOf(rows: Round, columns: Round): Round {
   return less < 0 ? columns : rows;
 }
 
-/** What explains the block, or nearly, and then what explains the rest of it. */
-function nameWhole(evidence: Evidence, disagreeing: Int32Array): Round {
+/** What explains the entries, or nearly, and then what explains the rest of them. */
+function nameWhole(evidence: Evidence, entries: Int32Array, width: Trial["width"]): Round {
   const found: Finding[] = [];
-  let rest = disagreeing;
+  let rest = entries;
   while (rest.length > 0) {
-    const finding = simplest({ evidence, entries: rest, width: rest.length === 1 ? "line" : "block" });
+    const wide = found.length === 0 && rest.length > 1 ? width : "line";
+    const finding = simplest({ evidence, entries: rest, width: wide });
     if (finding === null) break;
     found.push(finding);
     rest = without(rest, finding.match.settled);
