@@ -31,6 +31,8 @@ export const exportedBlock = z
     rows: z.number().int(),
     columns: z.number().int(),
     counts,
+    /** Entries that an earlier build checked, counted with its verdict, and the builds since the oldest such check. */
+    carried: z.object({ entries: z.number().int(), oldest: z.number().int() }).nullable(),
     worst: z
       .object({
         row: z.number().int(),

@@ -170,6 +170,33 @@ describe("the record as a table", () => {
   });
 });
 
+it("tells a probe by its name, beside the block that it probes", async () => {
+  const keel = await server.seedProject("probed");
+  const values = numbers(1, 1, 3);
+  const probed = {
+    ...blockOf({ model: "rotor.thrust", derivative: values, reference: values }),
+    probes: [{ kind: "dot-product" as const, label: "seed 7", forward: 1.25, reverse: 1.5 }],
+  };
+  await post(server, keel, buildOf(commitOf(1), [probed]));
+  expect((await table("", keel)).map((row) => [row.model, row.probe, row.disagrees])).toEqual([
+    ["rotor.thrust", "", "0"],
+    ["rotor.thrust", "dot-product: seed 7", "1"],
+  ]);
+});
+
+it("tells verdicts that an earlier build's check is carried from", async () => {
+  const keel = await server.seedProject("carried");
+  const values = numbers(2, 1, 3);
+  const full = blockOf({ model: "rotor.thrust", derivative: values, reference: values });
+  await post(server, keel, buildOf(commitOf(1), [full]));
+  await post(server, keel, buildOf(commitOf(2), [{ ...full, references: [] }]));
+  const rows = await table("", keel);
+  expect(rows.map((row) => [row.agrees, row.carried, row.oldest])).toEqual([
+    ["2", "", ""],
+    ["2", "2", "1"],
+  ]);
+});
+
 describe("what is asked for", () => {
   it.each(["?from=yesterday", "?from=2026-01-02&to=2026-01-02", "?format=xml", "?kind=people", "?until=2026-01-01"])(
     "is refused where it is %s",

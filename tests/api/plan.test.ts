@@ -268,7 +268,9 @@ it("counts the entries that the last check could not resolve", async () => {
       [1, 0],
     ],
   });
-  await post(server, hull, buildOf(commitOf(1), [coarse]));
+  // A probe has no columns to choose from.
+  const probes: Block["probes"] = [{ kind: "dot-product", label: "seed 7", forward: 1.25, reverse: 1.25 }];
+  await post(server, hull, buildOf(commitOf(1), [{ ...coarse, probes }]));
   const answer = await ask("?evaluations=100");
   expect(answer.items.map(({ columns, reason }) => [columns, reason.code, reason.sentence])).toEqual([
     [[1, 3], "never-checked", "Posted for the first time and not checked."],

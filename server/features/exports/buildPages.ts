@@ -105,6 +105,7 @@ async function* blockPages(
           rows,
           columns,
           counts,
+          carried: row.carried,
           worst,
           rtol,
           floor: toWire(row.floor),
