@@ -1,6 +1,7 @@
 import { computed } from "vue";
 import { useRoute } from "vue-router";
 import type { BlockDetail } from "../../shared/schemas/block.ts";
+import type { StudyWanted } from "../queries/steps.ts";
 import { useCursor } from "./useCursor.ts";
 
 /** A reference of a block and one of its columns. */
@@ -32,9 +33,13 @@ export function useStudyChoice(block: () => BlockDetail | undefined) {
     const inside = Math.min(column, columns - 1);
     return { reference: known, column: covered === null || covered.includes(inside) ? inside : Math.min(...covered) };
   });
-  const wanted = computed(() => {
-    const { rows, columns } = block() ?? { rows: 0, columns: 0 };
-    return chosen.value !== null && (asked.value !== null || rows * columns <= UNASKED_ENTRIES);
+  /** What is to be asked of the server; null while a large block's study was not asked for. */
+  const wanted = computed<StudyWanted | null>(() => {
+    const known = block();
+    if (!known || !chosen.value) return null;
+    const { rows, columns, buildId: build, blockId } = known;
+    if (asked.value === null && rows * columns > UNASKED_ENTRIES) return null;
+    return { build, block: blockId, columns, ...chosen.value };
   });
   const choose = ({ reference, column }: StudyChoice) => put({ study: `${reference}.${column}` }, true);
   return { chosen, wanted, choose };
