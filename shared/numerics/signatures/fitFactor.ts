@@ -6,6 +6,11 @@ import type { Evidence, Trial } from "./types.ts";
 const COARSEST = 1e-2;
 /** Part of the entries whose references must be sharp enough to fit a factor; the others must bear it out. */
 const LEAST_SHARP = 0.1;
+/**
+ * A factor must be so many uncertainties away from 1 and -1: small errors of any kind are all near 1, and that they
+ * are is no factor that they share.
+ */
+const CLEAR_OF_ONE = 20;
 /** Where many single entries are tried one fits something by chance, unless the references are this sharp. */
 const COARSEST_OF_MANY = 5e-6;
 /** Sharpest entries whose own ratio is tried on the others. */
@@ -54,7 +59,7 @@ function fit({ evidence, entries, width }: Trial): Factor | null {
     const sharing = sample.filter((k, s) => blurs[s] <= COARSEST && hasFactor(evidence, k, { value, uncertainty }));
     if (sharing.length < sharp * LEAST_SHARE) continue;
     const mean = weightedMean(evidence, sharing, uncertainty);
-    return Math.abs(Math.abs(mean) - 1) <= 2 * uncertainty
+    return Math.abs(Math.abs(mean) - 1) <= CLEAR_OF_ONE * uncertainty
       ? null
       : { value: mean, uncertainty, witnesses: sharing.length };
   }
