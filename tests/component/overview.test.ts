@@ -51,7 +51,12 @@ describe("the overview", () => {
       { rtol: 1e-6, share: 0.9 },
       { rtol: 1e-2, share: 1 },
     ];
-    const { wrapper } = await mountAt(ResolutionCurve, { curve, rtol: 1e-6, entries: 200 });
+    const { wrapper } = await mountAt(ResolutionCurve, {
+      curve,
+      rtol: 1e-6,
+      resolution: { resolvedShare: 0.9, at: 1e-6, weakest: 1e-2 },
+      entries: 200,
+    });
     expect(wrapper.text()).toContain("90 % of 200 entries");
     expect(wrapper.text()).toContain("for 20 the references are too coarse or absent");
   });
