@@ -127,28 +127,34 @@ describe("the gate", () => {
   });
 
   it("warns where a reference was lost, or tells less", async () => {
+    await record.project.update({ checkLimit: 1 });
     await post(1, [good]);
-    const lost = await post(2, [unreferenced]);
+    // What was checked a build ago still stands.
+    expect(codes(await post(2, [unreferenced]))).toEqual([]);
+    const lost = await post(3, [unreferenced]);
     expect(lost.decision).toBe("pass");
     expect(codes(lost)).toEqual(["reference-missing warn"]);
     expect(lost.reasons[0]?.message).toContain("6 entries");
-    await post(3, [good]);
-    expect(codes(await post(4, [coarse]))).toEqual(["resolution-lost warn"]);
-    expect(codes(await post(5, [{ ...unreferenced, model: "new.block" }, coarse]))).toEqual(["reference-missing warn"]);
+    await post(4, [good]);
+    expect(codes(await post(5, [coarse]))).toEqual(["resolution-lost warn"]);
+    expect(codes(await post(6, [{ ...unreferenced, model: "new.block" }, coarse]))).toEqual(["reference-missing warn"]);
   });
 
   it("follows the project's policy", async () => {
+    await record.project.update({ checkLimit: 1 });
     await post(1, [good, other]);
     await post(2, [broken]);
     const lenient = await ask(2, null, { "new-break": "warn", "block-missing": "warn" });
     expect(lenient.decision).toBe("pass");
     expect(codes(lenient)).toEqual(["new-break warn", "block-missing warn"]);
     await post(3, [unreferenced]);
-    expect(await ask(3)).toMatchObject({ decision: "pass" });
-    expect(await ask(3, null, { "reference-missing": "fail" })).toMatchObject({ decision: "fail" });
+    await post(4, [unreferenced]);
+    expect(await ask(4)).toMatchObject({ decision: "pass" });
+    expect(await ask(4, null, { "reference-missing": "fail" })).toMatchObject({ decision: "fail" });
     await record.project.update({ policy: JSON.stringify({ "reference-missing": "fail" }) });
-    await post(4, [good]);
-    expect(await post(5, [unreferenced])).toMatchObject({ decision: "fail" });
+    await post(5, [good]);
+    expect(await post(6, [unreferenced])).toMatchObject({ decision: "pass" });
+    expect(await post(7, [unreferenced])).toMatchObject({ decision: "fail" });
   });
 
   it("looks at a block that changed its shape as at a new one", async () => {
