@@ -127,6 +127,8 @@ function marks(column: ColumnStudyRow, { min, max }: Decades, palette: Palette) 
 function lines(column: ColumnStudyRow, rtol: number, palette: Palette) {
   const label = { color: palette.ink, fontFamily: TEXT, fontSize: 13 };
   const best = bestStepOf(column);
+  // Of complex steps every smaller one is as good.
+  const words = column.candidates[0]?.method === "complex-step" ? "good below" : "best step";
   const tolerance = {
     yAxis: rtol,
     lineStyle: { color: palette.ink, type: "solid", width: 1.6 },
@@ -135,7 +137,7 @@ function lines(column: ColumnStudyRow, rtol: number, palette: Palette) {
   const upright = {
     xAxis: best,
     lineStyle: { color: palette.ink, type: [6, 4], width: 1.2 },
-    label: { ...label, position: "end", formatter: `best step ${powerText(best ?? 0)}` },
+    label: { ...label, position: "end", formatter: `${words} ${powerText(best ?? 0)}` },
   };
   return {
     type: "line",
