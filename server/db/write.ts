@@ -59,16 +59,39 @@ export class Writer {
    * Inserts rows of equal columns, at most `rowsPerStatement` a statement, passing over those that exist.
    * BLOBs are bound, not spelled out (bulkCreate would write them as hexadecimal literals).
    */
-  async insertOrIgnore(
+  insertOrIgnore(
     table: string,
     columns: readonly string[],
     rows: readonly (readonly Bindable[])[],
     rowsPerStatement = 100,
   ): Promise<void> {
+    return this.insert("IGNORE", table, columns, rows, rowsPerStatement);
+  }
+
+  /** The same, written over rows that exist. */
+  insertOrReplace(
+    table: string,
+    columns: readonly string[],
+    rows: readonly (readonly Bindable[])[],
+    rowsPerStatement = 100,
+  ): Promise<void> {
+    return this.insert("REPLACE", table, columns, rows, rowsPerStatement);
+  }
+
+  private async insert(
+    conflict: "IGNORE" | "REPLACE",
+    table: string,
+    columns: readonly string[],
+    rows: readonly (readonly Bindable[])[],
+    rowsPerStatement: number,
+  ): Promise<void> {
     for (let first = 0; first < rows.length; first += rowsPerStatement) {
       const part = rows.slice(first, first + rowsPerStatement);
       const tuples = part.map((row, r) => `(${row.map((_, c) => `$${r * columns.length + c + 1}`).join(", ")})`);
-      await this.run(`INSERT OR IGNORE INTO ${table} (${columns.join(", ")}) VALUES ${tuples.join(", ")}`, part.flat());
+      await this.run(
+        `INSERT OR ${conflict} INTO ${table} (${columns.join(", ")}) VALUES ${tuples.join(", ")}`,
+        part.flat(),
+      );
     }
   }
 }

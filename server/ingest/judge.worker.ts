@@ -5,8 +5,8 @@ import { judgeCoverage } from "./judgeCoverage.ts";
 import type { CoverageTask, JudgedCoverage } from "./judgeCoverage.ts";
 import { judgeDrift } from "./judgeDrift.ts";
 import type { DriftTask, JudgedDrift } from "./judgeDrift.ts";
-import { judgeMotion } from "./judgeMotion.ts";
-import type { JudgedMotion, MotionTask } from "./judgeMotion.ts";
+import { judgeMotions } from "./judgeMotion.ts";
+import type { JudgedMotions, MotionTask } from "./judgeMotion.ts";
 import { judgePosting } from "./judgePosting.ts";
 import type { JudgedPosting, Posting } from "./judgePosting.ts";
 import { judgeSteps } from "./judgeSteps.ts";
@@ -30,8 +30,8 @@ export function posting(task: Posting): PostingOutcome {
   }
 }
 
-export function motion(task: MotionTask): JudgedMotion {
-  const judged = judgeMotion(task);
+export function motions(tasks: readonly MotionTask[]): JudgedMotions {
+  const judged = judgeMotions(tasks);
   return handOver(judged, transferListOf(judged.tiles));
 }
 
@@ -40,9 +40,12 @@ export function coverage(task: CoverageTask): JudgedCoverage | null {
   return judged && handOver(judged, transferListOf(judged.tiles));
 }
 
-export function drift(task: DriftTask): JudgedDrift {
-  const judged = judgeDrift(task);
-  return handOver(judged, [judged.state.buffer as ArrayBuffer]);
+export function drifts(tasks: readonly DriftTask[]): readonly JudgedDrift[] {
+  const judged = tasks.map(judgeDrift);
+  return handOver(
+    judged,
+    judged.map(({ state }) => state.buffer as ArrayBuffer),
+  );
 }
 
 export function steps(task: StepsTask): StepStudy {

@@ -16,6 +16,7 @@ export interface StoredSide {
   readonly outputValues: readonly StoredTile[] | null;
 }
 
+/** One block in two builds. */
 export interface MotionTask {
   readonly rows: number;
   readonly columns: number;
@@ -25,26 +26,43 @@ export interface MotionTask {
   readonly names: BlockNames;
 }
 
-export interface JudgedMotion {
+export interface BlockMotion {
   readonly counts: MotionCounts;
-  readonly tiles: PackedTiles;
   /** Told where disagreeing entries are what the reference was before. */
   readonly leftBehind: NamedSignature | null;
   /** The motion plane as indices into the tiles. */
   readonly plane: readonly number[];
 }
 
-/** Motion of every entry of a block between two builds, from stored tiles to stored tiles. Pure; runs in a worker. */
-export function judgeMotion(task: MotionTask): JudgedMotion {
+export interface JudgedMotions {
+  /** In the order of the tasks. */
+  readonly motions: readonly BlockMotion[];
+  readonly tiles: PackedTiles;
+}
+
+/** Motion of every entry of some blocks between two builds, from stored tiles to stored tiles. Pure; runs in a worker. */
+export function judgeMotions(tasks: readonly MotionTask[]): JudgedMotions {
+  const tiles = new TileSet();
+  const motions = tasks.map((task) => judgeMotion(task, tiles));
+  return { motions, tiles: tiles.pack() };
+}
+
+function judgeMotion(task: MotionTask, tiles: TileSet): BlockMotion {
   const { rows, columns } = task;
   const verdict = assemble("verdict", task.now.verdict, rows * columns);
   const now = { ...side(task.now, rows, columns), verdict: new Uint8Array(verdict) };
   const before = side(task.before, rows, columns);
   const { motion, counts } = blockMotion(now, before, rows, columns);
-  const tiles = new TileSet();
-  const plane = tiles.addPlane("motion", motion).tiles;
   const behind = leftBehind(now, before, task.rtol, rows, columns, task.names);
-  return { counts, plane, leftBehind: behind, tiles: tiles.pack() };
+  return { counts, leftBehind: behind, plane: tiles.addPlane("motion", motion).tiles };
+}
+
+/** Nothing moved in a block of so many entries. */
+export function allStill(entries: number): JudgedMotions {
+  const tiles = new TileSet();
+  const plane = tiles.addPlane("motion", new Uint8Array(entries)).tiles;
+  const counts = { still: entries, together: 0, "derivative-only": 0, "model-only": 0, apart: 0 };
+  return { motions: [{ counts, leftBehind: null, plane }], tiles: tiles.pack() };
 }
 
 function side(stored: StoredSide, rows: number, columns: number): MotionSide {

@@ -2,7 +2,7 @@ import { Piscina } from "piscina";
 import type { StepStudy } from "../../shared/numerics/steps/types.ts";
 import type { CoverageTask, JudgedCoverage } from "./judgeCoverage.ts";
 import type { DriftTask, JudgedDrift } from "./judgeDrift.ts";
-import type { JudgedMotion, MotionTask } from "./judgeMotion.ts";
+import type { JudgedMotions, MotionTask } from "./judgeMotion.ts";
 import type { Posting, JudgedPosting } from "./judgePosting.ts";
 import type { StepsTask } from "./judgeSteps.ts";
 import type { PostingOutcome } from "./judge.worker.ts";
@@ -12,9 +12,10 @@ import { RejectedPosting } from "./rejection.ts";
 export interface JudgePool {
   /** Takes the body's memory with it. @throws RejectedPosting */
   posting(task: Posting): Promise<JudgedPosting>;
-  motion(task: MotionTask): Promise<JudgedMotion>;
+  motions(tasks: readonly MotionTask[]): Promise<JudgedMotions>;
   coverage(task: CoverageTask): Promise<JudgedCoverage | null>;
-  drift(task: DriftTask): Promise<JudgedDrift>;
+  /** Results in the order of the tasks. */
+  drifts(tasks: readonly DriftTask[]): Promise<readonly JudgedDrift[]>;
   steps(task: StepsTask): Promise<StepStudy>;
   close(): Promise<void>;
 }
@@ -36,9 +37,9 @@ export function createJudgePool(options: { readonly threads: number }): JudgePoo
       if ("rejected" in outcome) throw new RejectedPosting(outcome.rejected);
       return outcome.judged;
     },
-    motion: (task) => pool.run(task, { name: "motion" }) as Promise<JudgedMotion>,
+    motions: (tasks) => pool.run(tasks, { name: "motions" }) as Promise<JudgedMotions>,
     coverage: (task) => pool.run(task, { name: "coverage" }) as Promise<JudgedCoverage | null>,
-    drift: (task) => pool.run(task, { name: "drift" }) as Promise<JudgedDrift>,
+    drifts: (tasks) => pool.run(tasks, { name: "drifts" }) as Promise<readonly JudgedDrift[]>,
     steps: (task) => pool.run(task, { name: "steps" }) as Promise<StepStudy>,
     close: () => pool.close(),
   };

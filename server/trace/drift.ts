@@ -7,11 +7,13 @@ import type { LaneBuild, LaneBuilds } from "../record/laneBuilds.ts";
 import { loadSnapshots } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
 import { chainChange, driftChain } from "./driftChain.ts";
-import { loadDriftParts, PART_ENTRIES } from "./driftParts.ts";
+import { newCourse } from "./driftCourse.ts";
+import type { ChainItem, DriftCourse } from "./driftCourse.ts";
+import { loadDriftParts, PART_ENTRIES, partKey } from "./driftParts.ts";
+import type { DriftPart } from "./driftParts.ts";
 import { loadRestarts, restartOf } from "./driftRestarts.ts";
 import type { Restarts } from "./driftRestarts.ts";
-import { followPart } from "./followDrift.ts";
-import type { ChainItem } from "./followDrift.ts";
+import { followCourses } from "./followDrift.ts";
 
 interface DriftLane {
   readonly projectId: number;
@@ -82,22 +84,16 @@ async function append(
          AND (d.lastSnapshotId <> bb.snapshotId OR d.quiet = 0)))`,
     [buildId, laneId, all],
   );
-  const told = JSON.stringify(news.map((row) => row.blockId));
+  const ids = news.map((row) => row.blockId);
   // The same numbers again, from which nothing can follow: they are only counted.
   await w.run(
     `UPDATE block_drifts SET repeats = repeats + 1 WHERE laneId = $2
        AND blockId NOT IN (SELECT value FROM json_each($3))
        AND EXISTS (SELECT 1 FROM build_blocks bb
          WHERE bb.buildId = $1 AND bb.blockId = block_drifts.blockId AND bb.snapshotId = block_drifts.lastSnapshotId)`,
-    [buildId, laneId, told],
+    [buildId, laneId, JSON.stringify(ids)],
   );
-  const lane = await laneName(w, laneId);
-  for (const block of await namesOf(
-    w,
-    news.map((row) => row.blockId),
-  )) {
-    await followBlock(w, judge, laneId, { ...block, lane }, [buildId], restarts);
-  }
+  await followBlocks(w, judge, laneId, await namesOf(w, ids), [buildId], restarts);
 }
 
 /** From the first build of the chain on, as if nothing had been told before. */
@@ -110,57 +106,69 @@ async function retell(
   blocks: readonly NamedBlock[],
 ): Promise<void> {
   const ids = chain.map((build) => build.id);
-  const lane = await laneName(w, laneId);
-  for (const block of blocks) {
+  for (let first = 0; first < blocks.length; first += BLOCKS_AT_A_TIME) {
+    const some = blocks.slice(first, first + BLOCKS_AT_A_TIME);
     for (const table of ["block_drifts", "drift_events"]) {
-      await w.run(`DELETE FROM ${table} WHERE laneId = $1 AND blockId = $2`, [laneId, block.blockId]);
+      await w.run(`DELETE FROM ${table} WHERE laneId = $1 AND blockId IN (SELECT value FROM json_each($2))`, [
+        laneId,
+        JSON.stringify(some.map((block) => block.blockId)),
+      ]);
     }
-    await followBlock(w, judge, laneId, { ...block, lane }, ids, restarts);
+    await followBlocks(w, judge, laneId, some, ids, restarts);
   }
 }
 
-async function followBlock(
+/** A whole chain of many blocks would be much to hold. */
+const BLOCKS_AT_A_TIME = 50;
+
+/** Parts of blocks on their way through builds, with the snapshots that they meet. */
+async function followBlocks(
   w: Writer,
   judge: JudgePool,
   laneId: number,
-  block: NamedBlock & { readonly lane: string },
+  blocks: readonly NamedBlock[],
   buildIds: readonly number[],
   restarts: Restarts,
 ): Promise<void> {
-  const rows = await w.select<{ buildId: number; snapshotId: number }>(
-    "SELECT buildId, snapshotId FROM build_blocks WHERE blockId = $1 AND buildId IN (SELECT value FROM json_each($2))",
-    [block.blockId, JSON.stringify(buildIds)],
+  const ids = blocks.map((block) => block.blockId);
+  const rows = await w.select<{ blockId: number; buildId: number; snapshotId: number }>(
+    `SELECT blockId, buildId, snapshotId FROM build_blocks
+     WHERE blockId IN (SELECT value FROM json_each($1)) AND buildId IN (SELECT value FROM json_each($2))`,
+    [JSON.stringify(ids), JSON.stringify(buildIds)],
   );
-  const snapshotOf = new Map(rows.map((row) => [row.buildId, row.snapshotId]));
-  const snapshots = await loadSnapshots(w, snapshotOf.values());
-  const items = buildIds.flatMap((buildId): ChainItem[] => {
-    const snapshot = snapshots.get(snapshotOf.get(buildId) ?? NaN);
-    return snapshot ? [{ buildId, snapshot, restart: restartOf(restarts, buildId, block, snapshot) }] : [];
+  const known = await loadDriftParts(w, laneId, ids);
+  const snapshots = await loadSnapshots(w, [
+    ...rows.map((row) => row.snapshotId),
+    ...[...known.values()].map((part) => part.lastSnapshotId),
+  ]);
+  const rowsOf = groupBy(rows, (row) => row.blockId);
+  const lane = await laneName(w, laneId);
+  const courses = blocks.flatMap((block) => {
+    const snapshotOf = new Map(rowsOf.get(block.blockId)?.map((row) => [row.buildId, row.snapshotId]));
+    const items = buildIds.flatMap((buildId): ChainItem[] => {
+      const snapshot = snapshots.get(snapshotOf.get(buildId) ?? NaN);
+      return snapshot
+        ? [{ buildId, snapshot, restart: restartOf(restarts, buildId, { ...block, lane }, snapshot) }]
+        : [];
+    });
+    return coursesOf({ laneId, blockId: block.blockId }, items, known, snapshots);
   });
-  for (const [columns, ofShape] of groupBy(items, ({ snapshot }) => snapshot.columns)) {
-    await followShape(w, judge, { laneId, blockId: block.blockId, columns }, ofShape);
-  }
+  await followCourses(w, judge, courses, snapshots);
 }
 
-async function followShape(
-  w: Writer,
-  judge: JudgePool,
-  key: { readonly laneId: number; readonly blockId: number; readonly columns: number },
+function coursesOf(
+  place: { readonly laneId: number; readonly blockId: number },
   items: readonly ChainItem[],
-): Promise<void> {
-  const known = await loadDriftParts(w, key);
-  const before = await loadSnapshots(
-    w,
-    [...known.values()].map((part) => part.lastSnapshotId),
-  );
-  const snapshots = new Map<number, SnapshotPlanes>([
-    ...before,
-    ...items.map(({ snapshot }) => [snapshot.id, snapshot] as const),
-  ]);
-  const most = items.reduce((size, { snapshot }) => Math.max(size, snapshot.rows * snapshot.columns), 0);
-  for (let part = 0; part * PART_ENTRIES < most; part += 1) {
-    await followPart(w, judge, key, part, known.get(part) ?? null, items, snapshots);
-  }
+  known: ReadonlyMap<string, DriftPart>,
+  snapshots: ReadonlyMap<number, SnapshotPlanes>,
+): DriftCourse[] {
+  return [...groupBy(items, ({ snapshot }) => snapshot.columns)].flatMap(([columns, ofShape]) => {
+    const most = ofShape.reduce((size, { snapshot }) => Math.max(size, snapshot.rows * snapshot.columns), 0);
+    return Array.from({ length: Math.ceil(most / PART_ENTRIES) }, (_, part) => {
+      const placed = { ...place, columns, part };
+      return newCourse(placed, known.get(partKey(placed)) ?? null, ofShape, snapshots);
+    });
+  });
 }
 
 function blocksOf(w: Writer, buildIds: readonly number[]): Promise<NamedBlock[]> {

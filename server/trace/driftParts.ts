@@ -28,51 +28,114 @@ export interface DriftPart {
   readonly repeats: number;
   /** True where repeating the numbers can never tell anything. */
   readonly quiet: boolean;
-  /** Packed; null while every build said the same. */
-  readonly state: Buffer | null;
+  /** Packed; "none" while every build said the same, "in the record" while it was not read. */
+  readonly state: Uint8Array | "none" | "in the record";
 }
 
+export interface PlacedPart extends DriftKey {
+  readonly part: number;
+}
+
+/** A name for maps. */
+export const partKey = ({ blockId, columns, part }: Omit<PlacedPart, "laneId">) => `${blockId} ${columns} ${part}`;
+
+/** All parts of some blocks of a lane, without their states: those are read when they are needed. */
 export async function loadDriftParts(
   w: Writer,
-  { laneId, blockId, columns }: DriftKey,
-): Promise<Map<number, DriftPart>> {
-  const rows = await w.select<Omit<DriftPart, "quiet"> & { part: number; quiet: 0 | 1 }>(
-    `SELECT part, lastSnapshotId, repeats, quiet, state FROM block_drifts
-     WHERE laneId = $1 AND blockId = $2 AND columnCount = $3`,
-    [laneId, blockId, columns],
+  laneId: number,
+  blockIds: readonly number[],
+): Promise<Map<string, DriftPart>> {
+  const rows = await w.select<{
+    blockId: number;
+    columns: number;
+    part: number;
+    lastSnapshotId: number;
+    repeats: number;
+    quiet: 0 | 1;
+    stateless: 0 | 1;
+  }>(
+    `SELECT blockId, columnCount AS columns, part, lastSnapshotId, repeats, quiet, state IS NULL AS stateless
+     FROM block_drifts WHERE laneId = $1 AND blockId IN (SELECT value FROM json_each($2))`,
+    [laneId, JSON.stringify(blockIds)],
   );
-  return new Map(rows.map(({ part, quiet, ...row }) => [part, { ...row, quiet: quiet === 1 }]));
+  return new Map(
+    rows.map(({ lastSnapshotId, repeats, quiet, stateless, ...place }) => [
+      partKey(place),
+      { lastSnapshotId, repeats, quiet: quiet === 1, state: stateless === 1 ? "none" : "in the record" },
+    ]),
+  );
 }
 
-export async function storeDriftPart(w: Writer, key: DriftKey, part: number, drift: DriftPart): Promise<void> {
-  await w.run(
-    `INSERT OR REPLACE INTO block_drifts (laneId, blockId, columnCount, part, lastSnapshotId, repeats, quiet, state)
-     VALUES ($1, $2, $3, $4, $5, $6, $7, $8)`,
-    [key.laneId, key.blockId, key.columns, part, drift.lastSnapshotId, drift.repeats, drift.quiet ? 1 : 0, drift.state],
+/** States of some parts of a lane, by `partKey`. */
+export async function loadDriftStates(w: Writer, parts: readonly PlacedPart[]): Promise<Map<string, Buffer>> {
+  if (parts.length === 0) return new Map();
+  const rows = await w.select<{ blockId: number; columns: number; part: number; state: Buffer }>(
+    `SELECT d.blockId, d.columnCount AS columns, d.part, d.state
+     FROM json_each($2) p JOIN block_drifts d ON d.laneId = $1 AND d.blockId = p.value ->> 0
+       AND d.columnCount = p.value ->> 1 AND d.part = p.value ->> 2`,
+    [parts[0].laneId, JSON.stringify(parts.map(({ blockId, columns, part }) => [blockId, columns, part]))],
+  );
+  return new Map(rows.map(({ state, ...place }) => [partKey(place), state]));
+}
+
+const ROWS_PER_STATEMENT = 50;
+
+/** Writes parts over what was known of them. A state that was not read stays as it is in the record. */
+export async function storeDriftParts(
+  w: Writer,
+  parts: readonly { readonly place: PlacedPart; readonly drift: DriftPart }[],
+): Promise<void> {
+  const kept = parts.filter(({ drift }) => drift.state === "in the record");
+  for (const { place, drift } of kept) {
+    await w.run(
+      `UPDATE block_drifts SET lastSnapshotId = $5, repeats = $6
+       WHERE laneId = $1 AND blockId = $2 AND columnCount = $3 AND part = $4`,
+      [place.laneId, place.blockId, place.columns, place.part, drift.lastSnapshotId, drift.repeats],
+    );
+  }
+  await w.insertOrReplace(
+    "block_drifts",
+    ["laneId", "blockId", "columnCount", "part", "lastSnapshotId", "repeats", "quiet", "state"],
+    parts
+      .filter(({ drift }) => drift.state !== "in the record")
+      .map(({ place, drift }) => [
+        place.laneId,
+        place.blockId,
+        place.columns,
+        place.part,
+        drift.lastSnapshotId,
+        drift.repeats,
+        drift.quiet ? 1 : 0,
+        drift.state instanceof Uint8Array
+          ? Buffer.from(drift.state.buffer, drift.state.byteOffset, drift.state.byteLength)
+          : null,
+      ]),
+    ROWS_PER_STATEMENT,
   );
 }
 
 export async function storeHappenings(
   w: Writer,
-  key: DriftKey,
-  part: number,
-  happenings: readonly DriftHappening[],
+  told: readonly { readonly place: PlacedPart; readonly happening: DriftHappening }[],
 ): Promise<void> {
-  const first = part * PART_ENTRIES;
   await w.insertOrIgnore(
     "drift_events",
     ["laneId", "blockId", "columnCount", "buildId", "kind", "onsetBuildId", "entries", "decades", "worstEntry"],
-    happenings.map(({ buildId, kind, onsetBuildId, entries, decades, worstEntry }) => [
-      key.laneId,
-      key.blockId,
-      key.columns,
-      buildId,
-      kind,
-      onsetBuildId,
-      packEntries(entries.map((entry) => entry + first)),
-      decades,
-      worstEntry + first,
-    ]),
+    told.map(({ place, happening }) => {
+      const first = place.part * PART_ENTRIES;
+      const { buildId, kind, onsetBuildId, entries, decades, worstEntry } = happening;
+      return [
+        place.laneId,
+        place.blockId,
+        place.columns,
+        buildId,
+        kind,
+        onsetBuildId,
+        packEntries(entries.map((entry) => entry + first)),
+        decades,
+        worstEntry + first,
+      ];
+    }),
   );
 }
 

@@ -1,105 +1,78 @@
 import type { Writer } from "../db/write.ts";
-import type { DriftStep } from "../ingest/judgeDrift.ts";
+import type { DriftHappening, DriftStep, DriftTask } from "../ingest/judgeDrift.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
 import { loadTiles } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
+import { BATCH_ENTRIES, batches } from "./batches.ts";
+import { goOn, isDone } from "./driftCourse.ts";
+import type { DriftCourse, Waiting } from "./driftCourse.ts";
 import {
   allPartTiles,
   driftTiles,
   entriesInPart,
-  PART_ENTRIES,
-  samePart,
-  storeDriftPart,
+  loadDriftStates,
+  partKey,
+  storeDriftParts,
   storeHappenings,
 } from "./driftParts.ts";
-import type { DriftKey, DriftPart } from "./driftParts.ts";
-
-/** One build of a block on the chain. */
-export interface ChainItem {
-  readonly buildId: number;
-  readonly snapshot: SnapshotPlanes;
-  /** Flat indices of the entries whose baseline begins here; null for none. */
-  readonly restart: Uint32Array | "all" | null;
-}
-
-/** What waits to be gone through by the judge. */
-interface Waiting extends Omit<DriftStep, "tiles"> {
-  readonly snapshot: SnapshotPlanes | null;
-}
-
-/** Numbers that one task may hold, and steps. */
-const MOST_ENTRIES = 16 * PART_ENTRIES;
-const MOST_STEPS = 64;
+import type { PlacedPart } from "./driftParts.ts";
 
 /**
- * Follows one part of a block through further builds of its chain. Builds that repeat numbers from which nothing can
- * follow are only counted.
+ * Follows parts of blocks of one lane through the builds of their courses. Parts are gone through in batches, so that
+ * many small blocks cost one task and a few statements, and a large one is held piece by piece.
  */
-export async function followPart(
+export async function followCourses(
   w: Writer,
   judge: JudgePool,
-  key: DriftKey,
-  part: number,
-  known: DriftPart | null,
-  items: readonly ChainItem[],
+  courses: readonly DriftCourse[],
   snapshots: ReadonlyMap<number, SnapshotPlanes>,
 ): Promise<void> {
-  let now = known;
-  let last = known === null ? null : (snapshots.get(known.lastSnapshotId) ?? null);
-  let waiting: Waiting[] = [];
-  const judged = async (drift: DriftPart): Promise<DriftPart> => {
-    if (waiting.length === 0) return drift;
-    const { state, quiet, happenings } = await judge.drift({
-      state: drift.state,
-      steps: await stepsOf(w, part, waiting),
-    });
-    waiting = [];
-    await storeHappenings(w, key, part, happenings);
-    return { ...drift, state: Buffer.from(state.buffer, state.byteOffset, state.byteLength), quiet };
-  };
-  for (const { buildId, snapshot, restart: ofBlock } of items) {
-    if (entriesInPart(snapshot, part) === 0) continue;
-    const restart = withinPart(ofBlock, part);
-    const same = last !== null && samePart(last, snapshot, part);
-    last = snapshot;
-    const unwritten = waiting.length === 0;
-    if (now === null || (unwritten && now.state === null && restart === "all")) {
-      now = { lastSnapshotId: snapshot.id, repeats: 0, quiet: true, state: null };
-    } else if (unwritten && same && now.quiet && restart === null) {
-      now = { ...now, lastSnapshotId: snapshot.id, repeats: now.repeats + 1 };
-    } else {
-      if (unwritten) waiting.push(...caughtUp(now, buildId, snapshots));
-      waiting.push({ buildId, snapshot: same ? null : snapshot, times: 1, restart });
-      now = { ...now, lastSnapshotId: snapshot.id, repeats: 0 };
-      if (isFull(waiting, part)) now = await judged(now);
+  for (const batch of batches(courses, sizeOf, BATCH_ENTRIES)) {
+    const happenings: { place: PlacedPart; happening: DriftHappening }[] = [];
+    for (const course of batch) goOn(course, snapshots);
+    for (let busy = waitingOf(batch); busy.length > 0; busy = waitingOf(batch)) {
+      const judged = await judge.drifts(await tasksOf(w, busy));
+      busy.forEach((course, at) => {
+        const { state, quiet, happenings: told } = judged[at];
+        happenings.push(...told.map((happening) => ({ place: course.place, happening })));
+        course.waiting = [];
+        if (course.now !== null) course.now = { ...course.now, state, quiet };
+        goOn(course, snapshots);
+      });
     }
+    await storeHappenings(w, happenings);
+    await storeDriftParts(
+      w,
+      batch.flatMap(({ place, now }) => (now === null ? [] : [{ place, drift: now }])),
+    );
   }
-  if (now !== null) await storeDriftPart(w, key, part, await judged(now));
 }
 
-/** The builds that were only counted so far. */
-function caughtUp(now: DriftPart, buildId: number, snapshots: ReadonlyMap<number, SnapshotPlanes>): Waiting[] {
-  const snapshot = snapshots.get(now.lastSnapshotId) ?? null;
-  if (now.state === null) return [{ buildId, snapshot, times: now.repeats + 1, restart: null }];
-  return now.repeats === 0 ? [] : [{ buildId, snapshot: null, times: now.repeats, restart: null }];
+function sizeOf({ place, items }: DriftCourse): number {
+  return items.reduce((most, { snapshot }) => Math.max(most, entriesInPart(snapshot, place.part)), 0);
 }
 
-function isFull(waiting: readonly Waiting[], part: number): boolean {
-  const entries = waiting.reduce((sum, { snapshot }) => sum + (snapshot ? entriesInPart(snapshot, part) : 0), 0);
-  return waiting.length >= MOST_STEPS || entries >= MOST_ENTRIES;
+function waitingOf(courses: readonly DriftCourse[]): DriftCourse[] {
+  return courses.filter((course) => !isDone(course));
 }
 
-function withinPart(restart: ChainItem["restart"], part: number): ChainItem["restart"] {
-  if (restart === null || restart === "all") return restart;
-  const first = part * PART_ENTRIES;
-  const within = restart.filter((entry) => entry >= first && entry < first + PART_ENTRIES);
-  return within.length === 0 ? null : within.map((entry) => entry - first);
-}
-
-async function stepsOf(w: Writer, part: number, waiting: readonly Waiting[]): Promise<DriftStep[]> {
+async function tasksOf(w: Writer, courses: readonly DriftCourse[]): Promise<DriftTask[]> {
+  const states = await loadDriftStates(
+    w,
+    courses.filter(({ now }) => now?.state === "in the record").map(({ place }) => place),
+  );
   const tiles = await loadTiles(
     w,
-    waiting.flatMap(({ snapshot }) => (snapshot ? allPartTiles(snapshot, part) : [])),
+    courses.flatMap(({ waiting, place }) =>
+      waiting.flatMap(({ snapshot }) => (snapshot ? allPartTiles(snapshot, place.part) : [])),
+    ),
   );
-  return waiting.map(({ snapshot, ...step }) => ({ ...step, tiles: snapshot && driftTiles(snapshot, part, tiles) }));
+  const stepOf = ({ snapshot, ...step }: Waiting, part: number): DriftStep => ({
+    ...step,
+    tiles: snapshot && driftTiles(snapshot, part, tiles),
+  });
+  return courses.map(({ place, now, waiting }) => ({
+    state: now?.state instanceof Uint8Array ? now.state : (states.get(partKey(place)) ?? null),
+    steps: waiting.map((step) => stepOf(step, place.part)),
+  }));
 }

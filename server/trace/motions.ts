@@ -1,17 +1,18 @@
 import { createHash } from "node:crypto";
-import { groupBy } from "../../shared/domain/groupBy.ts";
 import type { Writer } from "../db/write.ts";
-import type { BlockDetails } from "../ingest/blockDetails.ts";
-import type { StoredTile } from "../ingest/assemble.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
-import type { JudgedMotion, MotionTask, StoredSide } from "../ingest/judgeMotion.ts";
+import { allStill } from "../ingest/judgeMotion.ts";
+import type { BlockMotion, JudgedMotions } from "../ingest/judgeMotion.ts";
 import { packPlanes } from "../ingest/planes.ts";
 import { hashKey } from "../ingest/tiles.ts";
-import { TileSet, unpackTiles } from "../ingest/tileSet.ts";
-import { loadSnapshots, loadTiles, tilesOf } from "../record/readPlanes.ts";
+import { unpackTiles } from "../ingest/tileSet.ts";
+import { loadSnapshots, tilesOf } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
 import { idsByHash, storeTiles } from "../record/storeTiles.ts";
 import type { Rebased } from "./baselines.ts";
+import { BATCH_ENTRIES, batches } from "./batches.ts";
+import { loadMotionTasks } from "./motionTasks.ts";
+import type { ChangedBlock } from "./motionTasks.ts";
 
 interface Pair {
   readonly blockId: number;
@@ -20,46 +21,55 @@ interface Pair {
 }
 
 /**
- * Tells the motion of every block of a build against its baseline, block by block: null where the baseline has no such
- * block, or another shape of it. Blocks whose numbers are the same tiles as before are still without being read.
+ * Tells the motion of every block of a build against its baseline: null where the baseline has no such block, or
+ * another shape of it. Blocks whose numbers are the same tiles as before are still without being read; the others are
+ * judged in batches.
  */
 export async function updateMotions(w: Writer, judge: JudgePool, rebased: Rebased): Promise<void> {
   const { buildId, baselineBuildId } = rebased;
   await w.run("UPDATE build_blocks SET motionId = NULL WHERE buildId = $1", [buildId]);
   if (baselineBuildId === null) return;
+  const blocks = await loadPairs(w, buildId, baselineBuildId);
+  const changed = blocks.filter(({ now, before }) => !sameNumbers(now, before));
+  const told: [blockId: number, motionId: number][] = [];
+  for (const batch of batches(changed, ({ now }) => now.rows * now.columns, BATCH_ENTRIES)) {
+    const ids = await storeMotions(w, await judge.motions(await loadMotionTasks(w, buildId, batch)));
+    told.push(...batch.map(({ blockId }, at) => [blockId, ids[at]] as [number, number]));
+  }
+  const stillByShape = new Map<number, number>();
+  for (const { blockId, now, before } of blocks) {
+    if (!sameNumbers(now, before)) continue;
+    const entries = now.rows * now.columns;
+    const motionId = stillByShape.get(entries) ?? (await storeMotions(w, allStill(entries)))[0];
+    stillByShape.set(entries, motionId);
+    told.push([blockId, motionId]);
+  }
+  await w.run(
+    `UPDATE build_blocks SET motionId = t.motionId
+     FROM (SELECT value ->> 0 AS blockId, value ->> 1 AS motionId FROM json_each($2)) t
+     WHERE build_blocks.buildId = $1 AND build_blocks.blockId = t.blockId`,
+    [buildId, JSON.stringify(told)],
+  );
+}
+
+/** Blocks of both builds that have the same shape in both. */
+async function loadPairs(w: Writer, buildId: number, baselineId: number): Promise<ChangedBlock[]> {
   const pairs = await w.select<Pair>(
     `SELECT n.blockId, n.snapshotId AS now, b.snapshotId AS before
      FROM build_blocks n JOIN build_blocks b ON b.blockId = n.blockId AND b.buildId = $2 WHERE n.buildId = $1`,
-    [buildId, baselineBuildId],
+    [buildId, baselineId],
   );
   const snapshots = await loadSnapshots(
     w,
     pairs.flatMap((pair) => [pair.now, pair.before]),
   );
-  const told: { readonly motionId: number; readonly blockId: number }[] = [];
-  const stillByShape = new Map<number, number>();
-  for (const pair of pairs) {
-    const now = snapshots.get(pair.now) as SnapshotPlanes;
-    const before = snapshots.get(pair.before) as SnapshotPlanes;
-    if (now.rows !== before.rows || now.columns !== before.columns) continue;
-    const entries = now.rows * now.columns;
-    const still = sameNumbers(now, before);
-    const motionId =
-      (still ? stillByShape.get(entries) : undefined) ??
-      (await storeMotion(
-        w,
-        still ? allStill(entries) : await judgeChange(w, judge, { buildId, blockId: pair.blockId }, now, before),
-      ));
-    if (still) stillByShape.set(entries, motionId);
-    told.push({ motionId, blockId: pair.blockId });
-  }
-  for (const [motionId, blocks] of groupBy(told, (one) => one.motionId)) {
-    await w.run(
-      `UPDATE build_blocks SET motionId = $1
-       WHERE buildId = $2 AND blockId IN (SELECT value FROM json_each($3))`,
-      [motionId, buildId, JSON.stringify(blocks.map((one) => one.blockId))],
-    );
-  }
+  return pairs
+    .map(({ blockId, now, before }) => ({
+      blockId,
+      now: snapshots.get(now) as SnapshotPlanes,
+      before: snapshots.get(before) as SnapshotPlanes,
+    }))
+    .filter(({ now, before }) => now.rows === before.rows && now.columns === before.columns);
 }
 
 /** What motion is told from is stored in the same tiles: nothing moved. */
@@ -72,77 +82,40 @@ function sameNumbers(now: SnapshotPlanes, before: SnapshotPlanes): boolean {
   );
 }
 
-function allStill(entries: number): JudgedMotion {
-  const tiles = new TileSet();
-  const plane = tiles.addPlane("motion", new Uint8Array(entries)).tiles;
-  const counts = { still: entries, together: 0, "derivative-only": 0, "model-only": 0, apart: 0 };
-  return { counts, plane, leftBehind: null, tiles: tiles.pack() };
-}
-
-async function judgeChange(
-  w: Writer,
-  judge: JudgePool,
-  place: { readonly buildId: number; readonly blockId: number },
-  now: SnapshotPlanes,
-  before: SnapshotPlanes,
-): Promise<JudgedMotion> {
-  const names = ["derivative", "reference", "resolution", "verdict", "outputValues"] as const;
-  const ids = [now, before].flatMap((side) => names.flatMap((name) => tilesOf(side.planes, name)));
-  const tiles = await loadTiles(w, ids);
-  const plane = (side: SnapshotPlanes, name: (typeof names)[number]) =>
-    tilesOf(side.planes, name).map((id) => tiles.get(id) as StoredTile);
-  const sideOf = (side: SnapshotPlanes): StoredSide => ({
-    floor: side.floor,
-    derivative: plane(side, "derivative"),
-    reference: plane(side, "reference"),
-    resolution: plane(side, "resolution"),
-    outputValues: side.planes.some((p) => p.name === "outputValues") ? plane(side, "outputValues") : null,
-  });
-  return judge.motion({
-    rows: now.rows,
-    columns: now.columns,
-    now: { ...sideOf(now), verdict: plane(now, "verdict") },
-    before: sideOf(before),
-    ...(await loadNames(w, place)),
-  });
-}
-
-/** What the block's rows and columns are called, and the tolerance that it was judged with. */
-async function loadNames(
-  w: Writer,
-  { buildId, blockId }: { readonly buildId: number; readonly blockId: number },
-): Promise<Pick<MotionTask, "rtol" | "names">> {
-  const [block] = await w.select<{ rtol: number; output: string; input: string; details: string }>(
-    `SELECT s.rtol, b.output, b.input, d.details FROM build_blocks bb JOIN blocks b ON b.id = bb.blockId
-     JOIN snapshots s ON s.id = bb.snapshotId JOIN block_details d ON d.id = bb.detailsId
-     WHERE bb.buildId = $1 AND bb.blockId = $2`,
-    [buildId, blockId],
+/** Ids of the motions, in their order; equal ones are stored once. */
+async function storeMotions(w: Writer, { motions, tiles }: JudgedMotions): Promise<number[]> {
+  const tileHashes = unpackTiles(tiles).map((tile) => tile.hash);
+  const digests = motions.map((motion) => digestOf(motion, tileHashes));
+  const known = await idsByHash(w, "motions", digests);
+  const fresh = motions.flatMap((motion, at) =>
+    known.has(hashKey(digests[at])) ? [] : [{ motion, hash: digests[at] }],
   );
-  const details = JSON.parse(block.details) as BlockDetails;
-  return {
-    rtol: block.rtol,
-    names: {
-      output: { name: block.output, ...details.output },
-      input: { name: block.input, ...details.input },
-    },
-  };
+  if (fresh.length > 0) {
+    const tileIds = await storeTiles(w, tiles);
+    await w.insertOrIgnore(
+      "motions",
+      ["hash", "planes", "counts", "leftBehind"],
+      fresh.map(({ motion, hash }) => {
+        const plane = {
+          name: "motion",
+          reference: 0,
+          step: 0,
+          tiles: motion.plane.map((tile) => tileIds[tile]),
+        } as const;
+        return [hash, packPlanes([plane]), JSON.stringify(motion.counts), behindText(motion)];
+      }),
+    );
+  }
+  const ids = fresh.length === 0 ? known : await idsByHash(w, "motions", digests);
+  return digests.map((digest) => ids.get(hashKey(digest)) as number);
 }
 
-async function storeMotion(w: Writer, motion: JudgedMotion): Promise<number> {
-  const tileHashes = unpackTiles(motion.tiles).map((tile) => tile.hash);
+function digestOf(motion: BlockMotion, tileHashes: readonly Buffer[]): Buffer {
   const hash = createHash("sha256");
   for (const tile of motion.plane) hash.update(tileHashes[tile]);
-  const leftBehind = motion.leftBehind && JSON.stringify(motion.leftBehind);
-  if (leftBehind !== null) hash.update(leftBehind);
-  const digest = hash.digest();
-  const known = (await idsByHash(w, "motions", [digest])).get(hashKey(digest));
-  if (known !== undefined) return known;
-  const tileIds = await storeTiles(w, motion.tiles);
-  const plane = { name: "motion", reference: 0, step: 0, tiles: motion.plane.map((tile) => tileIds[tile]) } as const;
-  await w.insertOrIgnore(
-    "motions",
-    ["hash", "planes", "counts", "leftBehind"],
-    [[digest, packPlanes([plane]), JSON.stringify(motion.counts), leftBehind]],
-  );
-  return (await idsByHash(w, "motions", [digest])).get(hashKey(digest)) as number;
+  return hash.update(behindText(motion) ?? "").digest();
+}
+
+function behindText({ leftBehind }: BlockMotion): string | null {
+  return leftBehind && JSON.stringify(leftBehind);
 }

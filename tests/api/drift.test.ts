@@ -116,6 +116,31 @@ describe("drift along a lane", () => {
     expect(await seriesEvents(1, 0)).toEqual(told);
   });
 
+  it("is kept in parts: one entry of a large block that jumps is told by its place in the whole", async () => {
+    const [rows, columns, jumping] = [300, 300, 80_123];
+    const wide = (n: number): BuildDocument => {
+      const reference = Float64Array.from({ length: rows * columns }, (_, k) => 2 + Math.sin(k));
+      const derivative = reference.map((value, k) => value * (1 + (k === jumping && n === 8 ? 1e-7 : 1e-10)));
+      const f64le = (values: Float64Array) => ({ f64le: Buffer.from(values.buffer).toString("base64") });
+      return buildOf(commitOf(n), [
+        {
+          model: "wake.deficit",
+          output: { name: "f", size: rows },
+          input: { name: "x", size: columns },
+          derivative: { method: "analytic", values: f64le(derivative) },
+          references: [{ method: "complex-step", step: 1e-20, values: f64le(reference) }],
+        },
+      ]);
+    };
+    for (let n = 1; n <= 8; n += 1) await record.post(wide(n));
+    expect(await happenings()).toMatchObject([{ sha: shaOf(8), kind: "jump", entries: [jumping] }]);
+    // The other part repeats its numbers: nothing of it had to be written.
+    expect((await states()).map(({ repeats, state }) => [repeats, state === null])).toEqual([
+      [7, true],
+      [0, false],
+    ]);
+  });
+
   it("follows the default branch alone", async () => {
     const blocks = climbingBlocks(30, 10, 0.2);
     for (const [at, block] of blocks.entries()) {
