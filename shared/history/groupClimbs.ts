@@ -2,6 +2,8 @@
 export interface DriftRise {
   readonly blockId: number;
   readonly model: string;
+  /** Name of the probe that the block is, "" for a Jacobian. */
+  readonly probe: string;
   readonly columns: number;
   readonly kind: "climb" | "jump";
   /** First build of the rise. */
@@ -25,6 +27,8 @@ export interface ClimbGroup {
   readonly worst: DriftRise;
   readonly members: readonly DriftRise[];
   readonly entryCount: number;
+  /** Names of the probes among them. */
+  readonly probes: readonly string[];
   /** Entries still climbing; 0 of jumps, which are over when they are told. */
   readonly openCount: number;
   /** The build at which the last of it ended; null while it is open. */
@@ -82,6 +86,7 @@ function groupOf(members: readonly DriftRise[], until: number, jumps: ReadonlySe
     kind: worst.kind,
     worst,
     members,
+    probes: [...new Set(members.flatMap(({ probe }) => (probe === "" ? [] : [probe])))].sort(),
     entryCount: members.reduce((sum, member) => sum + member.entries.length, 0),
     openCount,
     endedAt: openCount > 0 ? null : lastEnd,

@@ -9,6 +9,8 @@ export const climb = z
   .object({
     id,
     kind: z.enum(["climb", "jump"]),
+    /** True of a climb that is a jump which stayed. */
+    jumped: z.boolean(),
     state: z.enum(["open", "ended"]),
     lane: laneName,
     model: z.string(),

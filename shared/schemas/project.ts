@@ -148,6 +148,8 @@ export const overview = z
     climbs: z.array(
       z.object({
         kind: z.enum(["climb", "jump"]),
+        /** True of a climb that is a jump which stayed. */
+        jumped: z.boolean(),
         model: z.string(),
         decades: z.number(),
         builds: z.number().int(),

@@ -5,6 +5,7 @@ import { unpackEntries } from "../../record/entryList.ts";
 interface EventRow {
   readonly blockId: number;
   readonly model: string;
+  readonly probe: string;
   readonly columns: number;
   readonly buildId: number;
   readonly kind: "climb" | "jump" | "end";
@@ -21,7 +22,7 @@ export async function loadRises(
   placeOf: ReadonlyMap<number, number>,
 ): Promise<DriftRise[]> {
   const rows = await reader.select<EventRow>(
-    `SELECT e.blockId, b.model, e.columnCount AS columns, e.buildId, e.kind, e.onsetBuildId, e.entries, e.decades,
+    `SELECT e.blockId, b.model, b.probe, e.columnCount AS columns, e.buildId, e.kind, e.onsetBuildId, e.entries, e.decades,
        e.worstEntry
      FROM drift_events e JOIN blocks b ON b.id = e.blockId WHERE e.laneId = $1
      ORDER BY b.model, b.output, b.input, b.point, b.probe, e.columnCount, e.worstEntry`,
@@ -43,6 +44,7 @@ export async function loadRises(
       {
         blockId: row.blockId,
         model: row.model,
+        probe: row.probe,
         columns: row.columns,
         kind: row.kind,
         onset,

@@ -15,10 +15,11 @@ export function presentClimb(
   const { group, block, row, column, commits, traced } = climb;
   const open = group.kind === "climb" && group.openCount > 0;
   const builds = (group.endedAt ?? place.until) - group.worst.onset + 1;
-  const decades = open ? (climb.now.decades ?? group.worst.decades) : group.worst.decades;
+  const decades = open ? (climb.decades ?? group.worst.decades) : group.worst.decades;
   return {
     id: `${climb.toldBy.id}-${group.worst.blockId}-${group.worst.worstEntry}`,
     kind: group.kind,
+    jumped: group.jumped,
     state: open ? "open" : "ended",
     lane: place.lane,
     model: group.model,
@@ -36,15 +37,16 @@ export function presentClimb(
       point: block.point,
       row,
       column,
-      decades: climb.now.decades,
+      decades: climb.decades,
     },
     sentence: climbSentence({
       kind: group.kind,
       open,
       jumped: group.jumped,
-      disagrees: open && climb.now.disagrees,
+      beyond: climb.beyond,
       model: group.model,
-      entryCount: group.entryCount,
+      partials: group.entryCount - group.probes.length,
+      probes: group.probes,
       decades,
       builds,
     }),

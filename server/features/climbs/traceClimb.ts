@@ -10,8 +10,7 @@ import type { LaneBuild } from "../../record/laneBuilds.ts";
 import { loadEntrySeries } from "../history/loadEntrySeries.ts";
 import type { EntrySeries } from "../history/loadEntrySeries.ts";
 import type { ClimbsAt } from "./loadClimbs.ts";
-import { worstNow } from "./worstNow.ts";
-import type { WorstNow } from "./worstNow.ts";
+import { loadBeyond } from "./loadBeyond.ts";
 
 /** A climb with what its worst entry's history says of it. */
 export interface TracedClimb {
@@ -19,8 +18,10 @@ export interface TracedClimb {
   readonly block: BlockName;
   readonly row: number;
   readonly column: number;
-  /** What the build that is spoken of says of the worst entry. */
-  readonly now: WorstNow;
+  /** Of the worst entry above its baseline in the build that is spoken of; null where that tells nothing of it. */
+  readonly decades: number | null;
+  /** Entries of it that are past the tolerance there. */
+  readonly beyond: number;
   readonly onset: LaneBuild;
   readonly toldBy: LaneBuild;
   readonly lastCalm: LaneBuild | null;
@@ -63,7 +64,8 @@ export async function traceClimb(
     block,
     row,
     column,
-    now: worstNow(series, chain[until].id),
+    decades: series.drift.get(chain[until].id)?.decades ?? null,
+    beyond: await loadBeyond(reader, group, chain[until].id),
     onset: chain[onset],
     toldBy: chain[told],
     lastCalm,

@@ -3,8 +3,7 @@ import type { Overview } from "../../../shared/schemas/project.ts";
 import type { Reader } from "../../db/reader.ts";
 import { loadClimbsAt } from "../climbs/loadClimbs.ts";
 import { climbSentence } from "../climbs/sentence.ts";
-import { worstNow } from "../climbs/worstNow.ts";
-import type { WorstNow } from "../climbs/worstNow.ts";
+import { loadBeyond } from "../climbs/loadBeyond.ts";
 import { loadEntrySeries } from "../history/loadEntrySeries.ts";
 
 /** Most climbs whose worst entry is looked up; further ones are told with the decades they were found with. */
@@ -25,12 +24,14 @@ export async function climbsAt(
   const rows: Overview["climbs"] = [];
   for (const [at, group] of shown.entries()) {
     const { kind, model, entryCount, openCount, worst } = group;
-    const now = at < MOST_LOOKED_UP ? await lookUp(reader, place, group, chain[until].id) : null;
-    const decades = kind === "jump" ? worst.decades : (now?.decades ?? worst.decades);
+    const now =
+      at < MOST_LOOKED_UP && kind === "climb" ? await decadesNow(reader, place, group, chain[until].id) : null;
+    const decades = now ?? worst.decades;
     const builds = until - worst.onset + 1;
     const { blockId, worstEntry, columns } = worst;
     rows.push({
       kind,
+      jumped: group.jumped,
       model,
       decades,
       builds,
@@ -40,10 +41,11 @@ export async function climbsAt(
         open: openCount > 0,
         jumped: group.jumped,
         model,
-        entryCount,
+        partials: entryCount - group.probes.length,
+        probes: group.probes,
         decades,
         builds,
-        disagrees: now?.disagrees ?? false,
+        beyond: await loadBeyond(reader, group, chain[until].id),
       }),
       onset: chain[worst.onset].sha,
       toldBy: chain[worst.told].sha,
@@ -53,14 +55,14 @@ export async function climbsAt(
   return rows;
 }
 
-async function lookUp(
+async function decadesNow(
   reader: Reader,
   place: { readonly projectId: number; readonly laneId: number },
   { worst }: ClimbGroup,
   buildId: number,
-): Promise<WorstNow> {
+): Promise<number | null> {
   const { blockId, worstEntry, columns } = worst;
   const entry = { row: Math.floor(worstEntry / columns), column: worstEntry % columns };
   const series = await loadEntrySeries(reader, { ...place, blockId, ...entry });
-  return worstNow(series, buildId);
+  return series.drift.get(buildId)?.decades ?? null;
 }

@@ -6,6 +6,7 @@ function rise(more: Partial<DriftRise> = {}): DriftRise {
   return {
     blockId: 1,
     model: "rotor.thrust",
+    probe: "",
     columns: 2,
     kind: "climb",
     onset: 10,

@@ -6,18 +6,24 @@ const facts = {
   open: true,
   jumped: false,
   model: "rotor.thrust",
-  entryCount: 1,
+  partials: 1,
+  probes: [] as readonly string[],
   decades: 1.62,
   builds: 18,
-  disagrees: false,
+  beyond: 0,
 } as const;
 
 it.each([
   ["an open climb", {}, "One partial of rotor.thrust has climbed 1.6 decades over 18 builds, within the tolerance."],
   [
     "one that crossed the tolerance",
-    { entryCount: 2, disagrees: true },
-    "Two partials of rotor.thrust have climbed 1.6 decades over 18 builds, and the worst is past the tolerance.",
+    { partials: 3, beyond: 2 },
+    "Three partials of rotor.thrust have climbed 1.6 decades over 18 builds, two of them past the tolerance by now.",
+  ],
+  [
+    "that of a probe",
+    { partials: 0, probes: ["taylor: seed 7"], beyond: 1 },
+    "Probe taylor: seed 7 of rotor.thrust has climbed 1.6 decades over 18 builds, past the tolerance by now.",
   ],
   [
     "a jump that stayed",
