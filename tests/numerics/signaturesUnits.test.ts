@@ -1,6 +1,7 @@
 /** The dictionary of units against NIST SP 811, appendix B.8, and how a factor is read by it. */
 import { describe, expect, it } from "vitest";
 import { DIMENSIONS, unitOf } from "../../shared/domain/units.ts";
+import { inWords } from "../../shared/numerics/signatures/words.ts";
 import { plainRatio } from "../../shared/numerics/signatures/plainRatio.ts";
 import { UNIT_PAIRS } from "../../shared/numerics/signatures/unitPairs.ts";
 import { piText, plainReadings, unitReadings } from "../../shared/numerics/signatures/unitWords.ts";
@@ -128,12 +129,23 @@ describe("a factor", () => {
       "2/3",
       "3/4",
       "10",
-      "10^-6",
-      "10^3",
+      "10⁻⁶",
+      "10³",
     ]);
     expect([1, 1.8, 7 / 9, 1001, 0, Infinity, NaN].map((factor) => plainRatio(factor, 1e-9))).toEqual(
       new Array<null>(7).fill(null),
     );
+  });
+
+  it("is written with six digits and no trailing zeros, whole numbers whole", () => {
+    expect([57.29577951, 0.5, 360_000, 100, 1.5e9, 2.5e-8].map(inWords)).toEqual([
+      "57.2958",
+      "0.5",
+      "360000",
+      "100",
+      "1.5 × 10⁹",
+      "2.5 × 10⁻⁸",
+    ]);
   });
 
   it("is written with pi where it has one", () => {

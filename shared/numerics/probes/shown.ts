@@ -1,4 +1,7 @@
-/** A relative size in a sentence: two digits, as a power of ten where it is small. Not for numbers to be read back. */
+import { inPowers } from "../../domain/powerOfTen.ts";
+
+/** A relative size in a sentence: two digits, with its power of ten where it is small or large. Not to be read back. */
 export function shown(size: number): string {
-  return size >= 0.01 || size === 0 ? size.toPrecision(2) : size.toExponential(1);
+  const plain = size === 0 || !Number.isFinite(size) || (Math.abs(size) >= 0.01 && Math.abs(size) < 1000);
+  return plain ? String(Number(size.toPrecision(2))) : inPowers(size, 2);
 }

@@ -1,3 +1,4 @@
+import { powerOfTen } from "../../domain/powerOfTen.ts";
 const MOST = 10;
 const MOST_OF_A_FRACTION = 4;
 
@@ -29,5 +30,5 @@ export function plainRatio(factor: number, tolerance: number): string | null {
   for (const [ratio, text] of RATIOS) if (Math.abs(factor / ratio - 1) <= tolerance) return text;
   const exponent = Math.round(Math.log10(factor));
   if (exponent === 0 || !(Math.abs(Math.log10(factor) - exponent) <= LOG_TOLERANCE)) return null;
-  return Math.abs(factor / 10 ** exponent - 1) <= tolerance ? `10^${exponent}` : null;
+  return Math.abs(factor / 10 ** exponent - 1) <= tolerance ? powerOfTen(exponent) : null;
 }

@@ -1,3 +1,4 @@
+import { powerOfTen } from "../../domain/powerOfTen.ts";
 import { isKnown } from "./slack.ts";
 import type { Evidence, Place, SideNames } from "./types.ts";
 
@@ -9,7 +10,9 @@ export function lineName(side: SideNames, size: number, index: number): string {
 
 /** A number as it is said in a sentence: six digits, no trailing zeros. */
 export function inWords(value: number): string {
-  return value.toPrecision(6).replace(/\.?0+(?=e|$)/, "");
+  const [digits, exponent] = value.toPrecision(6).split("e");
+  const short = digits.includes(".") ? digits.replace(/\.?0+$/, "") : digits;
+  return exponent === undefined ? short : `${short} × ${powerOfTen(Number(exponent))}`;
 }
 
 /** `1, 2 and 5`. */

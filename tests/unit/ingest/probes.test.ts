@@ -62,7 +62,7 @@ describe("probes of a block", () => {
     expect(jacobian).not.toHaveProperty("probe");
     expect(jacobian).not.toHaveProperty("probes");
     expect(product?.probe).toMatchObject({ kind: "dot-product", label: "1", verdict: "disagrees", error: 0.25 });
-    expect(product?.probe?.sentence).toBe("forward and reverse differ by 0.25 of their size, 1.0e-10 is allowed");
+    expect(product?.probe?.sentence).toBe("forward and reverse differ by 0.25 of their size, 1.0 × 10⁻¹⁰ is allowed");
     expect(remainder?.probe).toMatchObject({
       kind: "taylor",
       verdict: "agrees",
