@@ -10,7 +10,7 @@ import type { BlockNames, Evidence, NamedSignature, Trial } from "./types.ts";
 
 /** Signatures told of one block. */
 const MOST_TOLD = 20;
-/** Single entries looked at, once neither the block nor its lines explain them. */
+/** More entries that neither the block nor its lines explain are not looked at one by one. */
 const MOST_ENTRIES = 100;
 /** Rows or columns looked at. */
 const MOST_GROUPS = 4096;
@@ -25,8 +25,9 @@ interface Round {
  * What kinds of mistake the entries of a block that disagree or are invalid look like (section 5 of the judging rules).
  *
  * The whole block is tried first, again as long as something explains at least 0.8 of what is left; then its rows or
- * its columns, whichever explains more, and so on with what they leave; then single entries. Each is told of the narrowest place that holds what it
- * explains. A block without a bad entry has none; what nothing explains has none either.
+ * its columns, whichever explains more, and so on with what they leave; then single entries, where few are left. Each
+ * is told of the narrowest place that holds what it explains. A block without a bad entry has none; what nothing
+ * explains has none either.
  *
  * Shapes: as in `judgeBlock`. Units: factors are dimensionless. Throws: never on a judged block.
  * NaN policy: entries that are not finite are told as such; entries without a reference say nothing.
@@ -93,9 +94,11 @@ function nameAll(evidence: Evidence, disagreeing: Int32Array): Finding[] {
     const lines = nameLines(evidence, whole.rest);
     found.push(...whole.found, ...lines.found);
     rest = lines.rest;
-    if (lines.found.length === 0) break;
+    if (lines.found.length === 0 || found.length >= MOST_TOLD) break;
   }
-  const single = Array.from(rest.subarray(0, MOST_ENTRIES), (k) => Int32Array.of(k));
+  // Among very many that nothing explains, one or another looks like something.
+  if (rest.length > MOST_ENTRIES) return found;
+  const single = Array.from(rest, (k) => Int32Array.of(k));
   return [...found, ...nameGroups(evidence, rest, single, "entry of many").found];
 }
 
