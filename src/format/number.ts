@@ -80,3 +80,6 @@ export function percentText(share: number): string {
 }
 
 export const capitalised = (text: string) => text.charAt(0).toUpperCase() + text.slice(1);
+
+/** A sentence whose powers of ten do not break across lines. */
+export const unbroken = (sentence: string) => sentence.replaceAll(" × 10", "\u00a0×\u00a010");

@@ -92,7 +92,7 @@ describe("the probes of a block", () => {
 it("the page of a probe says what it probes, with a way there", async () => {
   const probe = { ...block, probe: "taylor: seed 7", probeOf: "wake-deficit" };
   const { wrapper } = await mountAt(BlockSubject, { block: probe }, HERE);
-  expect(wrapper.text()).toBe("A probe of deficit by spacing at point");
+  expect(wrapper.text()).toBe("A probe of deficit by spacing at point nominal");
   expect(wrapper.find("a").attributes("href")).toContain("/blocks/wake-deficit");
   const alone = await mountAt(BlockSubject, { block: { ...probe, probeOf: null } }, HERE);
   expect(alone.wrapper.text()).toBe("A probe of deficit by spacing, which is probed only, at point");
