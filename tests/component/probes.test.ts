@@ -95,7 +95,7 @@ it("the page of a probe says what it probes, with a way there", async () => {
   expect(wrapper.text()).toBe("A probe of deficit by spacing at point nominal");
   expect(wrapper.find("a").attributes("href")).toContain("/blocks/wake-deficit");
   const alone = await mountAt(BlockSubject, { block: { ...probe, probeOf: null } }, HERE);
-  expect(alone.wrapper.text()).toBe("A probe of deficit by spacing, which is probed only, at point");
+  expect(alone.wrapper.text()).toBe("A probe of deficit by spacing, which is probed only, at point nominal");
 });
 
 describe("the blocks of a build", () => {
