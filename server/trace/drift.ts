@@ -7,13 +7,13 @@ import type { LaneBuild, LaneBuilds } from "../record/laneBuilds.ts";
 import { loadSnapshots } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
 import { chainChange, driftChain } from "./driftChain.ts";
-import { newCourse } from "./driftCourse.ts";
-import type { ChainItem, DriftCourse } from "./driftCourse.ts";
+import { newWalk } from "./driftWalk.ts";
+import type { ChainItem, DriftWalk } from "./driftWalk.ts";
 import { loadDriftParts, PART_ENTRIES, partKey } from "./driftParts.ts";
 import type { DriftPart } from "./driftParts.ts";
 import { loadRestarts, restartOf } from "./driftRestarts.ts";
 import type { Restarts } from "./driftRestarts.ts";
-import { followCourses } from "./followDrift.ts";
+import { followWalks } from "./followDrift.ts";
 
 interface DriftLane {
   readonly projectId: number;
@@ -143,7 +143,7 @@ async function followBlocks(
   ]);
   const rowsOf = groupBy(rows, (row) => row.blockId);
   const lane = await laneName(w, laneId);
-  const courses = blocks.flatMap((block) => {
+  const walks = blocks.flatMap((block) => {
     const snapshotOf = new Map(rowsOf.get(block.blockId)?.map((row) => [row.buildId, row.snapshotId]));
     const items = buildIds.flatMap((buildId): ChainItem[] => {
       const snapshot = snapshots.get(snapshotOf.get(buildId) ?? NaN);
@@ -151,22 +151,22 @@ async function followBlocks(
         ? [{ buildId, snapshot, restart: restartOf(restarts, buildId, { ...block, lane }, snapshot) }]
         : [];
     });
-    return coursesOf({ laneId, blockId: block.blockId }, items, known, snapshots);
+    return walksOf({ laneId, blockId: block.blockId }, items, known, snapshots);
   });
-  await followCourses(w, judge, courses, snapshots);
+  await followWalks(w, judge, walks, snapshots);
 }
 
-function coursesOf(
+function walksOf(
   place: { readonly laneId: number; readonly blockId: number },
   items: readonly ChainItem[],
   known: ReadonlyMap<string, DriftPart>,
   snapshots: ReadonlyMap<number, SnapshotPlanes>,
-): DriftCourse[] {
+): DriftWalk[] {
   return [...groupBy(items, ({ snapshot }) => snapshot.columns)].flatMap(([columns, ofShape]) => {
     const most = ofShape.reduce((size, { snapshot }) => Math.max(size, snapshot.rows * snapshot.columns), 0);
     return Array.from({ length: Math.ceil(most / PART_ENTRIES) }, (_, part) => {
       const placed = { ...place, columns, part };
-      return newCourse(placed, known.get(partKey(placed)) ?? null, ofShape, snapshots);
+      return newWalk(placed, known.get(partKey(placed)) ?? null, ofShape, snapshots);
     });
   });
 }

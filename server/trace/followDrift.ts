@@ -4,8 +4,8 @@ import type { JudgePool } from "../ingest/judgePool.ts";
 import { loadTiles } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
 import { BATCH_ENTRIES, batches } from "./batches.ts";
-import { goOn, isDone } from "./driftCourse.ts";
-import type { DriftCourse, Waiting } from "./driftCourse.ts";
+import { goOn, isDone } from "./driftWalk.ts";
+import type { DriftWalk, Waiting } from "./driftWalk.ts";
 import {
   allPartTiles,
   driftTiles,
@@ -18,26 +18,26 @@ import {
 import type { PlacedPart } from "./driftParts.ts";
 
 /**
- * Follows parts of blocks of one lane through the builds of their courses. Parts are gone through in batches, so that
+ * Follows parts of blocks of one lane through the builds of their walks. Parts are gone through in batches, so that
  * many small blocks cost one task and a few statements, and a large one is held piece by piece.
  */
-export async function followCourses(
+export async function followWalks(
   w: Writer,
   judge: JudgePool,
-  courses: readonly DriftCourse[],
+  walks: readonly DriftWalk[],
   snapshots: ReadonlyMap<number, SnapshotPlanes>,
 ): Promise<void> {
-  for (const batch of batches(courses, sizeOf, BATCH_ENTRIES)) {
+  for (const batch of batches(walks, sizeOf, BATCH_ENTRIES)) {
     const happenings: { place: PlacedPart; happening: DriftHappening }[] = [];
-    for (const course of batch) goOn(course, snapshots);
+    for (const walk of batch) goOn(walk, snapshots);
     for (let busy = waitingOf(batch); busy.length > 0; busy = waitingOf(batch)) {
       const judged = await judge.drifts(await tasksOf(w, busy));
-      busy.forEach((course, at) => {
+      busy.forEach((walk, at) => {
         const { state, quiet, happenings: told } = judged[at];
-        happenings.push(...told.map((happening) => ({ place: course.place, happening })));
-        course.waiting = [];
-        if (course.now !== null) course.now = { ...course.now, state, quiet };
-        goOn(course, snapshots);
+        happenings.push(...told.map((happening) => ({ place: walk.place, happening })));
+        walk.waiting = [];
+        if (walk.now !== null) walk.now = { ...walk.now, state, quiet };
+        goOn(walk, snapshots);
       });
     }
     await storeHappenings(w, happenings);
@@ -48,22 +48,22 @@ export async function followCourses(
   }
 }
 
-function sizeOf({ place, items }: DriftCourse): number {
+function sizeOf({ place, items }: DriftWalk): number {
   return items.reduce((most, { snapshot }) => Math.max(most, entriesInPart(snapshot, place.part)), 0);
 }
 
-function waitingOf(courses: readonly DriftCourse[]): DriftCourse[] {
-  return courses.filter((course) => !isDone(course));
+function waitingOf(walks: readonly DriftWalk[]): DriftWalk[] {
+  return walks.filter((walk) => !isDone(walk));
 }
 
-async function tasksOf(w: Writer, courses: readonly DriftCourse[]): Promise<DriftTask[]> {
+async function tasksOf(w: Writer, walks: readonly DriftWalk[]): Promise<DriftTask[]> {
   const states = await loadDriftStates(
     w,
-    courses.filter(({ now }) => now?.state === "in the record").map(({ place }) => place),
+    walks.filter(({ now }) => now?.state === "in the record").map(({ place }) => place),
   );
   const tiles = await loadTiles(
     w,
-    courses.flatMap(({ waiting, place }) =>
+    walks.flatMap(({ waiting, place }) =>
       waiting.flatMap(({ snapshot }) => (snapshot ? allPartTiles(snapshot, place.part) : [])),
     ),
   );
@@ -71,7 +71,7 @@ async function tasksOf(w: Writer, courses: readonly DriftCourse[]): Promise<Drif
     ...step,
     tiles: snapshot && driftTiles(snapshot, part, tiles),
   });
-  return courses.map(({ place, now, waiting }) => ({
+  return walks.map(({ place, now, waiting }) => ({
     state: now?.state instanceof Uint8Array ? now.state : (states.get(partKey(place)) ?? null),
     steps: waiting.map((step) => stepOf(step, place.part)),
   }));

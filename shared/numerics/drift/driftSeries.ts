@@ -22,7 +22,7 @@ import type { DriftEventKind, DriftItem, DriftPoint } from "./types.ts";
 import { STANDING } from "./types.ts";
 
 /** What is carried from build to build; numbers in decades. */
-interface Course {
+interface Progress {
   /** g of the builds the baseline has learned from. */
   baseline: number[];
   last: number;
@@ -69,25 +69,25 @@ export function driftSeries(
   items: readonly (DriftItem | null)[],
   restartsBefore: ReadonlySet<number>,
 ): (DriftPoint | null)[] {
-  const course: Course = { baseline: [], last: NaN, cusum: 0, climbing: false, calm: 0 };
+  const progress: Progress = { baseline: [], last: NaN, cusum: 0, climbing: false, calm: 0 };
   return items.map((item, k) => {
-    if (restartsBefore.has(k)) Object.assign(course, { baseline: [], cusum: 0, climbing: false, calm: 0 });
-    return item === null ? null : pointOf(item, course);
+    if (restartsBefore.has(k)) Object.assign(progress, { baseline: [], cusum: 0, climbing: false, calm: 0 });
+    return item === null ? null : pointOf(item, progress);
   });
 }
 
-function pointOf(item: DriftItem, course: Course): DriftPoint | null {
+function pointOf(item: DriftItem, progress: Progress): DriftPoint | null {
   const error = relativeError(item.derivative, item.reference, item.floor);
   const standing = standingOf(item.verdict, error, item.resolution);
   const disagrees = item.verdict === VERDICT_CODE.disagrees && error >= 0 && item.resolution < Infinity;
   if (standing === STANDING.silent && !disagrees) return null;
   const g = errorSteps(error, item.resolution) / STEPS_PER_DECADE;
-  const yardstick = yardstickOf(course.baseline);
-  const grown = course.baseline.length >= YOUNG_BUILDS;
-  const event = disagrees ? null : takeBuild(course, yardstick, g, standing === STANDING.beyond);
+  const yardstick = yardstickOf(progress.baseline);
+  const grown = progress.baseline.length >= YOUNG_BUILDS;
+  const event = disagrees ? null : takeBuild(progress, yardstick, g, standing === STANDING.beyond);
   return {
     decades: grown ? g - yardstick.centre : null,
-    cusum: course.cusum,
+    cusum: progress.cusum,
     centre: grown ? yardstick.centre : null,
     spread: grown ? yardstick.spread : null,
     event,
@@ -99,34 +99,34 @@ function yardstickOf(baseline: readonly number[]): Yardstick {
   return { centre: median(baseline), spread, limit: driftLimit(spread) };
 }
 
-function takeBuild(course: Course, yardstick: Yardstick, g: number, beyond: boolean): DriftEventKind | null {
-  const learned = course.baseline.length;
-  const event = learned === 0 ? null : eventOf(course, yardstick, g, beyond);
-  const suspect = course.climbing || course.cusum > SUSPICION;
-  if (learned < BASELINE_BUILDS && !suspect) course.baseline.push(g);
-  course.last = g;
+function takeBuild(progress: Progress, yardstick: Yardstick, g: number, beyond: boolean): DriftEventKind | null {
+  const learned = progress.baseline.length;
+  const event = learned === 0 ? null : eventOf(progress, yardstick, g, beyond);
+  const suspect = progress.climbing || progress.cusum > SUSPICION;
+  if (learned < BASELINE_BUILDS && !suspect) progress.baseline.push(g);
+  progress.last = g;
   return event;
 }
 
-function eventOf(course: Course, yardstick: Yardstick, g: number, beyond: boolean): DriftEventKind | null {
+function eventOf(progress: Progress, yardstick: Yardstick, g: number, beyond: boolean): DriftEventKind | null {
   const drift = g - yardstick.centre;
-  const suspected = course.cusum > SUSPICION;
-  if (course.baseline.length >= YOUNG_BUILDS) {
-    course.cusum = Math.fround(nextCusum(course.cusum, drift / yardstick.spread, beyond));
-    if (course.climbing) {
-      if (ends(course, drift < CALM_SPREADS * yardstick.spread)) return "end";
-    } else if (course.cusum > DECISION_INTERVAL && isHigh(drift, course.last - yardstick.centre, yardstick.limit)) {
-      course.climbing = true;
+  const suspected = progress.cusum > SUSPICION;
+  if (progress.baseline.length >= YOUNG_BUILDS) {
+    progress.cusum = Math.fround(nextCusum(progress.cusum, drift / yardstick.spread, beyond));
+    if (progress.climbing) {
+      if (ends(progress, drift < CALM_SPREADS * yardstick.spread)) return "end";
+    } else if (progress.cusum > DECISION_INTERVAL && isHigh(drift, progress.last - yardstick.centre, yardstick.limit)) {
+      progress.climbing = true;
       return "climb";
     }
   }
-  const rises = g - course.last >= jumpLimit(course.baseline.length, yardstick.spread);
+  const rises = g - progress.last >= jumpLimit(progress.baseline.length, yardstick.spread);
   return beyond && !suspected && rises && drift >= yardstick.limit ? "jump" : null;
 }
 
-function ends(course: Course, calm: boolean): boolean {
-  course.calm = calm ? course.calm + 1 : 0;
-  if (course.calm < CALM_BUILDS) return false;
-  Object.assign(course, { climbing: false, calm: 0, cusum: 0 });
+function ends(progress: Progress, calm: boolean): boolean {
+  progress.calm = calm ? progress.calm + 1 : 0;
+  if (progress.calm < CALM_BUILDS) return false;
+  Object.assign(progress, { climbing: false, calm: 0, cusum: 0 });
   return true;
 }

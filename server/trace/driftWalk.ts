@@ -17,7 +17,7 @@ export interface Waiting extends Omit<DriftStep, "tiles"> {
 }
 
 /** One part of a block on its way through builds. */
-export interface DriftCourse {
+export interface DriftWalk {
   readonly place: PlacedPart;
   readonly items: readonly ChainItem[];
   /** The first item that was not looked at. */
@@ -32,50 +32,50 @@ export interface DriftCourse {
 const MOST_ENTRIES = 4 * PART_ENTRIES;
 const MOST_STEPS = 64;
 
-export function newCourse(
+export function newWalk(
   place: PlacedPart,
   known: DriftPart | null,
   items: readonly ChainItem[],
   snapshots: ReadonlyMap<number, SnapshotPlanes>,
-): DriftCourse {
+): DriftWalk {
   const last = known === null ? null : (snapshots.get(known.lastSnapshotId) ?? null);
   return { place, items, next: 0, now: known, last, waiting: [] };
 }
 
 /** True where nothing waits for the judge. */
-export function isDone({ waiting }: DriftCourse): boolean {
+export function isDone({ waiting }: DriftWalk): boolean {
   return waiting.length === 0;
 }
 
 /**
- * Goes on with the builds of a course until as much waits as one task may hold, or none is left. Builds that repeat
+ * Goes on with the builds of a walk until as much waits as one task may hold, or none is left. Builds that repeat
  * numbers from which nothing can follow are only counted.
  */
-export function goOn(course: DriftCourse, snapshots: ReadonlyMap<number, SnapshotPlanes>): void {
-  const { items, place } = course;
-  while (course.next < items.length && !isFull(course)) {
-    const item = items[course.next];
-    course.next += 1;
-    if (entriesInPart(item.snapshot, place.part) > 0) take(course, item, snapshots);
+export function goOn(walk: DriftWalk, snapshots: ReadonlyMap<number, SnapshotPlanes>): void {
+  const { items, place } = walk;
+  while (walk.next < items.length && !isFull(walk)) {
+    const item = items[walk.next];
+    walk.next += 1;
+    if (entriesInPart(item.snapshot, place.part) > 0) take(walk, item, snapshots);
   }
 }
 
-function take(course: DriftCourse, item: ChainItem, snapshots: ReadonlyMap<number, SnapshotPlanes>): void {
+function take(walk: DriftWalk, item: ChainItem, snapshots: ReadonlyMap<number, SnapshotPlanes>): void {
   const { buildId, snapshot } = item;
-  const { part } = course.place;
-  const { now, last, waiting } = course;
+  const { part } = walk.place;
+  const { now, last, waiting } = walk;
   const restart = withinPart(item.restart, part);
   const same = last !== null && samePart(last, snapshot, part);
   const written = waiting.length > 0;
-  course.last = snapshot;
+  walk.last = snapshot;
   if (now === null || (!written && now.state === "none" && restart === "all")) {
-    course.now = { lastSnapshotId: snapshot.id, repeats: 0, quiet: true, state: "none" };
+    walk.now = { lastSnapshotId: snapshot.id, repeats: 0, quiet: true, state: "none" };
   } else if (!written && same && now.quiet && restart === null) {
-    course.now = { ...now, lastSnapshotId: snapshot.id, repeats: now.repeats + 1 };
+    walk.now = { ...now, lastSnapshotId: snapshot.id, repeats: now.repeats + 1 };
   } else {
     if (!written) waiting.push(...caughtUp(now, buildId, snapshots));
     waiting.push({ buildId, snapshot: same ? null : snapshot, times: 1, restart });
-    course.now = { ...now, lastSnapshotId: snapshot.id, repeats: 0 };
+    walk.now = { ...now, lastSnapshotId: snapshot.id, repeats: 0 };
   }
 }
 
@@ -86,7 +86,7 @@ function caughtUp(now: DriftPart, buildId: number, snapshots: ReadonlyMap<number
   return now.repeats === 0 ? [] : [{ buildId, snapshot: null, times: now.repeats, restart: null }];
 }
 
-function isFull({ waiting, place }: DriftCourse): boolean {
+function isFull({ waiting, place }: DriftWalk): boolean {
   const entries = waiting.reduce((sum, { snapshot }) => sum + (snapshot ? entriesInPart(snapshot, place.part) : 0), 0);
   return waiting.length >= MOST_STEPS || entries >= MOST_ENTRIES;
 }
