@@ -1,4 +1,5 @@
 import { VERDICTS } from "../../shared/domain/vocabulary.ts";
+import type { Verdict } from "../../shared/domain/vocabulary.ts";
 
 /**
  * SQL of what a build says of a block: its own verdicts, or with earlier checks heard where it has a coverage. Columns
@@ -6,8 +7,11 @@ import { VERDICTS } from "../../shared/domain/vocabulary.ts";
  */
 export const JOIN_COVERAGE = "LEFT JOIN coverages v ON v.id = bb.coverageId";
 
+/** One count. */
+export const countSql = (name: Verdict) => `CASE WHEN v.id IS NULL THEN s.${name} ELSE v.counts ->> '$.${name}' END`;
+
 export const COUNTS_SQL = [
   "s.rowCount * s.columnCount AS entries",
-  ...VERDICTS.map((verdict) => `COALESCE(v.counts ->> '$.${verdict}', s.${verdict}) AS ${verdict}`),
+  ...VERDICTS.map((verdict) => `${countSql(verdict)} AS ${verdict}`),
   "COALESCE(v.counts ->> '$.carried', 0) AS carried",
 ].join(", ");

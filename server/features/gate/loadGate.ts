@@ -2,10 +2,9 @@ import type { GatePolicy } from "../../../shared/domain/vocabulary.ts";
 import { decideGate } from "../../../shared/history/decideGate.ts";
 import { nearestJudgedAncestor } from "../../../shared/history/nearestJudgedAncestor.ts";
 import type { GateBlock, GateOutcome } from "../../../shared/history/types.ts";
-import type { VerdictCounts } from "../../../shared/numerics/types.ts";
 import type { Reader } from "../../db/reader.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
-import { COUNTS_SQL, JOIN_COVERAGE } from "../../record/countsSql.ts";
+import { countSql, JOIN_COVERAGE } from "../../record/countsSql.ts";
 import { findLane, loadLaneBuilds } from "../../record/laneBuilds.ts";
 import { loadGateEntries } from "./loadGateEntries.ts";
 import { loadGateRises } from "./loadGateRises.ts";
@@ -71,9 +70,11 @@ async function isReceiving(reader: Reader, laneId: number, sha: string): Promise
 
 async function loadBlocks(reader: Reader, buildId: number): Promise<GateBlockRow[]> {
   type Told = { readonly blockId: number; readonly probe: string; readonly sentence: string | null };
-  type Row = Omit<GateBlockRow, "blockId" | "block" | "bad" | "probe"> & VerdictCounts & Told;
+  type Row = Omit<GateBlockRow, "blockId" | "block" | "probe"> & Told;
   const rows = await reader.select<Row>(
-    `SELECT bb.blockId, bb.snapshotId, b.model, b.output, b.input, b.point, b.probe, ${COUNTS_SQL},
+    `SELECT bb.blockId, bb.snapshotId, b.model, b.output, b.input, b.point, b.probe,
+       s.rowCount * s.columnCount AS entries, ${countSql("unreferenced")} AS unreferenced,
+       ${countSql("unresolved")} AS unresolved, ${countSql("disagrees")} + ${countSql("invalid")} AS bad,
        v.planes AS coveragePlanes,
        CASE WHEN b.probe <> '' THEN
          (SELECT d.details ->> '$.probe.sentence' FROM block_details d WHERE d.id = bb.detailsId) END AS sentence
@@ -83,7 +84,6 @@ async function loadBlocks(reader: Reader, buildId: number): Promise<GateBlockRow
   );
   return rows.map((row) => ({
     ...row,
-    bad: row.disagrees + row.invalid,
     blockId: String(row.blockId),
     block: blockName(row),
     probe: row.probe === "" ? null : { name: row.probe, sentence: row.sentence ?? "" },
