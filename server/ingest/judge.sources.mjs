@@ -3,4 +3,4 @@
 import { register } from "tsx/esm/api";
 
 register();
-export const { posting, motions, coverage, drifts, steps } = await import("./judge.worker.ts");
+export const { posting, motions, coverages, drifts, steps } = await import("./judge.worker.ts");

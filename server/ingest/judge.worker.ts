@@ -1,8 +1,8 @@
 import { move, transferableSymbol, valueSymbol } from "piscina";
 import type { StepStudy } from "../../shared/numerics/steps/types.ts";
 import { collectGarbage } from "./collectGarbage.ts";
-import { judgeCoverage } from "./judgeCoverage.ts";
-import type { CoverageTask, JudgedCoverage } from "./judgeCoverage.ts";
+import { judgeCoverages } from "./judgeCoverage.ts";
+import type { CoverageTask, JudgedCoverages } from "./judgeCoverage.ts";
 import { judgeDrift } from "./judgeDrift.ts";
 import type { DriftTask, JudgedDrift } from "./judgeDrift.ts";
 import { judgeMotions } from "./judgeMotion.ts";
@@ -35,9 +35,9 @@ export function motions(tasks: readonly MotionTask[]): JudgedMotions {
   return handOver(judged, transferListOf(judged.tiles));
 }
 
-export function coverage(task: CoverageTask): JudgedCoverage | null {
-  const judged = judgeCoverage(task);
-  return judged && handOver(judged, transferListOf(judged.tiles));
+export function coverages(tasks: readonly CoverageTask[]): JudgedCoverages {
+  const judged = judgeCoverages(tasks);
+  return handOver(judged, transferListOf(judged.tiles));
 }
 
 export function drifts(tasks: readonly DriftTask[]): readonly JudgedDrift[] {

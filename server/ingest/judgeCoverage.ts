@@ -22,20 +22,28 @@ export interface CoverageCounts extends VerdictCounts {
   readonly oldest: number;
 }
 
-export interface JudgedCoverage {
+export interface BlockCoverage {
   readonly counts: CoverageCounts;
-  readonly tiles: PackedTiles;
   /** The verdict and age planes as indices into the tiles. */
   readonly planes: readonly PlaneTiles<number>[];
 }
 
-/**
- * What a build says of a block once earlier checks are heard, from stored tiles to stored tiles; null where that is
- * what its own numbers say. Pure; runs in a worker.
- */
-export function judgeCoverage(task: CoverageTask): JudgedCoverage | null {
+export interface JudgedCoverages {
+  /** In the order of the tasks; null where the block's own numbers say it all. */
+  readonly coverages: readonly (BlockCoverage | null)[];
+  readonly tiles: PackedTiles;
+}
+
+/** What a build says of some blocks once earlier checks are heard, from stored tiles to stored tiles. Pure; in a worker. */
+export function judgeCoverages(tasks: readonly CoverageTask[]): JudgedCoverages {
+  const tiles = new TileSet();
+  const coverages = tasks.map((task) => judgeCoverage(task, tiles));
+  return { coverages, tiles: tiles.pack() };
+}
+
+function judgeCoverage(task: CoverageTask, tiles: TileSet): BlockCoverage | null {
   const { entries, limit } = task;
-  const bytes = (name: PlaneName, tiles: readonly StoredTile[]) => new Uint8Array(assemble(name, tiles, entries));
+  const bytes = (name: PlaneName, stored: readonly StoredTile[]) => new Uint8Array(assemble(name, stored, entries));
   const before = task.before && {
     verdict: bytes("verdict", task.before.verdict),
     age: task.before.age && bytes("age", task.before.age),
@@ -43,8 +51,6 @@ export function judgeCoverage(task: CoverageTask): JudgedCoverage | null {
   const motion = task.motion && bytes("motion", task.motion);
   const carried = carryVerdicts(bytes("verdict", task.verdict), motion, before, limit);
   if (carried.carried === 0) return null;
-  const tiles = new TileSet();
   const planes = [tiles.addPlane("verdict", carried.verdict), tiles.addPlane("age", carried.age)];
-  const counts = { ...carried.counts, carried: carried.carried, oldest: carried.oldest };
-  return { counts, planes, tiles: tiles.pack() };
+  return { counts: { ...carried.counts, carried: carried.carried, oldest: carried.oldest }, planes };
 }

@@ -1,6 +1,6 @@
 import { Piscina } from "piscina";
 import type { StepStudy } from "../../shared/numerics/steps/types.ts";
-import type { CoverageTask, JudgedCoverage } from "./judgeCoverage.ts";
+import type { CoverageTask, JudgedCoverages } from "./judgeCoverage.ts";
 import type { DriftTask, JudgedDrift } from "./judgeDrift.ts";
 import type { JudgedMotions, MotionTask } from "./judgeMotion.ts";
 import type { Posting, JudgedPosting } from "./judgePosting.ts";
@@ -13,7 +13,7 @@ export interface JudgePool {
   /** Takes the body's memory with it. @throws RejectedPosting */
   posting(task: Posting): Promise<JudgedPosting>;
   motions(tasks: readonly MotionTask[]): Promise<JudgedMotions>;
-  coverage(task: CoverageTask): Promise<JudgedCoverage | null>;
+  coverages(tasks: readonly CoverageTask[]): Promise<JudgedCoverages>;
   /** Results in the order of the tasks. */
   drifts(tasks: readonly DriftTask[]): Promise<readonly JudgedDrift[]>;
   steps(task: StepsTask): Promise<StepStudy>;
@@ -38,7 +38,7 @@ export function createJudgePool(options: { readonly threads: number }): JudgePoo
       return outcome.judged;
     },
     motions: (tasks) => pool.run(tasks, { name: "motions" }) as Promise<JudgedMotions>,
-    coverage: (task) => pool.run(task, { name: "coverage" }) as Promise<JudgedCoverage | null>,
+    coverages: (tasks) => pool.run(tasks, { name: "coverages" }) as Promise<JudgedCoverages>,
     drifts: (tasks) => pool.run(tasks, { name: "drifts" }) as Promise<readonly JudgedDrift[]>,
     steps: (task) => pool.run(task, { name: "steps" }) as Promise<StepStudy>,
     close: () => pool.close(),

@@ -1,17 +1,15 @@
-import { createHash } from "node:crypto";
 import type { CommitGraph } from "../../shared/history/commitGraph.ts";
 import type { Writer } from "../db/write.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
-import type { CoverageTask, JudgedCoverage } from "../ingest/judgeCoverage.ts";
-import { packPlanes, unpackPlanes } from "../ingest/planes.ts";
-import type { PlaneTiles } from "../ingest/planes.ts";
-import { hashKey } from "../ingest/tiles.ts";
-import { unpackTiles } from "../ingest/tileSet.ts";
+import type { StoredTile } from "../ingest/assemble.ts";
+import type { CoverageTask, JudgedCoverages } from "../ingest/judgeCoverage.ts";
+import { unpackPlanes } from "../ingest/planes.ts";
 import { storeSummary } from "../record/buildSummary.ts";
 import type { LaneBuild } from "../record/laneBuilds.ts";
 import { loadTiles, tilesOf } from "../record/readPlanes.ts";
-import { idsByHash, storeTiles } from "../record/storeTiles.ts";
+import { nameTold, storeToldPlanes } from "../record/storeToldPlanes.ts";
 import type { Rebased } from "./baselines.ts";
+import { BATCH_ENTRIES, batches } from "./batches.ts";
 
 /** A block that its build did not check as a whole, with what the build before says of it. */
 interface PartlyChecked {
@@ -58,20 +56,22 @@ async function updateBuild(
   limit: number,
 ): Promise<boolean> {
   const blocks = await loadPartlyChecked(w, buildId, baselineId);
-  let changed = false;
-  for (const block of blocks) {
-    const coverage = block.before === null ? null : await judge.coverage(await taskOf(w, block, limit));
-    const coverageId = coverage && (await storeCoverage(w, coverage));
-    if (coverageId === block.coverageId) continue;
-    await w.run("UPDATE build_blocks SET coverageId = $3 WHERE buildId = $1 AND blockId = $2", [
-      buildId,
-      block.blockId,
-      coverageId,
-    ]);
-    changed = true;
+  const told = new Map<number, number | null>(blocks.map(({ blockId }) => [blockId, null]));
+  const followed = blocks.filter(({ before }) => before !== null);
+  for (const batch of batches(followed, ({ entries }) => entries, BATCH_ENTRIES)) {
+    const ids = await storeCoverages(w, await judge.coverages(await loadTasks(w, batch, limit)));
+    batch.forEach(({ blockId }, at) => told.set(blockId, ids[at]));
   }
-  if (changed) await storeSummary(w, buildId);
-  return changed;
+  const changed = blocks.filter(({ blockId, coverageId }) => told.get(blockId) !== coverageId);
+  if (changed.length === 0) return false;
+  await nameTold(
+    w,
+    "coverageId",
+    buildId,
+    changed.map(({ blockId }) => [blockId, told.get(blockId) ?? null] as const),
+  );
+  await storeSummary(w, buildId);
+  return true;
 }
 
 function loadPartlyChecked(w: Writer, buildId: number, baselineId: number | null): Promise<PartlyChecked[]> {
@@ -87,44 +87,42 @@ function loadPartlyChecked(w: Writer, buildId: number, baselineId: number | null
   );
 }
 
-async function taskOf(w: Writer, block: PartlyChecked, limit: number): Promise<CoverageTask> {
-  const now = unpackPlanes(block.planes);
-  const motion = block.motion && unpackPlanes(block.motion);
-  const carried = block.coverageBefore && unpackPlanes(block.coverageBefore);
-  const before = carried ?? unpackPlanes(block.before as Buffer);
-  const ids = {
-    verdict: tilesOf(now, "verdict"),
-    motion: motion && tilesOf(motion, "motion"),
-    verdictBefore: tilesOf(before, "verdict"),
-    ageBefore: carried && tilesOf(carried, "age"),
-  };
+async function loadTasks(w: Writer, blocks: readonly PartlyChecked[], limit: number): Promise<CoverageTask[]> {
+  const wanted = blocks.map((block) => {
+    const carried = block.coverageBefore && unpackPlanes(block.coverageBefore);
+    const before = carried ?? unpackPlanes(block.before as Buffer);
+    return {
+      entries: block.entries,
+      verdict: tilesOf(unpackPlanes(block.planes), "verdict"),
+      motion: block.motion && tilesOf(unpackPlanes(block.motion), "motion"),
+      verdictBefore: tilesOf(before, "verdict"),
+      ageBefore: carried && tilesOf(carried, "age"),
+    };
+  });
   const tiles = await loadTiles(
     w,
-    Object.values(ids).flatMap((list) => list ?? []),
+    wanted.flatMap(({ verdict, motion, verdictBefore, ageBefore }) => [
+      ...verdict,
+      ...(motion ?? []),
+      ...verdictBefore,
+      ...(ageBefore ?? []),
+    ]),
   );
-  const take = (list: readonly number[]) => list.map((id) => tiles.get(id) as CoverageTask["verdict"][number]);
-  return {
-    entries: block.entries,
-    verdict: take(ids.verdict),
-    motion: ids.motion && take(ids.motion),
-    before: { verdict: take(ids.verdictBefore), age: ids.ageBefore && take(ids.ageBefore) },
+  const take = (list: readonly number[]) => list.map((id) => tiles.get(id) as StoredTile);
+  return wanted.map(({ entries, verdict, motion, verdictBefore, ageBefore }) => ({
+    entries,
+    verdict: take(verdict),
+    motion: motion && take(motion),
+    before: { verdict: take(verdictBefore), age: ageBefore && take(ageBefore) },
     limit,
-  };
+  }));
 }
 
-async function storeCoverage(w: Writer, { counts, planes, tiles }: JudgedCoverage): Promise<number> {
-  const hashes = unpackTiles(tiles).map((tile) => tile.hash);
-  const digest = createHash("sha256");
-  for (const tile of planes.flatMap((plane) => plane.tiles)) digest.update(hashes[tile]);
-  const hash = digest.digest();
-  const known = (await idsByHash(w, "coverages", [hash])).get(hashKey(hash));
-  if (known !== undefined) return known;
-  const ids = await storeTiles(w, tiles);
-  const stored = planes.map((plane): PlaneTiles<number> => ({ ...plane, tiles: plane.tiles.map((tile) => ids[tile]) }));
-  await w.insertOrIgnore(
-    "coverages",
-    ["hash", "planes", "counts"],
-    [[hash, packPlanes(stored), JSON.stringify(counts)]],
+/** Ids in the order of the coverages, null where there is none. */
+async function storeCoverages(w: Writer, { coverages, tiles }: JudgedCoverages): Promise<(number | null)[]> {
+  const told = coverages.flatMap((coverage) =>
+    coverage === null ? [] : [{ planes: coverage.planes, beside: "", columns: [JSON.stringify(coverage.counts)] }],
   );
-  return (await idsByHash(w, "coverages", [hash])).get(hashKey(hash)) as number;
+  const ids = (await storeToldPlanes(w, "coverages", ["counts"], told, tiles)).values();
+  return coverages.map((coverage) => (coverage === null ? null : (ids.next().value ?? null)));
 }

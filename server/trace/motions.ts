@@ -1,14 +1,10 @@
-import { createHash } from "node:crypto";
 import type { Writer } from "../db/write.ts";
 import type { JudgePool } from "../ingest/judgePool.ts";
 import { allStill } from "../ingest/judgeMotion.ts";
-import type { BlockMotion, JudgedMotions } from "../ingest/judgeMotion.ts";
-import { packPlanes } from "../ingest/planes.ts";
-import { hashKey } from "../ingest/tiles.ts";
-import { unpackTiles } from "../ingest/tileSet.ts";
+import type { JudgedMotions } from "../ingest/judgeMotion.ts";
 import { loadSnapshots, tilesOf } from "../record/readPlanes.ts";
 import type { SnapshotPlanes } from "../record/readPlanes.ts";
-import { idsByHash, storeTiles } from "../record/storeTiles.ts";
+import { nameTold, storeToldPlanes } from "../record/storeToldPlanes.ts";
 import type { Rebased } from "./baselines.ts";
 import { BATCH_ENTRIES, batches } from "./batches.ts";
 import { loadMotionTasks } from "./motionTasks.ts";
@@ -44,12 +40,7 @@ export async function updateMotions(w: Writer, judge: JudgePool, rebased: Rebase
     stillByShape.set(entries, motionId);
     told.push([blockId, motionId]);
   }
-  await w.run(
-    `UPDATE build_blocks SET motionId = t.motionId
-     FROM (SELECT value ->> 0 AS blockId, value ->> 1 AS motionId FROM json_each($2)) t
-     WHERE build_blocks.buildId = $1 AND build_blocks.blockId = t.blockId`,
-    [buildId, JSON.stringify(told)],
-  );
+  await nameTold(w, "motionId", buildId, told);
 }
 
 /** Blocks of both builds that have the same shape in both. */
@@ -82,40 +73,11 @@ function sameNumbers(now: SnapshotPlanes, before: SnapshotPlanes): boolean {
   );
 }
 
-/** Ids of the motions, in their order; equal ones are stored once. */
-async function storeMotions(w: Writer, { motions, tiles }: JudgedMotions): Promise<number[]> {
-  const tileHashes = unpackTiles(tiles).map((tile) => tile.hash);
-  const digests = motions.map((motion) => digestOf(motion, tileHashes));
-  const known = await idsByHash(w, "motions", digests);
-  const fresh = motions.flatMap((motion, at) =>
-    known.has(hashKey(digests[at])) ? [] : [{ motion, hash: digests[at] }],
-  );
-  if (fresh.length > 0) {
-    const tileIds = await storeTiles(w, tiles);
-    await w.insertOrIgnore(
-      "motions",
-      ["hash", "planes", "counts", "leftBehind"],
-      fresh.map(({ motion, hash }) => {
-        const plane = {
-          name: "motion",
-          reference: 0,
-          step: 0,
-          tiles: motion.plane.map((tile) => tileIds[tile]),
-        } as const;
-        return [hash, packPlanes([plane]), JSON.stringify(motion.counts), behindText(motion)];
-      }),
-    );
-  }
-  const ids = fresh.length === 0 ? known : await idsByHash(w, "motions", digests);
-  return digests.map((digest) => ids.get(hashKey(digest)) as number);
-}
-
-function digestOf(motion: BlockMotion, tileHashes: readonly Buffer[]): Buffer {
-  const hash = createHash("sha256");
-  for (const tile of motion.plane) hash.update(tileHashes[tile]);
-  return hash.update(behindText(motion) ?? "").digest();
-}
-
-function behindText({ leftBehind }: BlockMotion): string | null {
-  return leftBehind && JSON.stringify(leftBehind);
+function storeMotions(w: Writer, { motions, tiles }: JudgedMotions): Promise<number[]> {
+  const told = motions.map(({ counts, leftBehind, plane }) => {
+    const behind = leftBehind && JSON.stringify(leftBehind);
+    const planes = [{ name: "motion", reference: 0, step: 0, tiles: plane } as const];
+    return { planes, beside: behind ?? "", columns: [JSON.stringify(counts), behind] };
+  });
+  return storeToldPlanes(w, "motions", ["counts", "leftBehind"], told, tiles);
 }
