@@ -171,11 +171,14 @@ function walksOf(
   });
 }
 
-function blocksOf(w: Writer, buildIds: readonly number[]): Promise<NamedBlock[]> {
-  return w.select<NamedBlock>(
-    `SELECT id AS blockId, model, output, input, point, probe FROM blocks
-     WHERE id IN (SELECT blockId FROM build_blocks WHERE buildId IN (SELECT value FROM json_each($1))) ORDER BY id`,
+async function blocksOf(w: Writer, buildIds: readonly number[]): Promise<NamedBlock[]> {
+  const rows = await w.select<{ blockId: number }>(
+    "SELECT DISTINCT blockId FROM build_blocks WHERE buildId IN (SELECT value FROM json_each($1))",
     [JSON.stringify(buildIds)],
+  );
+  return namesOf(
+    w,
+    rows.map((row) => row.blockId),
   );
 }
 

@@ -19,22 +19,30 @@ export interface RisingSuspects {
 const RISE_WEIGHT = 8;
 
 /**
- * Suspects of a climb or jump: the commits that came after the last calm build, up to the one that told it. They are
- * scored like those of a break, and by the share of the rise that the build of the commit shows; commits between two
- * builds share theirs. The next test halves the stretch between the two builds with the largest rise.
- *
- * `calm` null: nothing before is known, so every ancestor of `told` is suspect. `steps` in commit order.
+ * Commits that came after the last calm build, up to the one that told a rise, in no order. `calm` null: nothing before
+ * is known, so every ancestor of `told` is among them.
+ */
+export function risingRange(
+  graph: CommitGraph,
+  { calm, told }: { readonly calm: string | null; readonly told: string },
+): string[] {
+  const cleared = calm === null ? new Set<string>() : graph.ancestors(calm);
+  return [...graph.ancestors(told)].filter((sha) => !cleared.has(sha));
+}
+
+/**
+ * Suspects of a climb or jump, those of `risingRange`: scored like those of a break, and by the share of the rise that
+ * the build of the commit shows; commits between two builds share theirs. The next test halves the stretch between the
+ * two builds with the largest rise. `steps` in commit order.
  */
 export function risingSuspects(
   graph: CommitGraph,
-  range: { readonly calm: string | null; readonly told: string },
+  suspects: readonly string[],
   steps: readonly RiseStep[],
   factsOf: (sha: string) => Omit<SuspectFacts, "containedInGood">,
   context: ScoreContext,
   built: { has(sha: string): boolean },
 ): RisingSuspects {
-  const cleared = range.calm === null ? new Set<string>() : graph.ancestors(range.calm);
-  const suspects = [...graph.ancestors(range.told)].filter((sha) => !cleared.has(sha));
   const stretches = stretchesOf(graph, suspects, steps);
   const total = steps.reduce((sum, step) => sum + Math.max(0, step.decades), 0);
   const plain = scoreSuspects(

@@ -6,7 +6,7 @@ import type { Route } from "../../http/defineRoute.ts";
 import { NotFound } from "../../http/problem.ts";
 import { pageRequest, pageSlice } from "../../http/paging.ts";
 import { loadGraph } from "../../record/commitGraph.ts";
-import { findLane } from "../../record/laneBuilds.ts";
+import { findLane, loadLaneBuilds } from "../../record/laneBuilds.ts";
 import { loadClimbsAt } from "./loadClimbs.ts";
 import { presentClimb } from "./present.ts";
 import { traceClimb } from "./traceClimb.ts";
@@ -28,17 +28,18 @@ export const routes: Route[] = [
       const laneId = await findLane(context.db, project.id, lane);
       if (laneId === null) return { items: [], next: null };
       const at = query.at ?? null;
-      if (at !== null && !(await loadGraph(context.db, project.id)).graph.has(at)) {
-        throw new NotFound(`Commit ${at} is not known.`);
-      }
-      const found = await loadClimbsAt(context.db, project.id, laneId, at);
+      const history = await loadGraph(context.db, project.id);
+      if (at !== null && !history.graph.has(at)) throw new NotFound(`Commit ${at} is not known.`);
+      const builds = await loadLaneBuilds(context.db, laneId);
+      const ofLane = { projectId: project.id, laneId, project: history, builds };
+      const found = await loadClimbsAt(context.db, ofLane, at);
       const state = query.state ?? "open";
       const chosen = found.groups.filter((group) => state === "all" || group.openCount > 0 === (state === "open"));
       const { items, next } = pageSlice(chosen, pageRequest(query), (group) => group);
       const place = { lane, until: found.until, commitUrl: project.commitUrl ?? null };
       const rows = [];
       for (const group of items) {
-        const traced = await traceClimb(context.db, { projectId: project.id, laneId }, group, found);
+        const traced = await traceClimb(context.db, ofLane, group, found);
         rows.push(presentClimb(traced, place));
       }
       return { items: rows, next };

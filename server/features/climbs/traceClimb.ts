@@ -1,6 +1,6 @@
 import type { BlockName } from "../../../shared/domain/selector.ts";
 import type { ClimbGroup } from "../../../shared/history/groupClimbs.ts";
-import { risingSuspects } from "../../../shared/history/risingSuspects.ts";
+import { risingRange, risingSuspects } from "../../../shared/history/risingSuspects.ts";
 import type { RiseStep, RisingSuspects } from "../../../shared/history/risingSuspects.ts";
 import type { Reader } from "../../db/reader.ts";
 import type { BlockDetails } from "../../ingest/blockDetails.ts";
@@ -9,7 +9,7 @@ import type { CommitFacts } from "../../record/commitFacts.ts";
 import type { LaneBuild } from "../../record/laneBuilds.ts";
 import { loadEntrySeries } from "../history/loadEntrySeries.ts";
 import type { EntrySeries } from "../history/loadEntrySeries.ts";
-import type { ClimbsAt } from "./loadClimbs.ts";
+import type { ClimbLane, ClimbsAt } from "./loadClimbs.ts";
 import { loadBeyond } from "./loadBeyond.ts";
 
 /** A climb with what its worst entry's history says of it. */
@@ -32,19 +32,26 @@ export interface TracedClimb {
 
 export async function traceClimb(
   reader: Reader,
-  place: { readonly projectId: number; readonly laneId: number },
+  lane: ClimbLane,
   group: ClimbGroup,
-  { chain, until, project, builds }: ClimbsAt,
+  { chain, until }: Pick<ClimbsAt, "chain" | "until">,
 ): Promise<TracedClimb> {
   const { blockId, columns, worstEntry, onset, told } = group.worst;
   const row = Math.floor(worstEntry / columns);
   const column = worstEntry % columns;
-  const series = await loadEntrySeries(reader, { ...place, blockId, row, column });
+  const series = await loadEntrySeries(reader, {
+    projectId: lane.projectId,
+    laneId: lane.laneId,
+    blockId,
+    row,
+    column,
+  });
   const lastCalm = calmBefore(chain, series, onset);
   const within = (build: LaneBuild, at: number) => at >= onset && at <= told && holds(series, build);
   const steps = risesOf(series, chain.filter(within), lastCalm);
-  const suspects = [...project.graph.ancestors(chain[told].sha)];
-  const commits = await loadCommitFacts(reader, place.projectId, suspects);
+  const { graph } = lane.project;
+  const suspects = risingRange(graph, { calm: lastCalm?.sha ?? null, told: chain[told].sha });
+  const commits = await loadCommitFacts(reader, lane.projectId, suspects);
   const [{ details, ...block }] = await reader.select<BlockName & { details: string }>(
     `SELECT b.model, b.output, b.input, b.point, b.probe, d.details FROM blocks b
      JOIN build_blocks bb ON bb.blockId = b.id AND bb.buildId = $2 JOIN block_details d ON d.id = bb.detailsId
@@ -58,7 +65,6 @@ export async function traceClimb(
     isOnset: false,
   });
   const context = { models: [group.model], sources: (JSON.parse(details) as BlockDetails).sources, motion: null };
-  const range = { calm: lastCalm?.sha ?? null, told: chain[told].sha };
   return {
     group,
     block,
@@ -70,7 +76,7 @@ export async function traceClimb(
     toldBy: chain[told],
     lastCalm,
     endedBy: group.endedAt === null || group.kind === "jump" ? null : chain[group.endedAt],
-    traced: risingSuspects(project.graph, range, steps, factsOf, context, builds.speaking),
+    traced: risingSuspects(graph, suspects, steps, factsOf, context, lane.builds.speaking),
     commits,
   };
 }

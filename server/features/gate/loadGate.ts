@@ -39,7 +39,8 @@ export async function loadGate(reader: Reader, question: GateQuestion, now: numb
   const { project, lane, commit } = question;
   const { policy } = project;
   const laneId = await findLane(reader, project.id, lane);
-  const { graph, mainline } = await loadGraph(reader, project.id);
+  const history = await loadGraph(reader, project.id);
+  const { graph, mainline } = history;
   const { speaking } = laneId === null ? { speaking: new Map<string, never>() } : await loadLaneBuilds(reader, laneId);
   const onMainline = (sha: string) => mainline.has(sha) && speaking.has(sha);
   const base = question.base ?? nearestJudgedAncestor(graph, commit, onMainline);
@@ -54,7 +55,12 @@ export async function loadGate(reader: Reader, question: GateQuestion, now: numb
   const baseBlocks = baseId === null ? [] : await loadBlocks(reader, baseId);
   const place = { projectId: project.id, lane, laneId, commit };
   const bad = await loadGateEntries(reader, place, head, baseBlocks, now);
-  const rises = await loadGateRises(reader, place, base, head);
+  const rises = await loadGateRises(
+    reader,
+    { projectId: project.id, laneId, project: history, builds: { speaking } },
+    { commit, base },
+    head,
+  );
   const outcome = decideGate({ lane, commit, base, state: "complete", head, baseBlocks, bad, rises, policy });
   return { ...outcome, base, buildId: headId };
 }

@@ -2,6 +2,7 @@ import type { ClimbGroup } from "../../../shared/history/groupClimbs.ts";
 import type { Overview } from "../../../shared/schemas/project.ts";
 import type { Reader } from "../../db/reader.ts";
 import { loadClimbsAt } from "../climbs/loadClimbs.ts";
+import type { ClimbLane } from "../climbs/loadClimbs.ts";
 import { climbSentence } from "../climbs/sentence.ts";
 import { loadBeyond } from "../climbs/loadBeyond.ts";
 import { loadEntrySeries } from "../history/loadEntrySeries.ts";
@@ -10,22 +11,15 @@ import { loadEntrySeries } from "../history/loadEntrySeries.ts";
 const MOST_LOOKED_UP = 12;
 
 /** What creeps as seen from a commit: open climbs, and jumps that its own build told. */
-export async function climbsAt(
-  reader: Reader,
-  place: { readonly projectId: number; readonly laneId: number },
-  commit: string,
-): Promise<Overview["climbs"]> {
-  const told = await reader.select("SELECT 1 FROM drift_events WHERE laneId = $1 LIMIT 1", [place.laneId]);
-  if (told.length === 0) return [];
-  const { groups, chain, until } = await loadClimbsAt(reader, place.projectId, place.laneId, commit);
+export async function climbsAt(reader: Reader, lane: ClimbLane, commit: string): Promise<Overview["climbs"]> {
+  const { groups, chain, until } = await loadClimbsAt(reader, lane, commit);
   const shown = groups.filter(({ kind, openCount, worst }) =>
     kind === "climb" ? openCount > 0 : chain[worst.told].sha === commit,
   );
   const rows: Overview["climbs"] = [];
   for (const [at, group] of shown.entries()) {
     const { kind, model, entryCount, openCount, worst } = group;
-    const now =
-      at < MOST_LOOKED_UP && kind === "climb" ? await decadesNow(reader, place, group, chain[until].id) : null;
+    const now = at < MOST_LOOKED_UP && kind === "climb" ? await decadesNow(reader, lane, group, chain[until].id) : null;
     const decades = now ?? worst.decades;
     const builds = until - worst.onset + 1;
     const { blockId, worstEntry, columns } = worst;
@@ -57,12 +51,12 @@ export async function climbsAt(
 
 async function decadesNow(
   reader: Reader,
-  place: { readonly projectId: number; readonly laneId: number },
+  { projectId, laneId }: ClimbLane,
   { worst }: ClimbGroup,
   buildId: number,
 ): Promise<number | null> {
   const { blockId, worstEntry, columns } = worst;
   const entry = { row: Math.floor(worstEntry / columns), column: worstEntry % columns };
-  const series = await loadEntrySeries(reader, { ...place, blockId, ...entry });
+  const series = await loadEntrySeries(reader, { projectId, laneId, blockId, ...entry });
   return series.drift.get(buildId)?.decades ?? null;
 }

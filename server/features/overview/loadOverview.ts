@@ -46,7 +46,10 @@ export async function loadOverview(reader: Reader, wanted: OverviewWanted, now: 
   const waived = await loadWaived(reader, ofLane, await loadActiveWaivers(reader, projectId, now));
   const breaks = breaksAt(project, ofLane, waived, commit);
   const vanishedBlocks = build && baselineId !== null ? await loadVanished(reader, build.id, baselineId) : [];
-  const climbs = laneId === null || commit === null ? [] : await climbsAt(reader, { projectId, laneId }, commit);
+  const climbs =
+    laneId === null || commit === null
+      ? []
+      : await climbsAt(reader, { projectId, laneId, project, builds: { speaking } }, commit);
   return {
     lane,
     commit,

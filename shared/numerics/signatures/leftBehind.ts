@@ -1,4 +1,4 @@
-import { VERDICT_CODE } from "../../domain/vocabulary.ts";
+import { isBadVerdict, VERDICT_CODE } from "../../domain/vocabulary.ts";
 import { explain } from "./explain.ts";
 import { countingOf, placeOf } from "./place.ts";
 import { isWithin, slackOf } from "./slack.ts";
@@ -35,7 +35,7 @@ export function leftBehind(
 ): NamedSignature | null {
   checkLengths(now, before, rows * columns);
   const evidence: Evidence = { ...now, rows, columns, rtol, names };
-  const bad = entriesWhere(now.verdict, (code) => code === VERDICT_CODE.disagrees || code === VERDICT_CODE.invalid);
+  const bad = entriesWhere(now.verdict, isBadVerdict);
   const moved = bad.filter((k) => {
     const change = Math.abs(now.reference[k] - before.reference[k]);
     return now.verdict[k] === VERDICT_CODE.disagrees && change > slackOf(evidence, k);

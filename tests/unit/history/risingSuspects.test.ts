@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { CommitGraph } from "../../../shared/history/commitGraph.ts";
-import { risingSuspects } from "../../../shared/history/risingSuspects.ts";
+import { risingRange, risingSuspects } from "../../../shared/history/risingSuspects.ts";
 
 const line = CommitGraph.from(
   "abcdefgh"
@@ -13,7 +13,7 @@ const shasOf = ({ suspects }: ReturnType<typeof risingSuspects>) => suspects.map
 
 describe("suspects of a rise", () => {
   it("are the commits after the last calm build, up to the one that told it", () => {
-    const found = risingSuspects(line, { calm: "c", told: "f" }, [], plainFacts, context, new Set());
+    const found = risingSuspects(line, risingRange(line, { calm: "c", told: "f" }), [], plainFacts, context, new Set());
     expect(shasOf(found).sort()).toEqual(["d", "e", "f"]);
     expect(found.suspects.reduce((sum, { score }) => sum + score, 0)).toBeCloseTo(1, 12);
   });
@@ -24,7 +24,14 @@ describe("suspects of a rise", () => {
       { sha: "e", decades: 0.9 },
       { sha: "f", decades: 0.2 },
     ];
-    const found = risingSuspects(line, { calm: "c", told: "f" }, steps, plainFacts, context, new Set(["d", "e", "f"]));
+    const found = risingSuspects(
+      line,
+      risingRange(line, { calm: "c", told: "f" }),
+      steps,
+      plainFacts,
+      context,
+      new Set(["d", "e", "f"]),
+    );
     expect(shasOf(found)).toEqual(["e", "f", "d"]);
     expect(found.suspects[0]?.why[0]).toBe("the error rose by 0.9 decades in its build");
     expect(found.nextTest).toBeNull();
@@ -35,7 +42,14 @@ describe("suspects of a rise", () => {
       { sha: "b", decades: 0.1 },
       { sha: "g", decades: 1 },
     ];
-    const found = risingSuspects(line, { calm: "a", told: "g" }, steps, plainFacts, context, new Set(["a", "b", "g"]));
+    const found = risingSuspects(
+      line,
+      risingRange(line, { calm: "a", told: "g" }),
+      steps,
+      plainFacts,
+      context,
+      new Set(["a", "b", "g"]),
+    );
     expect(found.suspects[0]?.why[0]).toBe("the error rose by 1.0 decade over the 5 commits around it");
     expect(["d", "e"]).toContain(found.nextTest?.commit);
   });
@@ -45,14 +59,16 @@ describe("suspects of a rise", () => {
       ...plainFacts(sha),
       changedPaths: sha === "d" ? ["src/rotor/thrust.f90"] : ["a.md"],
     });
-    expect(shasOf(risingSuspects(line, { calm: "b", told: "f" }, [], facts, context, new Set()))[0]).toBe("d");
+    expect(
+      shasOf(risingSuspects(line, risingRange(line, { calm: "b", told: "f" }), [], facts, context, new Set()))[0],
+    ).toBe("d");
   });
 
   it("are all ancestors where nothing before is known", () => {
-    expect(shasOf(risingSuspects(line, { calm: null, told: "c" }, [], plainFacts, context, new Set())).sort()).toEqual([
-      "a",
-      "b",
-      "c",
-    ]);
+    expect(
+      shasOf(
+        risingSuspects(line, risingRange(line, { calm: null, told: "c" }), [], plainFacts, context, new Set()),
+      ).sort(),
+    ).toEqual(["a", "b", "c"]);
   });
 });
