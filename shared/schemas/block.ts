@@ -19,13 +19,16 @@ export const worst = z
 
 export const motionCounts = z
   .object({
-    still: z.number(),
-    together: z.number(),
-    "derivative-only": z.number(),
-    "model-only": z.number(),
-    apart: z.number(),
+    still: z.number().int(),
+    together: z.number().int(),
+    "derivative-only": z.number().int(),
+    "model-only": z.number().int(),
+    apart: z.number().int(),
   })
   .meta({ id: "MotionCounts" });
+
+/** Entries that a build did not check and that keep an earlier verdict, and the age of the oldest in builds. */
+export const carried = z.object({ entries: z.number().int(), oldest: z.number().int() }).meta({ id: "Carried" });
 
 const side = z
   .object({
@@ -78,8 +81,7 @@ export const blockRow = z
     rows: z.number().int(),
     columns: z.number().int(),
     counts,
-    /** Entries that this build did not check and that keep an earlier verdict, and the age of the oldest in builds. */
-    carried: z.object({ entries: z.number().int(), oldest: z.number().int() }).nullable(),
+    carried: carried.nullable(),
     rtol: z.number(),
     floor: z.number(),
     /** Largest finite resolution over the entries: what the weakest reference could see. */

@@ -2,7 +2,7 @@ import { z } from "zod";
 import { BREAK_STATES, MOTIONS, SIGNATURE_SCOPES, SIGNATURES, VERDICTS } from "../domain/vocabulary.ts";
 import { id, laneName, pageQuery, sha, timestamp, wireNumber } from "./common.ts";
 
-const commitBuild = z.object({ commit: sha, buildId: id }).meta({ id: "CommitBuild" });
+export const commitBuild = z.object({ commit: sha, buildId: id }).meta({ id: "CommitBuild" });
 const abilities = z.record(z.string(), z.boolean());
 
 /** A break in the answer to a posting. */
@@ -25,6 +25,9 @@ export const signature = z
   })
   .meta({ id: "Signature", description: "A recognised kind of mistake." });
 export type Signature = z.infer<typeof signature>;
+
+/** Why an onset has the suspects it has. */
+export const onsetKind = z.enum(["after-good", "since-first-check", "fixed-between"]);
 
 export const suspect = z
   .object({
@@ -87,7 +90,7 @@ export const breakRow = z
     onsetSubject: z.string().nullable(),
     onsetAuthor: z.string().nullable(),
     lastGood: commitBuild.nullable(),
-    kind: z.enum(["after-good", "since-first-check", "fixed-between"]),
+    kind: onsetKind,
     suspectCount: z.number().int(),
     entryCount: z.number().int(),
     models: z.array(z.string()),

@@ -1,8 +1,6 @@
 import { z } from "zod";
-import { suspect, nextTest } from "./break.ts";
+import { commitBuild, nextTest, suspect } from "./break.ts";
 import { id, laneName, pageQuery, sha } from "./common.ts";
-
-const commitBuild = z.object({ commit: sha, buildId: id });
 
 /** A rise that the tolerance does not see: slow (climb) or in one build (jump). */
 export const climb = z

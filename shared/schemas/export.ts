@@ -1,14 +1,17 @@
 import { z } from "zod";
-import { BREAK_STATES, MOTIONS, SIGNATURES, VERDICTS, WAIVER_STATES } from "../domain/vocabulary.ts";
+import { BREAK_STATES, MOTIONS } from "../domain/vocabulary.ts";
+import { baseline } from "./baseline.ts";
+import { carried, motionCounts, worst } from "./block.ts";
+import { onsetKind, signature } from "./break.ts";
 import { counts } from "./build.ts";
 import { id, laneName, sha, slug, timestamp, wireNumber } from "./common.ts";
-import { selector } from "./waiver.ts";
+import { waiver } from "./waiver.ts";
 
 export const EXPORT_KINDS = ["builds", "breaks", "waivers", "baselines"] as const;
 export type ExportKind = (typeof EXPORT_KINDS)[number];
 export const EXPORT_FORMATS = ["json", "csv"] as const;
 
-const signature = z.object({ code: z.enum(SIGNATURES), share: z.number(), detail: z.string() });
+const exportedSignature = signature.pick({ code: true, share: true, detail: true });
 
 /** One block in one complete build. */
 export const exportedBlock = z
@@ -31,33 +34,14 @@ export const exportedBlock = z
     rows: z.number().int(),
     columns: z.number().int(),
     counts,
-    /** Entries that an earlier build checked, counted with its verdict, and the builds since the oldest such check. */
-    carried: z.object({ entries: z.number().int(), oldest: z.number().int() }).nullable(),
-    worst: z
-      .object({
-        row: z.number().int(),
-        column: z.number().int(),
-        verdict: z.enum(VERDICTS),
-        error: wireNumber.nullable(),
-        derivative: wireNumber,
-        reference: wireNumber.nullable(),
-        uncertainty: wireNumber.nullable(),
-      })
-      .nullable(),
+    carried: carried.nullable(),
+    worst: worst.nullable(),
     rtol: z.number(),
     floor: wireNumber,
     /** What the weakest reference could see, relative; null without one. */
     resolution: wireNumber.nullable(),
-    signatures: z.array(signature),
-    motion: z
-      .object({
-        still: z.number().int(),
-        together: z.number().int(),
-        "derivative-only": z.number().int(),
-        "model-only": z.number().int(),
-        apart: z.number().int(),
-      })
-      .nullable(),
+    signatures: z.array(exportedSignature),
+    motion: motionCounts.nullable(),
     /** Running numbers of the breaks that have entries of this block and are bad at this commit. */
     breaks: z.array(z.number().int()),
   })
@@ -75,12 +59,12 @@ export const exportedBreak = z
     onsetBuildId: id,
     lastGood: sha.nullable(),
     repairedBy: sha.nullable(),
-    kind: z.enum(["after-good", "since-first-check", "fixed-between"]),
+    kind: onsetKind,
     models: z.array(z.string()),
     entryCount: z.number().int(),
     worstError: wireNumber.nullable(),
     motion: z.enum(MOTIONS).nullable(),
-    signatures: z.array(signature),
+    signatures: z.array(exportedSignature),
     /** Most likely first. */
     suspects: z.array(sha),
     assignee: z.string().nullable(),
@@ -89,33 +73,8 @@ export const exportedBreak = z
   .meta({ id: "ExportedBreak" });
 export type ExportedBreak = z.infer<typeof exportedBreak>;
 
-export const exportedWaiver = z
-  .object({
-    id,
-    state: z.enum(WAIVER_STATES),
-    selector,
-    reason: z.string(),
-    maxError: z.number(),
-    expiresAt: timestamp,
-    askedBy: z.string().nullable(),
-    askedAt: timestamp,
-    decidedBy: z.string().nullable(),
-    decidedAt: timestamp.nullable(),
-  })
-  .meta({ id: "ExportedWaiver" });
+export const exportedWaiver = waiver.omit({ expired: true, abilities: true }).meta({ id: "ExportedWaiver" });
 export type ExportedWaiver = z.infer<typeof exportedWaiver>;
-
-export const exportedBaseline = z
-  .object({
-    id,
-    selector,
-    commit: sha,
-    reason: z.string(),
-    acceptedBy: z.string().nullable(),
-    acceptedAt: timestamp,
-  })
-  .meta({ id: "ExportedBaseline" });
-export type ExportedBaseline = z.infer<typeof exportedBaseline>;
 
 export const exportDocument = z
   .object({
@@ -128,7 +87,7 @@ export const exportDocument = z
     builds: z.array(exportedBlock).optional(),
     breaks: z.array(exportedBreak).optional(),
     waivers: z.array(exportedWaiver).optional(),
-    baselines: z.array(exportedBaseline).optional(),
+    baselines: z.array(baseline).optional(),
   })
   .meta({ id: "Export", description: "The record, or the section of it that was asked for." });
 export type ExportDocument = z.infer<typeof exportDocument>;

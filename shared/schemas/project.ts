@@ -2,6 +2,7 @@ import { z } from "zod";
 import { MAX_CHECK_LIMIT } from "../domain/limits.ts";
 import { GATE_CODES, GATE_SEVERITIES, VERDICTS } from "../domain/vocabulary.ts";
 import { ROLES } from "../domain/roles.ts";
+import { motionCounts } from "./block.ts";
 import { summaryCounts } from "./build.ts";
 import { blockSelector } from "./waiver.ts";
 import { id, laneName, sha, slug, timestamp } from "./common.ts";
@@ -99,15 +100,7 @@ export const modelRow = z
         verdict: z.enum(VERDICTS),
       })
       .nullable(),
-    motion: z
-      .object({
-        still: z.number(),
-        together: z.number(),
-        "derivative-only": z.number(),
-        "model-only": z.number(),
-        apart: z.number(),
-      })
-      .nullable(),
+    motion: motionCounts.nullable(),
     /** Share of the entries that have a reference, 0..1. */
     checkedShare: z.number(),
     /** Resolution of the weakest reference of its blocks; null where none tells. */

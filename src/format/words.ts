@@ -75,10 +75,16 @@ export const MOTION_SENTENCE: Record<Motion, string> = {
 };
 
 /** The loudest motion of a block or model, as its one word. */
-export function loudestMotion(motion: Readonly<Record<Motion, number>> | null): Motion | null {
+function loudestMotion(motion: Readonly<Record<Motion, number>> | null): Motion | null {
   if (motion === null) return null;
   const order: readonly Motion[] = ["apart", "model-only", "derivative-only", "together", "still"];
   return order.find((m) => motion[m] > 0) ?? null;
+}
+
+/** The loudest motion of a block's entries in a table's cell; null: nothing to compare with. */
+export function motionWord(motion: Parameters<typeof loudestMotion>[0]): string {
+  const loudest = loudestMotion(motion);
+  return loudest ? MOTION_WORD[loudest] : "first build";
 }
 
 export const METHOD_WORD: Record<ReferenceMethod | "mixed", string> = {

@@ -1,6 +1,7 @@
 import { globToRegExp } from "../../../shared/domain/selector.ts";
 import type { Selector } from "../../../shared/domain/selector.ts";
-import type { ExportedBaseline, ExportedWaiver } from "../../../shared/schemas/export.ts";
+import type { BaselineRow } from "../../../shared/schemas/baseline.ts";
+import type { ExportedWaiver } from "../../../shared/schemas/export.ts";
 import type { Reader } from "../../db/reader.ts";
 import { time, timeOrNull } from "../../http/present.ts";
 import { EXPORT_PAGE, within } from "./scope.ts";
@@ -51,14 +52,14 @@ export async function* waiverPages(reader: Reader, scope: ExportScope): AsyncGen
 }
 
 /** Baselines that were accepted within the scope. */
-export async function* baselinePages(reader: Reader, scope: ExportScope): AsyncGenerator<ExportedBaseline[]> {
+export async function* baselinePages(reader: Reader, scope: ExportScope): AsyncGenerator<BaselineRow[]> {
   const sql = `SELECT b.id, b.selector, b.sha, b.reason, u.name AS acceptedBy, b.acceptedAt
     FROM baselines b LEFT JOIN users u ON u.id = b.acceptedById
     WHERE b.projectId = $1 AND ${within("b.acceptedAt", 2)} AND b.id > $4 ORDER BY b.id LIMIT $5`;
   for await (const rows of decisions<BaselineLine>(reader, scope, sql)) {
     yield rows.map(({ row, selector }) => ({
       id: String(row.id),
-      selector: { ...selector } as ExportedBaseline["selector"],
+      selector: { ...selector } as BaselineRow["selector"],
       commit: row.sha,
       reason: row.reason,
       acceptedBy: row.acceptedBy,

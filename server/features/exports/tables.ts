@@ -1,13 +1,8 @@
+import type { BaselineRow } from "../../../shared/schemas/baseline.ts";
 import { CAUTION } from "../../../shared/domain/vocabulary.ts";
 import { fromWire } from "../../../shared/schemas/common.ts";
 import type { WireNumber } from "../../../shared/schemas/common.ts";
-import type {
-  ExportedBaseline,
-  ExportedBlock,
-  ExportedBreak,
-  ExportedWaiver,
-  ExportKind,
-} from "../../../shared/schemas/export.ts";
+import type { ExportedBlock, ExportedBreak, ExportedWaiver, ExportKind } from "../../../shared/schemas/export.ts";
 import type { Cell } from "./csv.ts";
 
 /** The columns of a table: name and cell. */
@@ -18,7 +13,7 @@ export interface ExportedRows {
   readonly builds: ExportedBlock;
   readonly breaks: ExportedBreak;
   readonly waivers: ExportedWaiver;
-  readonly baselines: ExportedBaseline;
+  readonly baselines: BaselineRow;
 }
 
 /** NaN and infinities are words in JSON and numbers here; a number that is none is an empty cell. */
@@ -105,7 +100,7 @@ const WAIVERS: Table<ExportedWaiver> = [
   ["decidedAt", (row) => row.decidedAt],
 ];
 
-const BASELINES: Table<ExportedBaseline> = [
+const BASELINES: Table<BaselineRow> = [
   ["id", (row) => row.id],
   ["selector", (row) => JSON.stringify(row.selector)],
   ["commit", (row) => row.commit],
