@@ -10,7 +10,6 @@ import type { DriftValues } from "../../shared/numerics/drift/types.ts";
 import { unpackDrift } from "../../shared/numerics/drift/unpackDrift.ts";
 import { assemble } from "./assemble.ts";
 import type { StoredTile } from "./assemble.ts";
-import type { PlaneName } from "./planes.ts";
 
 /** The planes that drift is told from, of one part of a block. */
 export const DRIFT_PLANES = ["derivative", "reference", "resolution", "verdict"] as const;
@@ -115,26 +114,18 @@ function byOnset(kind: DriftEventKind, buildId: number, list: DriftEventList): D
 /** The planes of a part, filled up with entries that say nothing where the block has fewer rows than before. */
 function valuesOf(tiles: DriftTiles, length: number): DriftValues {
   const { entries, floor } = tiles;
-  const plane = (name: (typeof DRIFT_PLANES)[number]) => assemble(name satisfies PlaneName, tiles[name], entries);
-  const values = {
-    derivative: new Float64Array(plane("derivative")),
-    reference: new Float64Array(plane("reference")),
-    resolution: new Float32Array(plane("resolution")),
-    verdict: new Uint8Array(plane("verdict")),
-    floor,
-  };
-  if (entries === length) return values;
-  const verdict = new Uint8Array(length).fill(VERDICT_CODE.unreferenced);
-  verdict.set(values.verdict);
-  const filled = <T extends { set(from: ArrayLike<number>): void }>(to: T, from: ArrayLike<number>): T => {
-    to.set(from);
+  const plane = (name: (typeof DRIFT_PLANES)[number]) => assemble(name, tiles[name], entries);
+  const filled = <T extends { readonly length: number; set(from: T): void }>(own: T, whole: (n: number) => T): T => {
+    if (own.length === length) return own;
+    const to = whole(length);
+    to.set(own);
     return to;
   };
   return {
-    derivative: filled(new Float64Array(length), values.derivative),
-    reference: filled(new Float64Array(length), values.reference),
-    resolution: filled(new Float32Array(length), values.resolution),
-    verdict,
+    derivative: filled(new Float64Array(plane("derivative")), (n) => new Float64Array(n)),
+    reference: filled(new Float64Array(plane("reference")), (n) => new Float64Array(n)),
+    resolution: filled(new Float32Array(plane("resolution")), (n) => new Float32Array(n)),
+    verdict: filled(new Uint8Array(plane("verdict")), (n) => new Uint8Array(n).fill(VERDICT_CODE.unreferenced)),
     floor,
   };
 }

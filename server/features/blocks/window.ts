@@ -24,7 +24,8 @@ export function windowOf(
   return window;
 }
 
-function range(name: string, text: string | undefined, size: number): readonly [number, number] {
+/** Numbers first <= i < last of `size` that a query names; all without one. @throws Invalid where there are not so many. */
+export function range(name: string, text: string | undefined, size: number): readonly [number, number] {
   if (text === undefined) return [0, size];
   const [first, last] = text.split(":").map(Number);
   if (first > last || last > size) {

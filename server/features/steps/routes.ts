@@ -5,6 +5,7 @@ import type { Route } from "../../http/defineRoute.ts";
 import { Invalid, NotFound } from "../../http/problem.ts";
 import type { BlockDetails } from "../../ingest/blockDetails.ts";
 import { loadBlockRow } from "../blocks/loadBlockRows.ts";
+import { range } from "../blocks/window.ts";
 import { numericId } from "../numericId.ts";
 import { loadStepStudy } from "./load.ts";
 import { presentStepStudy } from "./present.ts";
@@ -20,8 +21,7 @@ function windowOf({ column, columns }: Query, size: number): readonly [number, n
     return [column, column + 1];
   }
   if (columns === undefined) return [0, Math.min(size, MAX_STUDIED_COLUMNS)];
-  const [first, last] = columns.split(":").map(Number);
-  if (first > last || last > size) throw invalid("columns", `must lie within 0:${size}, first before last`);
+  const [first, last] = range("columns", columns, size);
   if (last - first > MAX_STUDIED_COLUMNS) {
     throw invalid("columns", `has ${last - first} columns; at most ${MAX_STUDIED_COLUMNS} are studied at a time`);
   }
